@@ -17,6 +17,7 @@ struct Composition {
     std::span<const double> molality_mol_per_kg;      ///< per kg of water
     std::span<const std::string_view> formula;        ///< e.g. `HPO4^2-`; identifies the species in parameter tables
     double ionic_strength_mol_per_kg = 0;             ///< of this composition
+    int highest_charge = 8;                           ///< no species carries more, of either sign
 };
 
 /// What a model says of a composition; spans are provided by the caller, one entry per species.
@@ -36,6 +37,8 @@ public:
     virtual std::string_view name() const = 0;
     /// Highest ionic strength (mol/kg) at which the model's own authors would use it; past it callers warn.
     virtual double trusted_to_mol_per_kg() const = 0;
+    /// Standard uncertainty of a predicted pH that comes from the model itself, at this ionic strength.
+    virtual double ph_uncertainty(Molality ionic_strength) const = 0;
     /// Fills `out`. Any composition is accepted: I from 0 to far beyond the trusted range gives finite numbers.
     virtual void evaluate(const WaterProperties& water, const Composition& composition, Activities& out) const = 0;
 };

@@ -34,4 +34,8 @@ struct Composed {
 /// Water of hydration and of neutralisation belongs to the water. Error `no_room_for_water` (input) when solutes fill it all.
 Composed compose(const Table& table, const Preparation& preparation);
 
+/// Volume that one mole of a reagent takes up in solution: the sum of its components' apparent molar volumes, those that
+/// the table does not know counted as zero.
+Volume volume_per_mole(const Table& table, const Reagent& reagent);
+
 }  // namespace carboy

@@ -9,6 +9,7 @@ namespace carboy {
 template <class Kind>
 class Quantity {
 public:
+    constexpr Quantity() = default;  ///< zero
     friend constexpr Kind operator+(Kind a, Kind b) { return make(a.value_ + b.value_); }
     friend constexpr Kind operator-(Kind a, Kind b) { return make(a.value_ - b.value_); }
     friend constexpr Kind operator*(Kind a, double factor) { return make(a.value_ * factor); }
@@ -24,7 +25,6 @@ public:
     }
 
 protected:
-    constexpr Quantity() = default;
     static constexpr Kind make(double value) {
         Kind kind;
         kind.value_ = value;

@@ -1,0 +1,42 @@
+#pragma once
+
+#include <optional>
+#include <string>
+#include <vector>
+
+#include "carboy/error.h"
+#include "carboy/plan.h"
+#include "plan/candidates.h"
+
+namespace carboy {
+
+/// Why there is no recipe, in the words of the bench: on which side the pH lies, and what would reach it.
+class Shortfall {
+public:
+    Shortfall(const Table& table, const Request& request, const Preparation& fixed,
+              const std::vector<CounterIonSet>& sets, const ActivityModel& model)
+        : table_(table), request_(request), fixed_(fixed), sets_(sets), model_(model) {}
+
+    /// No basic solution is non-negative.
+    Error explain() const;
+    /// There are not even reagents to try.
+    Error no_reagents() const;
+
+private:
+    std::optional<Error> ionic_strength_too_low() const;
+    /// Weakest or strongest form of each buffer with the label's additives and nothing else: what the meter would show.
+    struct Limit {
+        double ph = 0;
+        std::string forms;
+    };
+    std::optional<Limit> limit(const CounterIonSet& set, bool acid) const;
+    std::string buffer_names() const;
+
+    const Table& table_;
+    const Request& request_;
+    const Preparation& fixed_;
+    const std::vector<CounterIonSet>& sets_;
+    const ActivityModel& model_;
+};
+
+}  // namespace carboy
