@@ -1,0 +1,76 @@
+#include "cli/file.h"
+
+#include <cerrno>
+#include <cstdio>
+#include <cstring>
+#include <fmt/format.h>
+#include <memory>
+#include <unistd.h>
+
+#include "carboy/error.h"
+
+namespace carboy::cli {
+
+namespace {
+
+struct Close {
+    void operator()(std::FILE* file) const { std::fclose(file); }
+};
+using File = std::unique_ptr<std::FILE, Close>;
+
+Error file_error(std::string code, const std::string& path, std::string_view what, int reason) {
+    return {ErrorKind::file, std::move(code), fmt::format("{}: {}", what, std::strerror(reason)), path,
+            "check the path, its permissions and the space left"};
+}
+
+}  // namespace
+
+std::string read_file(const std::string& path) {
+    File opened;
+    std::FILE* file = stdin;
+    if (path != "-") {
+        opened.reset(std::fopen(path.c_str(), "rb"));
+        if (!opened) {
+            throw file_error("cannot_read", path, "the file cannot be opened", errno);
+        }
+        file = opened.get();
+    }
+    std::string content;
+    char chunk[1 << 16];
+    while (const std::size_t got = std::fread(chunk, 1, sizeof chunk, file)) {
+        content.append(chunk, got);
+    }
+    if (std::ferror(file) != 0) {
+        throw file_error("cannot_read", path, "the file cannot be read", errno);
+    }
+    return content;
+}
+
+void write_result(std::string_view text, const std::string& path) {
+    if (path.empty()) {
+        if (std::fwrite(text.data(), 1, text.size(), stdout) != text.size() || std::fflush(stdout) != 0) {
+            throw file_error("cannot_write", "standard output", "the result cannot be written", errno);
+        }
+        return;
+    }
+    const std::string partial = fmt::format("{}.{}.partial", path, getpid());
+    const auto give_up = [&](std::string_view what) {
+        const int reason = errno;
+        std::remove(partial.c_str());
+        throw file_error("cannot_write", path, what, reason);
+    };
+    File file(std::fopen(partial.c_str(), "wbx"));
+    if (!file) {
+        throw file_error("cannot_write", path, "the file cannot be made", errno);
+    }
+    if (std::fwrite(text.data(), 1, text.size(), file.get()) != text.size() || std::fflush(file.get()) != 0 ||
+        fsync(fileno(file.get())) != 0) {
+        give_up("the file cannot be written");
+    }
+    file.reset();
+    if (std::rename(partial.c_str(), path.c_str()) != 0) {
+        give_up("the finished file cannot be put in its place");
+    }
+}
+
+}  // namespace carboy::cli

@@ -1,0 +1,122 @@
+#include <CLI/CLI.hpp>
+#include <array>
+#include <cstdio>
+#include <exception>
+#include <fmt/format.h>
+#include <string>
+#include <string_view>
+#include <unistd.h>
+#include <vector>
+
+#include "carboy/error.h"
+#include "carboy/notation.h"
+#include "cli/commands.h"
+#include "report/error_text.h"
+#include "report/json.h"
+
+namespace {
+
+using carboy::Error;
+using carboy::ErrorKind;
+using carboy::cli::Action;
+using carboy::cli::SharedOptions;
+
+struct Command {
+    const char* name;
+    const char* summary;
+    Action (*declare)(CLI::App&, SharedOptions*&);
+};
+
+constexpr std::array commands{
+    Command{"recipe", "Plan the make-up of a buffer: what to weigh, what to measure, what the meter will say",
+            carboy::cli::declare_recipe},
+    Command{"predict", "Tell the pH and the species of a mixture as made", carboy::cli::declare_predict},
+    Command{"constants", "Look into the constants table, or check a file to lay over it", carboy::cli::declare_constants}};
+
+constexpr auto overview = R"(
+Examples:
+  carboy recipe "50 mM Tris-HCl, 150 mM NaCl, pH 7.5 at 4 C" --volume 1L
+  carboy predict "25 mmol/kg KH2PO4, 25 mmol/kg Na2HPO4"
+  carboy constants show phosphate
+
+'carboy COMMAND --help' tells more of each.
+Exit status: 0 done; 1 understood, but there is no such recipe; 2 the input is
+wrong; 3 a file cannot be read or written; 4 the constants file is invalid;
+70 a defect of the program.
+Not for clinical or parenteral use.
+)";
+
+void report(const Error& error, const SharedOptions* shared) {
+    if (shared != nullptr && shared->json()) {
+        fmt::print(stderr, "{}\n", carboy::error_json(error, {}).dump());
+        return;
+    }
+    const bool colour = shared == nullptr || shared->color == "auto" ? isatty(STDERR_FILENO) != 0 && shared != nullptr && shared->colour()
+                                                                      : shared->color == "always";
+    std::fputs(carboy::error_text(error, colour).c_str(), stderr);
+}
+
+/// CLI11's complaint in our form, with the nearest option or command where a word is unknown.
+Error usage_error(const CLI::ParseError& error, const CLI::App& app) {
+    std::vector<std::string> words;
+    for (const CLI::Option* option : app.get_options()) {
+        for (const std::string& name : option->get_lnames()) {
+            words.push_back("--" + name);
+        }
+    }
+    for (const CLI::App* command : app.get_subcommands({})) {
+        words.push_back(command->get_name());
+    }
+    const std::string message = error.what();
+    std::string help = fmt::format("'{} --help' shows how it is used", app.get_name());
+    if (error.get_exit_code() == static_cast<int>(CLI::ExitCodes::ExtrasError)) {
+        const std::string unknown = message.substr(message.find_last_of(' ') + 1);
+        if (const auto near = carboy::nearest_words(unknown, words, 1); !near.empty()) {
+            help = fmt::format("did you mean {}? {}", near.front(), help);
+        }
+    }
+    std::string told = message;
+    while (told.ends_with('.') || told.ends_with('\n')) {
+        told.pop_back();
+    }
+    return {ErrorKind::input, "usage", told, "command line", help};
+}
+
+int run(int argc, char** argv) {
+    SharedOptions* shared = nullptr;
+    try {
+        CLI::App app{"Recipes for buffers, from the label on the bottle to the balance and the meter.", "carboy"};
+        app.set_version_flag("--version", fmt::format("carboy {} (constants {})", CARBOY_VERSION, carboy::bundled_table().version));
+        app.footer(overview);
+        app.require_subcommand(1);
+        Action action;
+        // Only the command that is called declares its options: start-up time counts in scripts.
+        const std::string_view called = argc > 1 ? argv[1] : "";
+        for (const Command& command : commands) {
+            CLI::App* sub = app.add_subcommand(command.name, command.summary);
+            if (called == command.name) {
+                action = command.declare(*sub, shared);
+            }
+        }
+        try {
+            app.parse(argc, argv);
+        } catch (const CLI::ParseError& error) {
+            if (error.get_exit_code() == static_cast<int>(CLI::ExitCodes::Success)) {
+                return app.exit(error);
+            }
+            const auto used = app.get_subcommands();
+            throw usage_error(error, used.empty() ? app : *used.front());
+        }
+        return action ? action() : 0;
+    } catch (const Error& error) {
+        report(error, shared);
+        return carboy::exit_status(error.kind());
+    } catch (const std::exception& error) {
+        report(Error(ErrorKind::defect, "unexpected", error.what(), {}, "please report this line and what was typed"), shared);
+        return carboy::exit_status(ErrorKind::defect);
+    }
+}
+
+}  // namespace
+
+int main(int argc, char** argv) { return run(argc, argv); }

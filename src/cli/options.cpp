@@ -1,0 +1,83 @@
+#include "cli/options.h"
+
+#include <CLI/CLI.hpp>
+#include <cstdio>
+#include <cstdlib>
+#include <fmt/format.h>
+#include <string_view>
+#include <unistd.h>
+
+#include "carboy/constants_file.h"
+#include "carboy/error.h"
+#include "carboy/notation.h"
+#include "cli/file.h"
+
+namespace carboy::cli {
+
+bool SharedOptions::colour() const {
+    if (color != "auto") {
+        return color == "always";
+    }
+    const char* no_colour = std::getenv("NO_COLOR");
+    const char* terminal = std::getenv("TERM");
+    return output_file.empty() && isatty(STDOUT_FILENO) != 0 && (no_colour == nullptr || *no_colour == '\0') &&
+           terminal != nullptr && std::string_view(terminal) != "dumb";
+}
+
+std::optional<Temperature> SharedOptions::use_at() const {
+    return at.empty() ? std::nullopt : std::optional(read_temperature(at, "--at"));
+}
+
+std::optional<Temperature> SharedOptions::bench_at() const {
+    return prepare_at.empty() ? std::nullopt : std::optional(read_temperature(prepare_at, "--prepare-at"));
+}
+
+const ActivityModel& SharedOptions::activity_model() const { return *find_activity_model(activity); }
+
+void add_output_options(CLI::App& app, SharedOptions& options) {
+    app.add_option("--format", options.format, "text for people, json for programs")
+        ->check(CLI::IsMember({"text", "json"}))
+        ->capture_default_str();
+    app.add_option("-o,--output", options.output_file, "Write to FILE, which appears only when it is complete")
+        ->type_name("FILE");
+    app.add_option("--constants", options.constants_file, "Lay FILE over the bundled constants, entry by entry")
+        ->type_name("FILE");
+    app.add_option("--color", options.color, "Emphasis in text")
+        ->check(CLI::IsMember({"auto", "always", "never"}))
+        ->capture_default_str();
+    app.add_flag("-q,--quiet", options.quiet, "Nothing on standard error but errors");
+}
+
+void add_computing_options(CLI::App& app, SharedOptions& options) {
+    app.add_option("--at", options.at, "Temperature of use, 25 C unless the label says")->type_name("T");
+    app.add_option("--prepare-at", options.prepare_at, "Bench temperature, where volumes are filled and the meter is read [25 C]")
+        ->type_name("T");
+    app.add_option("--activity", options.activity, "Activity model")
+        ->check(CLI::IsMember({"davies", "debye-huckel", "ideal"}))
+        ->capture_default_str();
+    app.add_flag("--explain", options.explain, "Add the constants, equations and sources behind the figures");
+}
+
+Table table_for(const SharedOptions& options) {
+    if (options.constants_file.empty()) {
+        return bundled_table();
+    }
+    ConstantsOverlay overlay = lay_over(bundled_table(), read_file(options.constants_file));
+    if (!overlay.faults.empty()) {
+        const ConstantsFault& first = overlay.faults.front();
+        const std::string more =
+            overlay.faults.size() > 1 ? fmt::format(" (and {} more)", overlay.faults.size() - 1) : std::string();
+        throw Error(ErrorKind::data, "invalid_constants",
+                    fmt::format("{}: {}{}", first.path.empty() ? "document" : first.path, first.message, more),
+                    options.constants_file, fmt::format("'carboy constants check {}' lists every fault", options.constants_file));
+    }
+    if (!options.quiet) {
+        for (const ConstantsChange& change : overlay.changes) {
+            fmt::print(stderr, "{}: {} {} {}\n", options.constants_file, change.replaced ? "replaces" : "adds", change.kind,
+                       change.name);
+        }
+    }
+    return std::move(overlay.table);
+}
+
+}  // namespace carboy::cli

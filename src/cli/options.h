@@ -1,0 +1,49 @@
+#pragma once
+
+#include <functional>
+#include <optional>
+#include <string>
+
+#include "carboy/activity.h"
+#include "carboy/constants.h"
+#include "carboy/quantity.h"
+
+namespace CLI {
+class App;
+}
+
+namespace carboy::cli {
+
+/// Options that the commands share, as typed.
+struct SharedOptions {
+    std::string at;
+    std::string prepare_at;
+    std::string activity = "davies";
+    std::string constants_file;
+    std::string format = "text";
+    std::string output_file;
+    std::string color = "auto";
+    bool quiet = false;
+    bool explain = false;
+
+    bool json() const { return format == "json"; }
+    /// Colour only for text on a terminal that wants it (NO_COLOR, TERM=dumb and -o turn `auto` off).
+    bool colour() const;
+    std::optional<Temperature> use_at() const;
+    std::optional<Temperature> bench_at() const;
+    const ActivityModel& activity_model() const;
+};
+
+/// -o, --format, --color, --quiet, --constants: every command.
+void add_output_options(CLI::App& app, SharedOptions& options);
+/// --at, --prepare-at, --activity, --explain: commands that compute.
+void add_computing_options(CLI::App& app, SharedOptions& options);
+
+/// The bundled table, with the user's file laid over it when one is given; what it changed is told on standard error unless
+/// quiet. Throws Error (file or data).
+Table table_for(const SharedOptions& options);
+
+/// One command: its options are declared on a CLI::App, and it runs later.
+using Action = std::function<int()>;
+
+}  // namespace carboy::cli

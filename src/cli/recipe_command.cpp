@@ -1,0 +1,108 @@
+#include <CLI/CLI.hpp>
+#include <fmt/format.h>
+#include <memory>
+
+#include "carboy/error.h"
+#include "carboy/notation.h"
+#include "carboy/plan.h"
+#include "carboy/request_json.h"
+#include "cli/commands.h"
+#include "cli/file.h"
+#include "report/json.h"
+#include "report/recipe_text.h"
+
+namespace carboy::cli {
+
+namespace {
+
+constexpr auto examples = R"(
+Examples:
+  carboy recipe "50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C" --volume 1L
+  carboy recipe "0.1 M sodium phosphate, pH 7.2" --volume 2L --route salts
+  carboy recipe "20 mM HEPES-KOH, pH 7.4 at 37 C, ionic strength 0.15 M" \
+      --volume 500mL --prepare-at 22C
+  carboy recipe "50 mM acetic acid, pH 5" --volume 1L --format json | jq .weigh
+  carboy recipe --request request.json --format json -o recipe.json
+
+Masses carry the assay of the table; the meter readings are for the bench
+temperature, the last figure is for the temperature of use.
+)";
+
+struct Options {
+    std::string label;
+    std::string volume;
+    std::string route = "any";
+    std::string request_file;
+    SharedOptions shared;
+};
+
+Route route_of(const std::string& word) {
+    return word == "titrated" ? Route::titrated : word == "salts" ? Route::salts : Route::automatic;
+}
+
+/// --at may add a temperature of use to a label that has none, not contradict one.
+void take_use_temperature(Request& request, const Options& options, const Table& table) {
+    const auto use_at = options.shared.use_at();
+    if (!use_at) {
+        return;
+    }
+    const auto on_label = read_label(options.label, table).ph_at;
+    if (on_label && *on_label != *use_at) {
+        throw Error(ErrorKind::input, "two_temperatures",
+                    fmt::format("the label says {:g} °C and --at says {:g} °C", on_label->celsius(), use_at->celsius()), "--at",
+                    "leave one of them out");
+    }
+    request.use_at = *use_at;
+}
+
+Request request_of(const Options& options, const Table& table) {
+    if (!options.request_file.empty()) {
+        return read_request(read_file(options.request_file), table, options.request_file);
+    }
+    if (options.label.empty() || options.volume.empty()) {
+        throw Error(ErrorKind::input, "usage", options.label.empty() ? "a label is missing" : "--volume is missing", "command line",
+                    "'carboy recipe \"50 mM Tris-HCl, pH 8.0\" --volume 1L' is a whole command; 'carboy recipe --help' tells more");
+    }
+    Request request = request_from_label(options.label, table);
+    take_use_temperature(request, options, table);
+    request.volume = read_volume(options.volume, "--volume");
+    request.prepare_at = options.shared.bench_at().value_or(Temperature{});
+    request.route = route_of(options.route);
+    return request;
+}
+
+int run(const Options& options) {
+    const Table table = table_for(options.shared);
+    const Request request = request_of(options, table);
+    const Plan plan = plan_recipe(table, request, options.shared.activity_model());
+    if (options.shared.json()) {
+        write_result(recipe_json(plan, table).dump() + "\n", options.shared.output_file);
+    } else {
+        const TextStyle style{options.shared.colour(), options.shared.explain, options.shared.prepare_at.empty()};
+        write_result(recipe_text(plan, table, style), options.shared.output_file);
+    }
+    return 0;
+}
+
+}  // namespace
+
+Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
+    auto options = std::make_shared<Options>();
+    shared = &options->shared;
+    app.footer(examples);
+    auto* label = app.add_option("label", options->label, "What is to stand on the bottle")->type_name("LABEL");
+    auto* volume = app.add_option("--volume", options->volume, "Volume to make, such as 1L or '250 mL'")->type_name("V");
+    auto* route = app.add_option("--route", options->route, "titrated: one form and a strong acid or base; salts: two forms, no titrant")
+        ->check(CLI::IsMember({"any", "titrated", "salts"}))
+                      ->capture_default_str();
+    add_computing_options(app, options->shared);
+    app.add_option("--request", options->request_file, "Read the whole request as JSON from FILE ('-' for standard input)")
+        ->type_name("FILE")
+        ->excludes(label)
+        ->excludes(volume)
+        ->excludes(route);
+    add_output_options(app, options->shared);
+    return [options] { return run(*options); };
+}
+
+}  // namespace carboy::cli

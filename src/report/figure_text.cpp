@@ -1,0 +1,96 @@
+#include "report/figure_text.h"
+
+#include <algorithm>
+#include <cmath>
+#include <fmt/format.h>
+
+namespace carboy {
+
+namespace {
+
+/// Fixed-point with so many significant digits and at least `least` decimals.
+std::string fixed(double value, int significant, int least = 0) {
+    if (value == 0) {
+        return "0";
+    }
+    const int magnitude = static_cast<int>(std::floor(std::log10(std::abs(value))));
+    const int decimals = std::max(significant - 1 - magnitude, least);
+    return fmt::format("{:.{}f}", value, std::min(decimals, 12));
+}
+
+}  // namespace
+
+std::string mass_text(Mass mass) {
+    const double grams = mass.g();
+    if (grams >= 1.0) {
+        return fmt::format("{} g", fixed(grams, 4, grams < 100 ? 3 : 2));
+    }
+    if (grams >= 1e-3) {
+        return fmt::format("{} mg", fixed(grams * 1e3, 4, 1));
+    }
+    return fmt::format("{} µg", fixed(grams * 1e6, 4));
+}
+
+std::string volume_text(Volume volume) {
+    const double millilitres = volume.mL();
+    if (millilitres >= 1000.0) {
+        return fmt::format("{} L", fixed(volume.L(), 4));
+    }
+    if (millilitres >= 1.0) {
+        return fmt::format("{} mL", fixed(millilitres, 3, millilitres < 100 ? 1 : 0));
+    }
+    return fmt::format("{} µL", fixed(millilitres * 1e3, 3));
+}
+
+std::string vessel_text(Volume volume) {
+    if (volume.L() >= 1.0) {
+        return fmt::format("{:g} L", volume.L());
+    }
+    return volume.mL() >= 1.0 ? fmt::format("{:g} mL", volume.mL()) : fmt::format("{:g} µL", volume.mL() * 1e3);
+}
+
+std::string ph_text(PH ph) { return fmt::format("{:.2f}", ph.value()); }
+
+std::string temperature_text(Temperature temperature) { return fmt::format("{:g} °C", temperature.celsius()); }
+
+std::string plain_number(double value, int significant) {
+    const double size = std::abs(value);
+    if (size != 0 && (size < 1e-4 || size >= 1e5)) {
+        return fmt::format("{:.{}e}", value, significant - 1);
+    }
+    return fixed(value, significant);
+}
+
+std::string molality_text(Molality molality) { return fmt::format("{} mol/kg", plain_number(molality.mol_per_kg())); }
+
+std::string concentration_text(const Concentration& concentration) {
+    const double value = concentration.value;
+    const auto scaled = [&](std::string_view whole, std::string_view milli, std::string_view micro) {
+        if (value >= 0.1 || value == 0) {
+            return fmt::format("{:.6g} {}", value, whole);
+        }
+        return value >= 1e-4 ? fmt::format("{:.6g} {}", value * 1e3, milli) : fmt::format("{:.6g} {}", value * 1e6, micro);
+    };
+    switch (concentration.unit) {
+        case ConcentrationUnit::mol_per_L:
+            return scaled("M", "mM", "µM");
+        case ConcentrationUnit::mol_per_kg:
+            return scaled("mol/kg", "mmol/kg", "µmol/kg");
+        case ConcentrationUnit::g_per_L:
+            return scaled("g/L", "mg/L", "µg/L");
+        case ConcentrationUnit::percent_w_w:
+            return fmt::format("{:.6g} % w/w", value);
+        case ConcentrationUnit::percent_v_v:
+            return fmt::format("{:.6g} % v/v", value);
+        case ConcentrationUnit::normal:
+            return fmt::format("{:.6g} N", value);
+    }
+    return {};
+}
+
+std::size_t display_width(std::string_view text) {
+    return static_cast<std::size_t>(
+        std::count_if(text.begin(), text.end(), [](char c) { return (static_cast<unsigned char>(c) & 0xC0U) != 0x80U; }));
+}
+
+}  // namespace carboy

@@ -1,0 +1,33 @@
+#pragma once
+
+#include <string>
+#include <string_view>
+
+#include "carboy/concentration.h"
+#include "carboy/quantity.h"
+
+// How figures are written for people: the one place that rounds. JSON carries the exact values.
+
+namespace carboy {
+
+/// `6.057 g`, `372.2 mg`, `1250.1 g`: at least four significant digits, a unit that avoids leading zeros.
+std::string mass_text(Mass mass);
+/// `34.5 mL`, `250 µL`, `1.200 L`: three to four significant digits.
+std::string volume_text(Volume volume);
+/// A nominal volume as a vessel is marked: `1 L`, `500 mL`.
+std::string vessel_text(Volume volume);
+/// `7.50`: two decimals, as a meter shows.
+std::string ph_text(PH ph);
+/// `4 °C`.
+std::string temperature_text(Temperature temperature);
+/// `0.1000 mol/kg`, four significant digits.
+std::string molality_text(Molality molality);
+/// `50 mM`, `0.9 % w/v`, `0.1 mol/kg`.
+std::string concentration_text(const Concentration& concentration);
+/// Four significant digits without an exponent where that is readable.
+std::string plain_number(double value, int significant = 4);
+
+/// Columns that text takes on a terminal: code points, which is right for all that this program prints.
+std::size_t display_width(std::string_view text);
+
+}  // namespace carboy
