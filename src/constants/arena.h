@@ -6,6 +6,7 @@
 #include <memory>
 #include <span>
 #include <string>
+#include <type_traits>
 #include <vector>
 
 #include "constants/name.h"
@@ -34,9 +35,12 @@ std::span<const T> TableBuilder::keep_array(std::vector<T> items) {
 
 template <class Entry>
 std::size_t TableBuilder::place(std::vector<Entry>& entries, Entry entry, std::string_view Entry::*key, const char* kind) {
-    const std::string folded = fold_name(entry.*key);
+    // Names are folded as users type them; keys of sources, elements and hazards (H360FD, H360Fd) are taken letter by letter.
+    const bool is_name = std::is_same_v<Entry, Spectator> || std::is_same_v<Entry, System> || std::is_same_v<Entry, Reagent>;
+    const auto compared = [&](std::string_view text) { return is_name ? fold_name(text) : std::string(text); };
+    const std::string wanted = compared(entry.*key);
     const auto known = std::find_if(entries.begin(), entries.end(),
-                                    [&](const Entry& other) { return fold_name(other.*key) == folded; });
+                                    [&](const Entry& other) { return compared(other.*key) == wanted; });
     changes.push_back({kind, std::string(entry.*key), known != entries.end()});
     if (known != entries.end()) {
         *known = std::move(entry);

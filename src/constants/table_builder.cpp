@@ -166,7 +166,7 @@ void TableBuilder::read_elements(const DocumentNode& document) {
             node.fault("'standard_atomic_weight' is missing");
         }
         if (node.has("uncertainty")) {
-            weight.uncertainty = node.at("uncertainty").number(1e-12, 1.0);
+            weight.uncertainty = node.at("uncertainty").number(1e-12, 5.0);
         }
         const Provenance provenance = read_provenance(node, {});
         weight.source = provenance.source;

@@ -87,11 +87,35 @@ std::string spelling(const Table& table, const NameEntry& entry) {
     return {};
 }
 
+/// `Trs-HCl`: where one side of a name is an ion, the other may be a misspelt system.
+void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& table) {
+    for (std::size_t i = 1; i + 1 < text.size(); ++i) {
+        if (text[i] != ' ' && text[i] != '-') {
+            continue;
+        }
+        const std::string_view left = text.substr(0, i);
+        const std::string_view right = text.substr(i + 1);
+        const bool ion_last = find_spectator(table, right) != nullptr;
+        if (!ion_last && find_spectator(table, left) == nullptr) {
+            continue;
+        }
+        const std::string typed = fold_name(ion_last ? left : right);
+        for (const NameEntry& entry : table.names) {
+            const std::size_t apart = entry.kind == EntryKind::system ? nearness(typed, entry.key) : std::string::npos;
+            if (apart != std::string::npos) {
+                const std::string system = spelling(table, entry);
+                found.push_back({apart, ion_last ? system + text[i] + std::string(right) : std::string(left) + text[i] + system});
+            }
+        }
+    }
+}
+
 }  // namespace
 
 std::vector<std::string> nearest_names(std::string_view text, const Table& table, std::size_t at_most) {
     const std::string typed = fold_name(text);
     std::vector<Near> found;
+    add_with_ion(found, text, table);
     for (const NameEntry& entry : table.names) {
         // Ions are part of a name, never an ingredient.
         if (entry.kind == EntryKind::spectator) {

@@ -1,16 +1,20 @@
 #include "report/cautions.h"
 
 #include <algorithm>
-#include <array>
 
 namespace carboy {
 
 namespace {
 
-void add_once(std::vector<std::uint16_t>& list, std::span<const std::uint16_t> more) {
-    for (const std::uint16_t index : more) {
-        if (std::find(list.begin(), list.end(), index) == list.end()) {
-            list.push_back(index);
+void advise(std::vector<Advice>& list, std::span<const std::uint16_t> cautions, std::string_view subject) {
+    for (const std::uint16_t caution : cautions) {
+        auto known = std::find_if(list.begin(), list.end(), [&](const Advice& advice) { return advice.caution == caution; });
+        if (known == list.end()) {
+            list.push_back({caution, {}});
+            known = list.end() - 1;
+        }
+        if (std::find(known->subjects.begin(), known->subjects.end(), subject) == known->subjects.end()) {
+            known->subjects.push_back(subject);
         }
     }
 }
@@ -24,19 +28,30 @@ Cautions cautions_of(const Plan& plan, const Table& table) {
         if (!reagent.ghs.statements.empty()) {
             cautions.hazardous.push_back(index);
         }
-        add_once(cautions.advice, reagent.cautions);
+        advise(cautions.advice, reagent.cautions, reagent.name);
         for (const Supply& supply : reagent.supplies) {
             if (supply.component.kind == ComponentKind::system) {
-                add_once(cautions.advice, table.systems[supply.component.index].cautions);
+                const System& system = table.systems[supply.component.index];
+                advise(cautions.advice, system.cautions, system.name);
             }
         }
     }
     for (std::size_t i = 0; i < table.cautions.size(); ++i) {
         if (table.cautions[i].key.starts_with("always-")) {
-            add_once(cautions.advice, std::array{static_cast<std::uint16_t>(i)});
+            cautions.advice.push_back({static_cast<std::uint16_t>(i), {}});
         }
     }
     return cautions;
+}
+
+std::string advice_text(const Advice& advice, const Table& table) {
+    std::string text;
+    for (const std::string_view subject : advice.subjects) {
+        text += text.empty() ? "" : ", ";
+        text += subject;
+    }
+    text += text.empty() ? "" : ": ";
+    return text += table.cautions[advice.caution].text;
 }
 
 }  // namespace carboy

@@ -18,6 +18,11 @@ struct Window {
     std::size_t length = 0;
 };
 
+/// With a full stop, unless it ends in a mark of its own.
+std::string sentence(const std::string& text) {
+    return text.empty() || std::string_view(".?!").find(text.back()) != std::string_view::npos ? text : text + ".";
+}
+
 bool continues_character(char c) { return (static_cast<unsigned char>(c) & 0xC0U) == 0x80U; }
 
 Window window_of(const Error::Excerpt& excerpt) {
@@ -46,7 +51,7 @@ Window window_of(const Error::Excerpt& excerpt) {
 std::string error_text(const Error& error, bool colour) {
     Page page(colour);
     const std::string where = error.where().empty() ? "" : error.where() + ": ";
-    page.notice(where + error.message() + ".", error.kind() == ErrorKind::defect ? "defect: " : "error: ");
+    page.notice(where + sentence(error.message()), error.kind() == ErrorKind::defect ? "defect: " : "error: ");
     std::string text = page.text();
     if (!error.excerpt().text.empty()) {
         const Window window = window_of(error.excerpt());
@@ -57,7 +62,7 @@ std::string error_text(const Error& error, bool colour) {
     }
     if (!error.help().empty()) {
         Page help(false);
-        help.paragraph(error.help() + ".", "  try: ");
+        help.paragraph(sentence(error.help()), "  try: ");
         text += help.text();
     }
     return text;

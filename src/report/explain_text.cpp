@@ -9,8 +9,8 @@ namespace carboy {
 
 namespace {
 
-const std::vector<Page::Column> constant_columns{{2}, {24}, {5}, {10, Page::Align::right}, {10, Page::Align::right},
-                                                 {3}, {14}, {12}};
+const std::vector<Page::Column> constant_columns{{2}, {18}, {5}, {9, Page::Align::right}, {9, Page::Align::right},
+                                                 {2}, {12}, {23}};
 
 std::string_view model_equation(std::string_view model) {
     if (model == "davies") {

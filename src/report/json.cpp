@@ -207,8 +207,8 @@ void add_cautions(ordered_json& record, const Plan& plan, const Table& table) {
     }
     record["cautions"] = std::move(hazards);
     ordered_json advice = ordered_json::array();
-    for (const std::uint16_t index : all.advice) {
-        advice.push_back(table.cautions[index].text);
+    for (const Advice& one : all.advice) {
+        advice.push_back({{"about", one.subjects}, {"text", table.cautions[one.caution].text}});
     }
     record["advice"] = std::move(advice);
 }

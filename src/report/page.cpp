@@ -14,23 +14,40 @@ constexpr std::string_view plain = "\x1b[0m";
 
 std::string spaces(std::size_t count) { return std::string(count, ' '); }
 
-/// Lines of at most `width` columns, broken at spaces; a word longer than that keeps its line.
+/// Longest beginning of a word that fits, cut between characters.
+std::size_t bytes_that_fit(std::string_view word, std::size_t width) {
+    std::size_t bytes = 0;
+    for (std::size_t columns = 0; bytes < word.size(); ++bytes) {
+        const bool begins_character = (static_cast<unsigned char>(word[bytes]) & 0xC0U) != 0x80U;
+        if (begins_character && ++columns > width) {
+            break;
+        }
+    }
+    return bytes;
+}
+
+/// Lines of at most `width` columns, broken at spaces; a word longer than a line is cut.
 std::vector<std::string> wrapped(std::string_view text, std::size_t width) {
     std::vector<std::string> lines(1);
     while (!text.empty()) {
         const std::size_t end = std::min(text.find(' '), text.size());
-        const std::string_view word = text.substr(0, end);
+        std::string_view word = text.substr(0, end);
         text.remove_prefix(std::min(end + 1, text.size()));
         if (word.empty()) {
             continue;
         }
-        std::string& current = lines.back();
-        if (!current.empty() && display_width(current) + 1 + display_width(word) > width) {
-            lines.emplace_back(word);
-        } else {
-            current += current.empty() ? "" : " ";
-            current += word;
+        if (!lines.back().empty() && display_width(lines.back()) + 1 + display_width(word) > width) {
+            lines.emplace_back();
         }
+        while (display_width(word) > width) {
+            const std::size_t fits = bytes_that_fit(word, width);
+            lines.back() += word.substr(0, fits);
+            lines.emplace_back();
+            word.remove_prefix(fits);
+        }
+        std::string& current = lines.back();
+        current += current.empty() ? "" : " ";
+        current += word;
     }
     return lines;
 }
@@ -85,21 +102,22 @@ void Page::notice(std::string_view text, std::string_view first) {
 }
 
 void Page::row(const std::vector<Column>& columns, const std::vector<std::string>& cells, bool emphasised) {
-    std::string text;
-    std::size_t edge = 0;
+    std::vector<std::vector<std::string>> pieces;
+    std::size_t height = 1;
     for (std::size_t i = 0; i < cells.size(); ++i) {
-        const std::size_t cell = display_width(cells[i]);
-        const std::size_t room = columns[i].width;
-        if (cell > room && i + 1 < cells.size() && columns[i].align == Align::left) {
-            line(text + cells[i], emphasised ? strong : std::string_view{});
-            text = spaces(edge + room);
-        } else {
-            const std::string padding = spaces(room > cell ? room - cell : 0);
-            text += columns[i].align == Align::right ? padding + cells[i] : cells[i] + padding;
-        }
-        edge += room;
+        pieces.push_back(wrapped(cells[i], columns[i].width));
+        height = std::max(height, pieces.back().size());
     }
-    line(text, emphasised ? strong : std::string_view{});
+    for (std::size_t y = 0; y < height; ++y) {
+        std::string text;
+        for (std::size_t i = 0; i < cells.size(); ++i) {
+            const std::string piece = y < pieces[i].size() ? pieces[i][y] : std::string();
+            const std::size_t taken = display_width(piece);
+            const std::string padding = spaces(columns[i].width > taken ? columns[i].width - taken : 0);
+            text += columns[i].align == Align::right ? padding + piece : piece + padding;
+        }
+        line(text, emphasised ? strong : std::string_view{});
+    }
 }
 
 }  // namespace carboy

@@ -29,7 +29,7 @@ public:
         std::size_t width;
         Align align = Align::left;
     };
-    /// Cells padded to the columns; a cell that is too wide pushes the rest to a line of its own.
+    /// Cells padded to the columns; text too long for its column wraps within it.
     void row(const std::vector<Column>& columns, const std::vector<std::string>& cells, bool strong = false);
 
     const std::string& text() const { return text_; }

@@ -12,7 +12,8 @@ namespace carboy {
 
 namespace {
 
-const std::vector<Page::Column> ingredient_columns{{2}, {37}, {11, Page::Align::right}, {3}, {27}};
+const std::vector<Page::Column> ingredient_columns{{2}, {36}, {1}, {11, Page::Align::right}, {3}, {27}};
+const std::vector<Page::Column> result_columns{{2}, {37}, {41}};
 const std::vector<Page::Column> reading_columns{{2}, {37}, {11, Page::Align::right}, {11, Page::Align::right}};
 
 std::string_view purpose_word(Purpose purpose) {
@@ -37,7 +38,7 @@ void ingredients(Page& page, const Plan& plan, const Table& table) {
         for (const Weighing& item : plan.weigh) {
             const Reagent& reagent = table.reagents[item.reagent];
             page.row(ingredient_columns,
-                     {"", std::string(reagent.name), mass_text(item.mass), "", detail(reagent, item.purpose)}, true);
+                     {"", std::string(reagent.name), "", mass_text(item.mass), "", detail(reagent, item.purpose)}, true);
         }
     }
     if (!plan.measure.empty()) {
@@ -45,10 +46,10 @@ void ingredients(Page& page, const Plan& plan, const Table& table) {
         for (const Measurement& item : plan.measure) {
             const Reagent& reagent = table.reagents[item.reagent];
             page.row(ingredient_columns,
-                     {"", std::string(reagent.name), volume_text(item.volume), "", detail(reagent, item.purpose)}, true);
+                     {"", std::string(reagent.name), "", volume_text(item.volume), "", detail(reagent, item.purpose)}, true);
         }
     }
-    page.row(ingredient_columns, {"", "purified water, to", vessel_text(plan.request.volume), "",
+    page.row(ingredient_columns, {"", "purified water, to", "", vessel_text(plan.request.volume), "",
                                   "at " + temperature_text(plan.request.prepare_at)},
              true);
 }
@@ -72,12 +73,12 @@ std::string with_uncertainty(const Prediction& predicted) {
 void result(Page& page, const Plan& plan, const Table& table) {
     const Prediction& predicted = plan.predicted;
     page.heading(fmt::format("IN USE, AT {}", temperature_text(predicted.temperature)));
-    page.row({{2}, {39}, {39}}, {"", with_uncertainty(predicted), "expanded uncertainty, k = 2; amounts and"}, true);
-    page.row({{2}, {39}, {39}}, {"", "", "meter not included"});
-    page.row({{2}, {39}, {39}}, {"", "ionic strength", molality_text(predicted.ionic_strength)});
-    page.row({{2}, {39}, {39}}, {"", "buffer value", molality_text(predicted.buffer_value) + " per pH"});
+    page.row(result_columns,
+             {"", with_uncertainty(predicted), "expanded uncertainty, k = 2; amounts and meter not included"}, true);
+    page.row(result_columns, {"", "ionic strength", molality_text(predicted.ionic_strength)});
+    page.row(result_columns, {"", "buffer value", molality_text(predicted.buffer_value) + " per pH"});
     for (const CounterIonChoice& choice : plan.counter_ions) {
-        page.row({{2}, {39}, {39}}, {"", fmt::format("counter-ion of {}", name_of(table, choice.system)),
+        page.row(result_columns, {"", fmt::format("counter-ion of {}", name_of(table, choice.system)),
                                      fmt::format("{}{}", name_of(table, choice.counter_ion),
                                                  choice.named_by_label ? "" : " (usual one; the label names none)")});
     }
@@ -95,8 +96,8 @@ void cautions(Page& page, const Plan& plan, const Table& table) {
         }
         page.paragraph(text);
     }
-    for (const std::uint16_t index : all.advice) {
-        page.paragraph(table.cautions[index].text);
+    for (const Advice& advice : all.advice) {
+        page.paragraph(advice_text(advice, table));
     }
 }
 

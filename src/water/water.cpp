@@ -64,17 +64,19 @@ double relative_permittivity(double density, double kelvin) {
            (4.0 - 4.0 * b);
 }
 
-/// IAPWS R11-07, Release on the Ionization Constant of H2O (Bandura AV, Lvov SN, J. Phys. Chem. Ref. Data 35, 15 (2006)).
+/// IAPWS R11-07, Release on the Ionization Constant of H2O (Bandura AV, Lvov SN, J. Phys. Chem. Ref. Data 35, 15 (2006)),
+/// with the coefficients that give the release's check value, 13.906565 at 300 K and 1000 kg/m3. Another set is in
+/// circulation that differs by 0.002 at 100 °C and misses the check value.
 double ion_product_pKw(double density, double kelvin) {
     constexpr double coordination = 6;
     constexpr double molar_mass = 18.015268;
     const double rho = density / 1000.0;
     const double q =
-        rho * std::exp(-0.702132 + 8681.05 / kelvin - 24145.1 * std::pow(rho, 2.0 / 3.0) / (kelvin * kelvin));
+        rho * std::exp(-0.864671 + 8659.19 / kelvin - 22786.2 * std::pow(rho, 2.0 / 3.0) / (kelvin * kelvin));
     const double ideal_gas =
         0.61415 + 48251.33 / kelvin - 67707.93 / (kelvin * kelvin) + 10102100.0 / (kelvin * kelvin * kelvin);
     return -2.0 * coordination *
-               (std::log10(1.0 + q) - q / (1.0 + q) * rho * (0.813876 - 51.4471 / kelvin - 0.469920 * rho)) +
+               (std::log10(1.0 + q) - q / (1.0 + q) * rho * (0.642044 - 56.8534 / kelvin - 0.375754 * rho)) +
            ideal_gas + 2.0 * std::log10(molar_mass / 1000.0);
 }
 

@@ -8,7 +8,7 @@ using namespace carboy;
 namespace {
 
 ComponentId spectator(const char* name) { return id_of(bundled_table(), *find_spectator(bundled_table(), name)); }
-ComponentId system(const char* name) { return id_of(bundled_table(), *find_system(bundled_table(), name)); }
+ComponentId buffer(const char* name) { return id_of(bundled_table(), *find_system(bundled_table(), name)); }
 
 EquilibriumSolver solved(const Mixture& mixture, double celsius, const ActivityModel& model) {
     EquilibriumSolver solver(bundled_table(), mixture, Temperature::celsius(celsius), model);
@@ -49,14 +49,14 @@ TEST_CASE("a buffer at infinite dilution goes to its pK, then to water's neutral
     double previous = 1;
     for (const double total : {0.05, 0.005, 5e-4}) {
         Mixture mixture;
-        mixture.add(system("phosphate"), Molality::mol_per_kg(total));
+        mixture.add(buffer("phosphate"), Molality::mol_per_kg(total));
         mixture.add(spectator("Na+"), Molality::mol_per_kg(1.5 * total));
         const double gap = std::abs(solved(mixture, 25, davies_model()).ph().value() - pK2);
         CHECK(gap < 0.5 * previous);
         previous = gap;
     }
     Mixture traces;
-    traces.add(system("phosphate"), Molality::mol_per_kg(1e-13));
+    traces.add(buffer("phosphate"), Molality::mol_per_kg(1e-13));
     traces.add(spectator("Na+"), Molality::mol_per_kg(1.5e-13));
     const auto solver = solved(traces, 25, davies_model());
     CHECK(solver.ph().value() == Approx(solver.water().pKw / 2).margin(1e-5));
@@ -67,7 +67,7 @@ TEST_CASE("ideal weak acid against its cubic", "[laws][limits]") {
     const double k = std::pow(10, -thermodynamic_pK(*find_system(bundled_table(), "acetate"), 0, Temperature{}));
     for (const double c : {1e-7, 1e-6, 1e-5, 1e-3, 0.1, 1.0}) {
         Mixture mixture;
-        mixture.add(system("acetate"), Molality::mol_per_kg(c));
+        mixture.add(buffer("acetate"), Molality::mol_per_kg(c));
         const auto solver = solved(mixture, 25, ideal_model());
         const double kw = std::pow(10, -solver.water().pKw);
         const double b = k, p = -(k * c + kw), q = -k * kw;
