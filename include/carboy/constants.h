@@ -112,7 +112,8 @@ struct Reagent {
     /// Charge of the spectators in one mole; what electroneutrality leaves to protons (see DEVELOPERS.md).
     double strong_charge;
     State state;
-    bool usual;
+    bool usual;           ///< the article a bench most often has among those with the same supplies
+    bool rarely_stocked;  ///< few benches keep it; the planner takes it last
     Figure assay;                    ///< mass fraction; `value` is the nominal one that weighing uses
     double assay_minimum;            ///< NaN when not stated
     Figure strength_mol_per_L;       ///< of solutions and liquids; computed from mass percent and density if given so

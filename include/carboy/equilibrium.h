@@ -140,7 +140,7 @@ private:
     std::vector<double> molality_;
 
     double ion_product_ = 0;
-    double log_activity_H_ = 0;  ///< natural logarithm
+    double activity_H_ = 1e-7;
     double ionic_strength_ = 0;
     double water_activity_ = 1;
     Balance spectators_;

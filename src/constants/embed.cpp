@@ -107,9 +107,9 @@ std::string reagent(Arrays& arrays, const Reagent& r) {
     });
     const std::string ghs = fmt::format("{{{}, {}, {}, Evidence{{{}}}}}", quoted(r.ghs.signal_word), indices(arrays, r.ghs.statements),
                                         r.ghs.source, static_cast<int>(r.ghs.evidence));
-    return fmt::format("{{{}, {}, {}, {}, Evidence{{{}}}, {}, {}, {}, State{{{}}}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}}}",
+    return fmt::format("{{{}, {}, {}, {}, Evidence{{{}}}, {}, {}, {}, State{{{}}}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}}}",
                        quoted(r.name), words(arrays, r.names), quoted(r.formula), quoted(r.cas), static_cast<int>(r.cas_evidence),
-                       number(r.molar_mass_g_per_mol), supplies, number(r.strong_charge), static_cast<int>(r.state), r.usual,
+                       number(r.molar_mass_g_per_mol), supplies, number(r.strong_charge), static_cast<int>(r.state), r.usual, r.rarely_stocked,
                        figure(r.assay), number(r.assay_minimum), figure(r.strength_mol_per_L), figure(r.mass_percent),
                        figure(r.density_g_per_mL), figure(r.solubility_g_per_L), ghs, indices(arrays, r.cautions), quoted(r.note));
 }

@@ -114,7 +114,7 @@ void TableBuilder::read_reagents(const DocumentNode& document) {
         return;
     }
     for (const DocumentNode& node : document.at("reagents").elements()) {
-        if (!node.is_object_with({"name", "names", "formula", "cas", "cas_evidence", "supplies", "state", "usual", "assay", "strength",
+        if (!node.is_object_with({"name", "names", "formula", "cas", "cas_evidence", "supplies", "state", "usual", "rarely_stocked", "assay", "strength",
                                   "density_g_per_mL", "solubility_g_per_L", "ghs", "cautions", "source", "evidence", "note"})) {
             continue;
         }
@@ -160,6 +160,7 @@ void TableBuilder::read_reagents(const DocumentNode& document) {
         }
         reagent.state = state == "liquid" ? State::liquid : state == "solution" ? State::solution : State::solid;
         reagent.usual = node.has("usual") && node.at("usual").boolean();
+        reagent.rarely_stocked = node.has("rarely_stocked") && node.at("rarely_stocked").boolean();
         reagent.assay = unknown_figure();
         reagent.assay_minimum = std::numeric_limits<double>::quiet_NaN();
         if (node.has("assay")) {

@@ -24,6 +24,12 @@ constexpr double ph_tolerance = 1e-12;
 constexpr double charge_tolerance = 1e-14;
 constexpr double ionic_strength_tolerance = 1e-13;
 
+/// exp(x) to within x^5/720 of it, and positive for every x: a Newton step corrects itself, so it need not be exact.
+double near_exp(double x) {
+    const double even = 12.0 + x * x;
+    return (even + 6.0 * x) / (even - 6.0 * x);
+}
+
 double ten_to(double exponent) { return std::exp(exponent * std::numbers::ln10); }
 
 }  // namespace
@@ -74,8 +80,11 @@ void EquilibriumSolver::evaluate_activities() {
     Activities activities{gamma_, log_slope_, 1.0};
     model_->evaluate(water_, {charge_, molality_, formula_, ionic_strength_, highest_charge_}, activities);
     water_activity_ = activities.water_activity;
+    const double* gamma = gamma_.data();
+    const double* dissociation = dissociation_.data();
+    double* ratio = ratio_.data();
     for (std::size_t i = first_part; i < system_species_end_; ++i) {
-        ratio_[i] = dissociation_[i] * gamma_[i - 1] / gamma_[i];
+        ratio[i] = dissociation[i] * gamma[i - 1] / gamma[i];
     }
 }
 
@@ -83,12 +92,14 @@ void EquilibriumSolver::evaluate_activities() {
 /// system's deviation from a whole charge is many orders smaller than the charge, and it decides the pH.
 void EquilibriumSolver::add_system(const Part& part, double inverse_activity) {
     double* weight = &molality_[part.first];
+    const double* ratio = &ratio_[part.first];
+    const double* log_slope = &log_slope_[part.first];
     weight[0] = 1.0;
     double sum = 1.0;
     double largest = 1.0;
     std::size_t dominant = 0;
     for (std::size_t j = 1; j < part.count; ++j) {
-        weight[j] = weight[j - 1] * ratio_[part.first + j] * inverse_activity;
+        weight[j] = weight[j - 1] * (ratio[j] * inverse_activity);
         sum += weight[j];
         if (weight[j] > largest) {
             largest = weight[j];
@@ -105,7 +116,7 @@ void EquilibriumSolver::add_system(const Part& part, double inverse_activity) {
         weight[j] = m;
         const double mu = m * u;
         const double muu = mu * u;
-        const double slope = log_slope_[part.first + j];
+        const double slope = log_slope[j];
         m1 += mu;
         m2 += muu;
         m3 += muu * u;
@@ -130,9 +141,8 @@ void EquilibriumSolver::add_system(const Part& part, double inverse_activity) {
 }
 
 void EquilibriumSolver::evaluate_balance() {
-    const double activity = std::exp(log_activity_H_);
-    const double inverse_activity = 1.0 / activity;
-    const double h = activity / gamma_[hydrogen];
+    const double inverse_activity = 1.0 / activity_H_;
+    const double h = activity_H_ / gamma_[hydrogen];
     const double oh = ion_product_ * water_activity_ * inverse_activity / gamma_[hydroxide];
     molality_[hydrogen] = h;
     molality_[hydroxide] = oh;
@@ -209,7 +219,7 @@ double EquilibriumSolver::first_guess(const Crossing& crossing) const {
         const double total = parts_[step.part].total;
         const double fraction = rest / total;
         if (fraction > clearly_partial && fraction < 1.0 - clearly_partial) {
-            return std::log(ratio_[step.species] * (1.0 - fraction) / fraction);
+            return ratio_[step.species] * (1.0 - fraction) / fraction;
         }
         if (fraction >= 0.5) {
             rest -= total;
@@ -228,7 +238,7 @@ double EquilibriumSolver::first_guess(const Crossing& crossing) const {
         }
     }
     const double root = std::sqrt(rest * rest + 4.0 * times_a * over_a);
-    return std::log(rest > 0 ? 2.0 * over_a / (rest + root) : (root - rest) / (2.0 * times_a));
+    return rest > 0 ? 2.0 * over_a / (rest + root) : (root - rest) / (2.0 * times_a);
 }
 
 bool EquilibriumSolver::converge_jointly(int most_iterations) {
@@ -242,8 +252,9 @@ bool EquilibriumSolver::converge_jointly(int most_iterations) {
         double dx = 0;
         double dI = 0;
         if (determinant > 0.05 * b.charge_by_x) {
-            dx = -(b.charge * feedback + mismatch * b.charge_by_I) / determinant;
-            dI = (mismatch * b.charge_by_x - b.ionic_strength_by_x * b.charge) / determinant;
+            const double inverse = 1.0 / determinant;
+            dx = -(b.charge * feedback + mismatch * b.charge_by_I) * inverse;
+            dI = (mismatch * b.charge_by_x - b.ionic_strength_by_x * b.charge) * inverse;
         } else {
             // Far outside the range of the activity model its feedback can run away; plain substitution does not.
             dx = -b.charge / b.charge_by_x;
@@ -253,7 +264,7 @@ bool EquilibriumSolver::converge_jointly(int most_iterations) {
             std::abs(b.charge) <= charge_tolerance * ions()) {
             return true;
         }
-        log_activity_H_ += std::clamp(dx, -longest_step, longest_step);
+        activity_H_ *= near_exp(std::clamp(dx, -longest_step, longest_step));
         ionic_strength_ = std::clamp(ionic_strength_ + dI, 0.2 * ionic_strength_, 5.0 * ionic_strength_ + 1e-7);
         evaluate_activities();
     }
@@ -262,17 +273,20 @@ bool EquilibriumSolver::converge_jointly(int most_iterations) {
 
 /// Root of the charge balance in x alone. The balance rises strictly with x, so the bracket only shrinks.
 void EquilibriumSolver::bracket_at_fixed_activities() {
+    constexpr double rounding = 1e-15;
     double low = -40.0 * std::numbers::ln10;
     double high = 20.0 * std::numbers::ln10;
-    for (int iteration = 0; iteration < 400 && high - low > 1e-15 * std::abs(low); ++iteration) {
+    double x = std::clamp(std::log(activity_H_), low, high);
+    for (int iteration = 0; iteration < 400 && high - low > rounding * std::abs(low); ++iteration) {
+        activity_H_ = std::exp(x);
         evaluate_balance();
-        (balance_.charge > 0 ? high : low) = log_activity_H_;
-        const double newton = log_activity_H_ - balance_.charge / balance_.charge_by_x;
+        (balance_.charge > 0 ? high : low) = x;
+        const double newton = x - balance_.charge / balance_.charge_by_x;
         const double next = newton > low && newton < high && iteration % 3 != 2 ? newton : 0.5 * (low + high);
-        if (std::abs(next - log_activity_H_) < 1e-15 * std::abs(low)) {
+        if (std::abs(next - x) < rounding * std::abs(low)) {
             break;
         }
-        log_activity_H_ = next;
+        x = next;
     }
 }
 
@@ -301,7 +315,7 @@ void EquilibriumSolver::solve() {
     const Crossing crossing = find_crossing();
     ionic_strength_ = crossing.ionic_strength + 1e-7;  // what water itself brings
     evaluate_activities();
-    log_activity_H_ = first_guess(crossing);
+    activity_H_ = first_guess(crossing);
     if (converge_jointly(50)) {
         return;
     }
@@ -320,7 +334,7 @@ void EquilibriumSolver::solve() {
 
 void EquilibriumSolver::hold_at(PH ph) {
     take_totals();
-    log_activity_H_ = -ph.value() * std::numbers::ln10;
+    activity_H_ = ten_to(-ph.value());
     if (!(ionic_strength_ > 0)) {
         ionic_strength_ = 1e-7;
     }
@@ -339,7 +353,7 @@ void EquilibriumSolver::hold_at(PH ph) {
                 fmt::format("the ionic strength at pH {} did not converge", ph.value()), {}, "please report this line");
 }
 
-PH EquilibriumSolver::ph() const { return PH(-log_activity_H_ / std::numbers::ln10); }
+PH EquilibriumSolver::ph() const { return PH(-std::log10(activity_H_)); }
 
 Molality EquilibriumSolver::buffer_value() const {
     return Molality::mol_per_kg(balance_.charge_by_x * std::numbers::ln10);

@@ -8,6 +8,7 @@
 #include "notation/items.h"
 #include "notation/line.h"
 #include "notation/quantity_reader.h"
+#include "plan/articles.h"
 
 namespace carboy {
 
@@ -180,8 +181,18 @@ private:
         label_.buffers.push_back({named.system, {quantity.value, quantity.unit}, named.counter_ion});
     }
 
-    void add_additive(const Ingredient& ingredient, const Reagent& reagent) {
+    /// An amount in moles under a name that says nothing of water or strength means any article of that chemistry.
+    std::uint16_t article_meant(const Ingredient& ingredient, const Reagent& reagent) const {
         const auto index = static_cast<std::uint16_t>(&reagent - table_.reagents.data());
+        const std::string name = lower(text_of(line_, ingredient.name));
+        const bool in_moles = ingredient.quantity.unit == ConcentrationUnit::mol_per_L || ingredient.quantity.unit == ConcentrationUnit::mol_per_kg;
+        const bool particular = name == reagent.cas || name.find("hydr") != std::string::npos || name.find('.') != std::string::npos ||
+                                name.find("\u00B7") != std::string::npos || name.find('%') != std::string::npos;
+        return in_moles && !particular ? usual_article(table_, index) : index;
+    }
+
+    void add_additive(const Ingredient& ingredient, const Reagent& reagent) {
+        const std::uint16_t index = article_meant(ingredient, reagent);
         for (const AdditiveItem& item : label_.additives) {
             if (item.reagent == index) {
                 line_.fail("duplicate_item", fmt::format("{} stands twice", reagent.name), ingredient.whole.begin, ingredient.whole.end,

@@ -70,6 +70,15 @@ std::optional<Chemistry> salt_of(const Table& table, ComponentId cation, Compone
     return found.empty() ? std::nullopt : std::optional(std::move(found.front()));
 }
 
+std::uint16_t usual_article(const Table& table, std::uint16_t reagent) {
+    for (std::size_t i = 0; i < table.reagents.size(); ++i) {
+        if (table.reagents[i].usual && same_supplies(table.reagents[i], table.reagents[reagent])) {
+            return static_cast<std::uint16_t>(i);
+        }
+    }
+    return reagent;
+}
+
 std::uint16_t article_to_titrate_with(const Table& table, const Chemistry& chemistry, Amount amount, Volume total) {
     constexpr double least = 0.005;  // common practice, no source: a titrant should be 0.5 to 10 % of the volume
     constexpr double most = 0.10;

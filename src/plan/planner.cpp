@@ -45,16 +45,21 @@ bool feasible(const LinearProblem::Answer& answer) {
                         [&](double mol) { return negative(mol, largest); });
 }
 
-/// Lower is better: usual counter-ions, then few weighings, then little titrant, then little of everything.
-std::tuple<std::size_t, int, double, double> rank(const Solved& solved) {
+/// Lower is better: usual counter-ions, then articles that benches keep, then few weighings, then little titrant, then little
+/// of everything.
+std::tuple<std::size_t, int, int, double, double> rank(const Solved& solved, const Table& table) {
     const auto& amounts = solved.answer.amounts_mol;
     const std::size_t extra = solved.candidate->forms.size();
     double total = 0;
     for (const double mol : amounts) {
         total += std::max(mol, 0.0);
     }
+    int rare = 0;
+    for (const std::uint16_t column : solved.columns) {
+        rare += table.reagents[column].rarely_stocked ? 1 : 0;
+    }
     const bool titrated = solved.candidate->route == Route::titrated;
-    return {solved.candidate->set, titrated ? 0 : 1, titrated ? amounts[extra] : 0.0, total};
+    return {solved.candidate->set, rare, titrated ? 0 : 1, titrated ? amounts[extra] : 0.0, total};
 }
 
 void check(const Request& request) {
@@ -98,7 +103,7 @@ std::vector<LinearProblem::Total> totals_of(const Request& request) {
 }
 
 /// Best candidate, or an Error that says in the bench's words why there is none.
-Solved choose(LinearProblem& problem, const std::vector<Candidate>& all, const Shortfall& shortfall) {
+Solved choose(LinearProblem& problem, const Table& table, const std::vector<Candidate>& all, const Shortfall& shortfall) {
     constexpr double good_enough_to_rank = 1e-4;
     std::optional<Solved> best;
     for (const Candidate& candidate : all) {
@@ -111,7 +116,7 @@ Solved choose(LinearProblem& problem, const std::vector<Candidate>& all, const S
             continue;
         }
         solved.answer = std::move(*answer);
-        if (!best || rank(solved) < rank(*best)) {
+        if (!best || rank(solved, table) < rank(*best, table)) {
             best = std::move(solved);
         }
     }
@@ -171,7 +176,7 @@ void plan_to_ph(Plan& plan, const Table& table, const Preparation& fixed, const 
     if (request.ionic_strength) {
         problem.ask_ionic_strength(*request.ionic_strength);
     }
-    const Solved solved = choose(problem, all, shortfall);
+    const Solved solved = choose(problem, table, all, shortfall);
     const Candidate& chosen = *solved.candidate;
     plan.route = chosen.route;
     plan.counter_ions = sets[chosen.set].choices;

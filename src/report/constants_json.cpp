@@ -111,6 +111,7 @@ ordered_json reagent_json(const Reagent& reagent, const Table& table) {
                       : reagent.state == State::liquid ? "liquid"
                                                        : "solution"},
             {"usual", reagent.usual},
+            {"rarely_stocked", reagent.rarely_stocked},
             {"assay", figure_json(reagent.assay, table)},
             {"assay_minimum", number_or_null(reagent.assay_minimum)},
             {"mass_percent", figure_json(reagent.mass_percent, table)},

@@ -67,9 +67,11 @@ public:
                 const auto s = species(trial);
                 return s[0] - s[1] - s[2] - 2 * s[3] - 3 * s[4] + strong_charge;
             };
+            // pH to 1e-12, as the solver gives it: 2^(1 - bits) of a pH near 7.
+            constexpr int bits = 44;
             std::uintmax_t iterations = 100;
             const auto bracket = boost::math::tools::toms748_solve(charge, 0.0, 14.0,
-                                                                   boost::math::tools::eps_tolerance<double>(42), iterations);
+                                                                   boost::math::tools::eps_tolerance<double>(bits), iterations);
             ph = 0.5 * (bracket.first + bracket.second);
             const auto s = species(ph);
             const double next = spectators_half_squares + 0.5 * (s[0] + s[1] + s[2] + 4 * s[3] + 9 * s[4]);
