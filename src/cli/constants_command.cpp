@@ -1,5 +1,6 @@
 #include <CLI/CLI.hpp>
 #include <fmt/format.h>
+#include <fmt/ranges.h>
 #include <memory>
 
 #include "carboy/constants_file.h"
@@ -125,19 +126,19 @@ Action declare_constants(CLI::App& app, SharedOptions*& shared) {
         sub->callback([action, run] { *action = run; });
         return sub;
     };
-    declare("list", "List the systems (default), reagents or ions", list)
+    declare("list", "List systems, reagents or ions", list)
         ->add_option("what", options->listing, "systems, reagents or ions")
         ->check(CLI::IsMember({"systems", "reagents", "ions"}))
         ->capture_default_str();
-    declare("show", "Show all the table holds under a name or CAS number", show)
+    declare("show", "Show all that is held under a name", show)
         ->add_option("name", options->name, "System, ion or reagent")
         ->required()
         ->type_name("NAME");
-    declare("check", "Check a file that is to be laid over the table; every fault with its place", check)
+    declare("check", "Check a file to lay over: every fault", check)
         ->add_option("file", options->file, "Constants file ('-' for standard input)")
         ->required()
         ->type_name("FILE");
-    declare("sources", "List the publications behind the figures", sources);
+    declare("sources", "List the publications behind it", sources);
     return [options, action] { return (*action)(*options); };
 }
 

@@ -3,6 +3,7 @@
 #include <cerrno>
 #include <cstdio>
 #include <cstring>
+#include <filesystem>
 #include <fmt/format.h>
 #include <memory>
 #include <unistd.h>
@@ -21,6 +22,12 @@ using File = std::unique_ptr<std::FILE, Close>;
 Error file_error(std::string code, const std::string& path, std::string_view what, int reason) {
     return {ErrorKind::file, std::move(code), fmt::format("{}: {}", what, std::strerror(reason)), path,
             "check the path, its permissions and the space left"};
+}
+
+void write_to(std::FILE* stream, std::string_view text, const std::string& name) {
+    if (std::fwrite(text.data(), 1, text.size(), stream) != text.size() || std::fflush(stream) != 0) {
+        throw file_error("cannot_write", name, "the result cannot be written", errno);
+    }
 }
 
 }  // namespace
@@ -47,13 +54,25 @@ std::string read_file(const std::string& path) {
 }
 
 void write_result(std::string_view text, const std::string& path) {
-    if (path.empty()) {
-        if (std::fwrite(text.data(), 1, text.size(), stdout) != text.size() || std::fflush(stdout) != 0) {
-            throw file_error("cannot_write", "standard output", "the result cannot be written", errno);
-        }
+    if (path.empty() || path == "-") {
+        write_to(stdout, text, "standard output");
         return;
     }
-    const std::string partial = fmt::format("{}.{}.partial", path, getpid());
+    std::error_code ignored;
+    const auto status = std::filesystem::status(path, ignored);
+    // A device or a pipe is written to, never replaced.
+    if (std::filesystem::exists(status) && !std::filesystem::is_regular_file(status)) {
+        File file(std::fopen(path.c_str(), "wb"));
+        if (!file) {
+            throw file_error("cannot_write", path, "it cannot be opened for writing", errno);
+        }
+        write_to(file.get(), text, path);
+        return;
+    }
+    // Through a symbolic link the file it points to is replaced, not the link.
+    const std::filesystem::path resolved = std::filesystem::weakly_canonical(path, ignored);
+    const std::string target = ignored ? path : resolved.string();
+    const std::string partial = fmt::format("{}.{}.partial", target, getpid());
     const auto give_up = [&](std::string_view what) {
         const int reason = errno;
         std::remove(partial.c_str());
@@ -68,7 +87,7 @@ void write_result(std::string_view text, const std::string& path) {
         give_up("the file cannot be written");
     }
     file.reset();
-    if (std::rename(partial.c_str(), path.c_str()) != 0) {
+    if (std::rename(partial.c_str(), target.c_str()) != 0) {
         give_up("the finished file cannot be put in its place");
     }
 }

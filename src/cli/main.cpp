@@ -3,6 +3,7 @@
 #include <cstdio>
 #include <exception>
 #include <fmt/format.h>
+#include <fmt/ranges.h>
 #include <string>
 #include <string_view>
 #include <unistd.h>
@@ -28,10 +29,10 @@ struct Command {
 };
 
 constexpr std::array commands{
-    Command{"recipe", "Plan the make-up of a buffer: what to weigh, what to measure, what the meter will say",
+    Command{"recipe", "From a label to what to weigh, measure and read",
             carboy::cli::declare_recipe},
-    Command{"predict", "Tell the pH and the species of a mixture as made", carboy::cli::declare_predict},
-    Command{"constants", "Look into the constants table, or check a file to lay over it", carboy::cli::declare_constants}};
+    Command{"predict", "The pH and the species of a mixture as made", carboy::cli::declare_predict},
+    Command{"constants", "Look into the constants, or check a file of them", carboy::cli::declare_constants}};
 
 constexpr auto overview = R"(
 Examples:
@@ -56,26 +57,53 @@ void report(const Error& error, const SharedOptions* shared) {
     std::fputs(carboy::error_text(error, colour).c_str(), stderr);
 }
 
+std::string usage_of(const CLI::App& app) {
+    const std::string name = app.get_name();
+    return fmt::format("'{} --help' shows how it is used", name == "carboy" ? name : "carboy " + name);
+}
+
+/// A word where a command is expected, and none is called that.
+Error unknown_command(const std::string& word, const CLI::App& app) {
+    std::vector<std::string> names;
+    for (const CLI::App* command : app.get_subcommands([](const CLI::App*) { return true; })) {
+        names.push_back(command->get_name());
+    }
+    const auto near = carboy::nearest_words(word, names);
+    return {ErrorKind::input, "usage", fmt::format("there is no command '{}'", word), "command line",
+            near.empty() ? fmt::format("the commands are {}", fmt::join(names, ", ")) : fmt::format("did you mean {}?", near.front())};
+}
+
 /// CLI11's complaint in our form, with the nearest option or command where a word is unknown.
-Error usage_error(const CLI::ParseError& error, const CLI::App& app) {
-    std::vector<std::string> words;
-    for (const CLI::Option* option : app.get_options()) {
-        for (const std::string& name : option->get_lnames()) {
-            words.push_back("--" + name);
+Error usage_error(const CLI::ParseError& error, const CLI::App& app, const std::vector<std::string>& words) {
+    const auto code = static_cast<CLI::ExitCodes>(error.get_exit_code());
+    // After the name of the app in question, the first word that is no option was meant as a command.
+    if (code == CLI::ExitCodes::RequiredError && !app.get_subcommands([](const CLI::App*) { return true; }).empty()) {
+        bool inside = app.get_name() == "carboy";
+        for (const std::string& word : words) {
+            if (inside && !word.starts_with('-')) {
+                const auto named = [&](const CLI::App* command) { return command->get_name() == word; };
+                if (app.get_subcommands(named).empty()) {
+                    return unknown_command(word, app);
+                }
+                break;
+            }
+            inside = inside || word == app.get_name();
         }
     }
-    for (const CLI::App* command : app.get_subcommands({})) {
-        words.push_back(command->get_name());
-    }
-    const std::string message = error.what();
-    std::string help = fmt::format("'{} --help' shows how it is used", app.get_name());
-    if (error.get_exit_code() == static_cast<int>(CLI::ExitCodes::ExtrasError)) {
-        const std::string unknown = message.substr(message.find_last_of(' ') + 1);
-        if (const auto near = carboy::nearest_words(unknown, words, 1); !near.empty()) {
+    std::string told = error.what();
+    std::string help = usage_of(app);
+    if (code == CLI::ExitCodes::ExtrasError) {
+        std::vector<std::string> options;
+        for (const CLI::Option* option : app.get_options()) {
+            for (const std::string& name : option->get_lnames()) {
+                options.push_back("--" + name);
+            }
+        }
+        const std::string unknown = told.substr(told.find_last_of(' ') + 1);
+        if (const auto near = carboy::nearest_words(unknown, options, 1); !near.empty()) {
             help = fmt::format("did you mean {}? {}", near.front(), help);
         }
     }
-    std::string told = message;
     while (told.ends_with('.') || told.ends_with('\n')) {
         told.pop_back();
     }
@@ -105,7 +133,7 @@ int run(int argc, char** argv) {
                 return app.exit(error);
             }
             const auto used = app.get_subcommands();
-            throw usage_error(error, used.empty() ? app : *used.front());
+            throw usage_error(error, used.empty() ? app : *used.front(), std::vector<std::string>(argv + 1, argv + argc));
         }
         return action ? action() : 0;
     } catch (const Error& error) {

@@ -37,25 +37,28 @@ const ActivityModel& SharedOptions::activity_model() const { return *find_activi
 void add_output_options(CLI::App& app, SharedOptions& options) {
     app.add_option("--format", options.format, "text for people, json for programs")
         ->check(CLI::IsMember({"text", "json"}))
+        ->type_name("FORMAT")
         ->capture_default_str();
-    app.add_option("-o,--output", options.output_file, "Write to FILE, which appears only when it is complete")
+    app.add_option("-o,--output", options.output_file, "Write to FILE, whole or not at all")
         ->type_name("FILE");
-    app.add_option("--constants", options.constants_file, "Lay FILE over the bundled constants, entry by entry")
+    app.add_option("--constants", options.constants_file, "Lay FILE over the bundled constants")
         ->type_name("FILE");
-    app.add_option("--color", options.color, "Emphasis in text")
+    app.add_option("--color", options.color, "Emphasis in text: auto, always or never")
         ->check(CLI::IsMember({"auto", "always", "never"}))
+        ->type_name("WHEN")
         ->capture_default_str();
-    app.add_flag("-q,--quiet", options.quiet, "Nothing on standard error but errors");
+    app.add_flag("-q,--quiet", options.quiet, "Only errors on standard error");
 }
 
 void add_computing_options(CLI::App& app, SharedOptions& options) {
-    app.add_option("--at", options.at, "Temperature of use, 25 C unless the label says")->type_name("T");
-    app.add_option("--prepare-at", options.prepare_at, "Bench temperature, where volumes are filled and the meter is read [25 C]")
+    app.add_option("--at", options.at, "Temperature of use [25 C, or the label's]")->type_name("T");
+    app.add_option("--prepare-at", options.prepare_at, "Temperature at the bench and the meter [25 C]")
         ->type_name("T");
-    app.add_option("--activity", options.activity, "Activity model")
+    app.add_option("--activity", options.activity, "davies, debye-huckel or ideal")
         ->check(CLI::IsMember({"davies", "debye-huckel", "ideal"}))
+        ->type_name("MODEL")
         ->capture_default_str();
-    app.add_flag("--explain", options.explain, "Add the constants, equations and sources behind the figures");
+    app.add_flag("--explain", options.explain, "Add constants, equations and sources");
 }
 
 Table table_for(const SharedOptions& options) {

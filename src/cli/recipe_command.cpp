@@ -17,7 +17,7 @@ namespace {
 
 constexpr auto examples = R"(
 Examples:
-  carboy recipe "50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C" --volume 1L
+  carboy recipe "50 mM Tris-HCl, 150 mM NaCl, pH 7.5 at 4 C" --volume 1L
   carboy recipe "0.1 M sodium phosphate, pH 7.2" --volume 2L --route salts
   carboy recipe "20 mM HEPES-KOH, pH 7.4 at 37 C, ionic strength 0.15 M" \
       --volume 500mL --prepare-at 22C
@@ -57,6 +57,10 @@ void take_use_temperature(Request& request, const Options& options, const Table&
 
 Request request_of(const Options& options, const Table& table) {
     if (!options.request_file.empty()) {
+        if (!options.label.empty() || !options.volume.empty() || !options.shared.at.empty() || !options.shared.prepare_at.empty()) {
+            throw Error(ErrorKind::input, "usage", "--request holds the whole request: no label, --volume, --at or --prepare-at beside it",
+                        "command line", "write them into the request");
+        }
         return read_request(read_file(options.request_file), table, options.request_file);
     }
     if (options.label.empty() || options.volume.empty()) {
@@ -90,17 +94,14 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
     auto options = std::make_shared<Options>();
     shared = &options->shared;
     app.footer(examples);
-    auto* label = app.add_option("label", options->label, "What is to stand on the bottle")->type_name("LABEL");
-    auto* volume = app.add_option("--volume", options->volume, "Volume to make, such as 1L or '250 mL'")->type_name("V");
-    auto* route = app.add_option("--route", options->route, "titrated: one form and a strong acid or base; salts: two forms, no titrant")
+    app.add_option("label", options->label, "What is to stand on the bottle")->type_name("LABEL");
+    app.add_option("--volume", options->volume, "Volume to make, such as 1L or '250 mL'")->type_name("V");
+    app.add_option("--route", options->route, "any; titrated (one form, acid or base); salts (two)")
         ->check(CLI::IsMember({"any", "titrated", "salts"}))
-                      ->capture_default_str();
+        ->type_name("ROUTE")
+        ->capture_default_str();
     add_computing_options(app, options->shared);
-    app.add_option("--request", options->request_file, "Read the whole request as JSON from FILE ('-' for standard input)")
-        ->type_name("FILE")
-        ->excludes(label)
-        ->excludes(volume)
-        ->excludes(route);
+    app.add_option("--request", options->request_file, "Read a JSON request from FILE ('-': standard input)")->type_name("FILE");
     add_output_options(app, options->shared);
     return [options] { return run(*options); };
 }

@@ -6,6 +6,7 @@
 #include <cmath>
 #include <cstdio>
 #include <fmt/format.h>
+#include <fmt/ranges.h>
 #include <fstream>
 #include <map>
 #include <sstream>

@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <fmt/format.h>
+#include <fmt/ranges.h>
 #include <string>
 #include <vector>
 
@@ -240,7 +241,8 @@ private:
             reagent = form_of(*named);
             if (reagent == nullptr) {
                 line_.fail("no_reagent", fmt::format("the table has no reagent for '{}'", name), ingredient.name.begin,
-                           ingredient.name.end, "name the reagent, such as one that 'carboy constants list reagents' shows");
+                           ingredient.name.end, "'carboy constants list reagents' shows what there is; --constants adds to it",
+                           ErrorKind::no_recipe);
             }
         }
         if (reagent == nullptr) {

@@ -16,8 +16,9 @@ public:
     std::string_view text() const { return text_; }
     std::string_view where() const { return where_; }
 
-    /// Error of kind `input` whose excerpt is the bytes from `begin` to `end`.
-    [[noreturn]] void fail(std::string code, std::string message, std::size_t begin, std::size_t end, std::string help = {}) const;
+    /// Error whose excerpt is the bytes from `begin` to `end`.
+    [[noreturn]] void fail(std::string code, std::string message, std::size_t begin, std::size_t end, std::string help = {},
+                           ErrorKind kind = ErrorKind::input) const;
 
 private:
     std::string_view text_;

@@ -1,6 +1,7 @@
 #include <algorithm>
 #include <cmath>
 #include <fmt/format.h>
+#include <fmt/ranges.h>
 #include <optional>
 #include <string>
 #include <vector>

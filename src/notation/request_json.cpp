@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <fmt/format.h>
+#include <fmt/ranges.h>
 #include <initializer_list>
 #include <nlohmann/json.hpp>
 #include <string>
