@@ -45,6 +45,11 @@ Ghs TableBuilder::read_ghs(const DocumentNode& entry) {
     if (!node.is_object_with({"signal_word", "statements", "source", "evidence"})) {
         return ghs;
     }
+    for (const char* key : {"signal_word", "statements"}) {
+        if (!node.has(key)) {
+            node.fault(fmt::format("'{}' is missing", key));
+        }
+    }
     const Provenance provenance = read_provenance(node, {});
     ghs.source = provenance.source;
     ghs.evidence = provenance.evidence;
@@ -127,8 +132,8 @@ void TableBuilder::read_reagents(const DocumentNode& document) {
         if (const auto formula = formula_at(node, std::string(reagent.formula))) {
             reagent.molar_mass_g_per_mol = molar_mass(node, *formula);
         }
-        reagent.cas = keep(node.required_text("cas"));
-        if (!cas_is_sound(reagent.cas)) {
+        reagent.cas = keep(node.optional_text("cas"));  // a house compound may have none
+        if (!reagent.cas.empty() && !cas_is_sound(reagent.cas)) {
             node.fault(fmt::format("the CAS number {} fails its check digit or form", reagent.cas), "compare it with the bottle");
         }
         reagent.cas_evidence = provenance.evidence;

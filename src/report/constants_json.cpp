@@ -103,7 +103,7 @@ ordered_json reagent_json(const Reagent& reagent, const Table& table) {
             {"name", reagent.name},
             {"names", words_json(reagent.names)},
             {"formula", reagent.formula},
-            {"cas", reagent.cas},
+            {"cas", reagent.cas.empty() ? ordered_json(nullptr) : ordered_json(reagent.cas)},
             {"cas_evidence", evidence_word(reagent.cas_evidence)},
             {"molar_mass_g_per_mol", reagent.molar_mass_g_per_mol},
             {"supplies", std::move(supplies)},

@@ -112,7 +112,9 @@ void reagent_text(Page& page, const Reagent& reagent, const Table& table) {
     page.heading(fmt::format("REAGENT {}", reagent.name));
     fact(page, "also called", joined(reagent.names));
     fact(page, "formula", reagent.formula);
-    fact(page, "CAS number", fmt::format("{} ({})", reagent.cas, evidence_word(reagent.cas_evidence)));
+    if (!reagent.cas.empty()) {
+        fact(page, "CAS number", fmt::format("{} ({})", reagent.cas, evidence_word(reagent.cas_evidence)));
+    }
     fact(page, "molar mass", fmt::format("{:.4f} g/mol, from the formula", reagent.molar_mass_g_per_mol));
     fact(page, "supplies, per mole", supplies_text(reagent, table));
     figure_fact(page, "assay used", reagent.assay, "", table);

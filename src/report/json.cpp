@@ -139,7 +139,7 @@ std::string_view purpose_code(Purpose purpose) {
 ordered_json article_json(const Reagent& reagent) {
     return {{"reagent", reagent.name},
             {"formula", reagent.formula},
-            {"cas", reagent.cas},
+            {"cas", reagent.cas.empty() ? ordered_json(nullptr) : ordered_json(reagent.cas)},
             {"molar_mass_g_per_mol", reagent.molar_mass_g_per_mol}};
 }
 
