@@ -13,11 +13,11 @@ namespace carboy {
 /// Everything dissolved, as an activity model sees it. All spans have one entry per species and the same order.
 /// Models that need only the ionic strength ignore the rest; a specific-ion model needs all of it.
 struct Composition {
-    std::span<const std::int8_t> charge;              ///< in units of e
-    std::span<const double> molality_mol_per_kg;      ///< per kg of water
-    std::span<const std::string_view> formula;        ///< e.g. `HPO4^2-`; identifies the species in parameter tables
-    double ionic_strength_mol_per_kg = 0;             ///< of this composition
-    int highest_charge = 8;                           ///< no species carries more, of either sign
+    std::span<const std::int8_t> charge;          ///< in units of e
+    std::span<const double> molality_mol_per_kg;  ///< per kg of water
+    std::span<const std::string_view> formula;    ///< e.g. `HPO4^2-`; identifies the species in parameter tables
+    double ionic_strength_mol_per_kg = 0;         ///< of this composition
+    int highest_charge = 8;                       ///< no species carries more, of either sign
 };
 
 /// What a model says of a composition; spans are provided by the caller, one entry per species.

@@ -62,7 +62,8 @@ struct ComponentId {
     friend constexpr auto operator<=>(const ComponentId&, const ComponentId&) = default;
 };
 
-/// A multiprotic acid with all its conjugate bases; `species` runs from most to least protonated, one more than `steps`.
+/// A multiprotic acid with all its conjugate bases; `species` runs from most to least protonated, one more than
+/// `steps`.
 struct System {
     std::string_view name;
     std::span<const std::string_view> names;
@@ -70,7 +71,7 @@ struct System {
     std::span<const Species> species;
     std::span<const Step> steps;
     std::span<const ComponentId> counter_ions;  ///< usual one first
-    std::string_view usual_form;                ///< reagent taken for the system's bare name as an additive; may be empty
+    std::string_view usual_form;  ///< reagent taken for the system's bare name as an additive; may be empty
     Figure apparent_molar_volume_cm3_per_mol;
     std::span<const std::uint16_t> cautions;
     std::string_view note;
@@ -112,12 +113,12 @@ struct Reagent {
     /// Charge of the spectators in one mole; what electroneutrality leaves to protons (see DEVELOPERS.md).
     double strong_charge;
     State state;
-    bool usual;           ///< the article a bench most often has among those with the same supplies
-    bool rarely_stocked;  ///< few benches keep it; the planner takes it last
-    Figure assay;                    ///< mass fraction; `value` is the nominal one that weighing uses
-    double assay_minimum;            ///< NaN when not stated
-    Figure strength_mol_per_L;       ///< of solutions and liquids; computed from mass percent and density if given so
-    Figure mass_percent;             ///< NaN when the strength is given in mol/L
+    bool usual;                 ///< the article a bench most often has among those with the same supplies
+    bool rarely_stocked;        ///< few benches keep it; the planner takes it last
+    Figure assay;               ///< mass fraction; `value` is the nominal one that weighing uses
+    double assay_minimum;       ///< NaN when not stated
+    Figure strength_mol_per_L;  ///< of solutions and liquids; computed from mass percent and density if given so
+    Figure mass_percent;        ///< NaN when the strength is given in mol/L
     Figure density_g_per_mL;
     Figure solubility_g_per_L;
     Ghs ghs;

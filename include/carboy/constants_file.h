@@ -34,8 +34,9 @@ struct ConstantsDocument {
     std::string text;
 };
 
-/// Lays documents (data/schema/constants.schema.json) over a base table, entry by entry: an entry of the same name and kind
-/// is replaced in its place, others are added, so that indices into the base stay valid. Never throws for a faulty document.
+/// Lays documents (data/schema/constants.schema.json) over a base table, entry by entry: an entry of the same name and
+/// kind is replaced in its place, others are added, so that indices into the base stay valid. Never throws for a faulty
+/// document.
 ConstantsOverlay lay_over(const Table& base, const std::vector<ConstantsDocument>& documents);
 ConstantsOverlay lay_over(const Table& base, std::string_view json_text);
 

@@ -61,7 +61,7 @@ public:
 
     /// One species of the state.
     struct SpeciesState {
-        std::size_t part;           ///< index into Mixture::parts(), or `water_part` for H+ and OH-
+        std::size_t part;  ///< index into Mixture::parts(), or `water_part` for H+ and OH-
         std::string_view formula;
         int charge;
         Molality molality;
@@ -96,8 +96,8 @@ private:
     };
     /// Between which steps the charges cross zero when protons leave in the order of the pK.
     struct Crossing {
-        std::size_t step = 0;      ///< index into steps_, or their number when all are gone
-        double charge = 0;         ///< left over before that step, mol/kg
+        std::size_t step = 0;  ///< index into steps_, or their number when all are gone
+        double charge = 0;     ///< left over before that step, mol/kg
         double ionic_strength = 0;
     };
     /// Charge and ionic strength of a trial state, with derivatives in x = ln a(H+) and in I.

@@ -39,7 +39,8 @@ struct Label {
 Label read_label(std::string_view line, const Table& table, std::string_view where = "label");
 
 /// What a mixture line says was put together. `filled_at` is where its volumes were measured.
-/// Without `to V` every item must be a concentration: then mol/L items refer to one litre, mol/kg items to one kilogram of water.
+/// Without `to V` every item must be a concentration: then mol/L items refer to one litre, mol/kg items to one kilogram
+/// of water.
 Preparation read_mixture(std::string_view line, const Table& table, Temperature filled_at,
                          std::string_view where = "mixture");
 
@@ -53,6 +54,7 @@ std::optional<NamedBuffer> read_buffer_name(std::string_view text, const Table& 
 /// Up to `at_most` known names nearest to what was typed, nearest first; empty when nothing is near.
 std::vector<std::string> nearest_names(std::string_view text, const Table& table, std::size_t at_most = 3);
 /// The same over a list of words.
-std::vector<std::string> nearest_words(std::string_view text, const std::vector<std::string>& words, std::size_t at_most = 1);
+std::vector<std::string> nearest_words(std::string_view text, const std::vector<std::string>& words,
+                                       std::size_t at_most = 1);
 
 }  // namespace carboy

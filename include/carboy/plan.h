@@ -67,13 +67,13 @@ struct Plan {
     std::vector<Reading> readings;     ///< in order of the work, all at `Request::prepare_at`
     Preparation preparation;           ///< the same amounts, as the forward calculation takes them
     std::vector<ComponentId> volume_neglected;
-    Prediction predicted;              ///< at the temperature of use
-    std::vector<Warning> warnings;     ///< of the recipe as a whole; `predicted` has its own
+    Prediction predicted;           ///< at the temperature of use
+    std::vector<Warning> warnings;  ///< of the recipe as a whole; `predicted` has its own
 };
 
 /// Finds the best recipe. Every route is the same small linear problem (see DEVELOPERS.md) with other columns allowed.
-/// Throws Error `unreachable_target`, `unreachable_ionic_strength`, `no_reagent` (no_recipe) with the reason in the words of
-/// the bench, or `bad_amount`, `temperature_out_of_range`, `unusable_unit` (input).
+/// Throws Error `unreachable_target`, `unreachable_ionic_strength`, `no_reagent` (no_recipe) with the reason in the
+/// words of the bench, or `bad_amount`, `temperature_out_of_range`, `unusable_unit` (input).
 Plan plan_recipe(const Table& table, const Request& request, const ActivityModel& model);
 
 /// Everything the recipe uses, weighed and measured, each reagent once, in order of first use.

@@ -36,10 +36,10 @@ struct Prediction {
     Temperature temperature;
     PH ph;
     Molality ionic_strength;
-    Molality buffer_value;      ///< per unit of pH, at constant ionic strength
+    Molality buffer_value;  ///< per unit of pH, at constant ionic strength
     Molality charge_residual;
-    /// Sum on paper: textbook pK at 25 °C and the ratio of what was put together, no activities, no water. Empty where such
-    /// a sum does not apply.
+    /// Sum on paper: textbook pK at 25 °C and the ratio of what was put together, no activities, no water. Empty where
+    /// such a sum does not apply.
     std::optional<PH> hand_estimate;
     std::string_view activity_model;
     WaterProperties water;

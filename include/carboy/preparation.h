@@ -26,16 +26,17 @@ struct Preparation {
 /// What a preparation is, per kilogram of water.
 struct Composed {
     Mixture mixture;
-    Mass water;                                ///< in the filled volume; 1 kg when there is none
-    std::vector<ComponentId> volume_neglected; ///< components whose own volume the table does not know
+    Mass water;                                 ///< in the filled volume; 1 kg when there is none
+    std::vector<ComponentId> volume_neglected;  ///< components whose own volume the table does not know
 };
 
 /// Water is the filled volume less the apparent molar volumes of what is dissolved, at the density of water there.
-/// Water of hydration and of neutralisation belongs to the water. Error `no_room_for_water` (input) when solutes fill it all.
+/// Water of hydration and of neutralisation belongs to the water. Error `no_room_for_water` (input) when solutes fill
+/// it all.
 Composed compose(const Table& table, const Preparation& preparation);
 
-/// Volume that one mole of a reagent takes up in solution: the sum of its components' apparent molar volumes, those that
-/// the table does not know counted as zero.
+/// Volume that one mole of a reagent takes up in solution: the sum of its components' apparent molar volumes, those
+/// that the table does not know counted as zero.
 Volume volume_per_mole(const Table& table, const Reagent& reagent);
 
 }  // namespace carboy

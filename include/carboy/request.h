@@ -13,8 +13,8 @@ namespace carboy {
 /// A system that holds the pH, with its total concentration in the finished volume.
 struct BufferItem {
     ComponentId system;
-    Concentration concentration;            ///< mol/L or mol/kg
-    std::optional<ComponentId> counter_ion; ///< as the label names it; none: the planner takes the usual one
+    Concentration concentration;             ///< mol/L or mol/kg
+    std::optional<ComponentId> counter_ion;  ///< as the label names it; none: the planner takes the usual one
 };
 
 /// A reagent that is simply added: salt, chelator, preservative.
@@ -44,10 +44,10 @@ struct Request {
     std::vector<BufferItem> buffers;
     std::vector<AdditiveItem> additives;
     std::optional<PH> ph;
-    Temperature use_at;                             ///< temperature of the pH target
+    Temperature use_at;  ///< temperature of the pH target
     std::optional<IonicStrengthTarget> ionic_strength;
     Volume volume = Volume::litres(1);
-    Temperature prepare_at;                         ///< where volumes are filled and the meter is read
+    Temperature prepare_at;  ///< where volumes are filled and the meter is read
     Route route = Route::automatic;
 };
 

@@ -7,8 +7,9 @@
 
 namespace carboy {
 
-/// Reads one request as JSON: either a label line, or buffers, additives and target spelt out (data/schema/request.schema.json).
-/// Unknown keys, doubled keys, wrong types and unreadable quantities are Errors of kind `input` that name the JSON path.
+/// Reads one request as JSON: either a label line, or buffers, additives and target spelt out
+/// (data/schema/request.schema.json). Unknown keys, doubled keys, wrong types and unreadable quantities are Errors of
+/// kind `input` that name the JSON path.
 Request read_request(std::string_view json_text, const Table& table, std::string_view where = "request");
 
 /// The request for a label line; the label's own temperature and ionic strength are taken over.

@@ -7,11 +7,11 @@ namespace carboy {
 /// Properties of liquid water at 0.1 MPa that the equilibrium needs at one temperature.
 struct WaterProperties {
     Temperature temperature;
-    double density_kg_per_L = 0;         ///< Kell 1975
-    double relative_permittivity = 0;    ///< static; IAPWS R8-97
-    double pKw = 0;                      ///< -log10(m_H m_OH gamma^2 / a_w), molality basis; IAPWS R11-07
-    double debye_huckel_A = 0;           ///< log10 basis, kg^0.5 mol^-0.5
-    double debye_huckel_B_per_nm = 0;    ///< kg^0.5 mol^-0.5 nm^-1
+    double density_kg_per_L = 0;       ///< Kell 1975
+    double relative_permittivity = 0;  ///< static; IAPWS R8-97
+    double pKw = 0;                    ///< -log10(m_H m_OH gamma^2 / a_w), molality basis; IAPWS R11-07
+    double debye_huckel_A = 0;         ///< log10 basis, kg^0.5 mol^-0.5
+    double debye_huckel_B_per_nm = 0;  ///< kg^0.5 mol^-0.5 nm^-1
 };
 
 /// Mass of water in a volume of pure water.

@@ -46,8 +46,9 @@ public:
     std::string_view name() const override { return "davies"; }
     double trusted_to_mol_per_kg() const override { return 0.5; }
     double ph_uncertainty(Molality ionic_strength) const override {
-        // 0.009 is the root mean square residual on the certified standards up to 0.1 mol/kg (tests/reference); Davies gave
-        // his equation an error of about 2 % in the activity coefficient at 0.1 and 8 % at 0.5 mol/kg. From memory.
+        // 0.009 is the root mean square residual on the certified standards up to 0.1 mol/kg (tests/reference); Davies
+        // gave his equation an error of about 2 % in the activity coefficient at 0.1 and 8 % at 0.5 mol/kg. From
+        // memory.
         return growing_uncertainty(ionic_strength.mol_per_kg(), 0.009, 0.1);
     }
     void evaluate(const WaterProperties& water, const Composition& composition, Activities& out) const override {
@@ -78,8 +79,8 @@ public:
         const double ionic_strength = std::max(composition.ionic_strength_mol_per_kg, 1e-30);
         const double root = std::sqrt(ionic_strength);
         const double denominator = 1.0 + ba * root;
-        spread_over_charges(composition, scale * root / denominator,
-                            scale * 0.5 / (root * denominator * denominator), out);
+        spread_over_charges(composition, scale * root / denominator, scale * 0.5 / (root * denominator * denominator),
+                            out);
     }
 };
 
@@ -116,7 +117,8 @@ const ActivityModel& ideal_model() {
 
 const ActivityModel* find_activity_model(std::string_view name) {
     const std::array models{&davies_model(), &debye_huckel_model(), &ideal_model()};
-    const auto* hit = std::find_if(models.begin(), models.end(), [&](const auto* model) { return model->name() == name; });
+    const auto* hit =
+        std::find_if(models.begin(), models.end(), [&](const auto* model) { return model->name() == name; });
     return hit == models.end() ? nullptr : *hit;
 }
 

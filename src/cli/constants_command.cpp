@@ -1,11 +1,13 @@
+#include <memory>
+
 #include <CLI/CLI.hpp>
 #include <fmt/format.h>
 #include <fmt/ranges.h>
-#include <memory>
 
 #include "carboy/constants_file.h"
 #include "carboy/error.h"
 #include "carboy/notation.h"
+
 #include "cli/commands.h"
 #include "cli/file.h"
 #include "report/constants_json.h"
@@ -21,7 +23,7 @@ Examples:
   carboy constants list reagents
   carboy constants show HEPES
   carboy constants show 7782-85-6 --format json
-  carboy constants check my-buffers.json
+  carboy constants check own-constants.json
   carboy constants sources
 
 A file for --constants has the same form as the bundled ones; its JSON Schema
@@ -61,7 +63,8 @@ int show(const Options& options) {
         if (!near.empty()) {
             help = fmt::format("did you mean {}? {}", fmt::join(near, ", "), help);
         }
-        throw Error(ErrorKind::input, "unknown_name", fmt::format("the table knows nothing called '{}'", options.name), "NAME", help);
+        throw Error(ErrorKind::input, "unknown_name", fmt::format("the table knows nothing called '{}'", options.name),
+                    "NAME", help);
     }
     write(options, constants_entry_json(table, options.name), text);
     return 0;
@@ -74,7 +77,8 @@ nlohmann::ordered_json check_json(const Options& options, const ConstantsOverlay
     }
     auto changes = nlohmann::ordered_json::array();
     for (const ConstantsChange& change : overlay.changes) {
-        changes.push_back({{"entry", change.kind}, {"name", change.name}, {"change", change.replaced ? "replaces" : "adds"}});
+        changes.push_back(
+            {{"entry", change.kind}, {"name", change.name}, {"change", change.replaced ? "replaces" : "adds"}});
     }
     return {{"kind", "constants_check"},
             {"file", options.file},
@@ -92,7 +96,8 @@ std::string check_text(const Options& options, const ConstantsOverlay& overlay) 
         }
     }
     if (!overlay.faults.empty()) {
-        return text + fmt::format("{}: {} fault{}\n", options.file, overlay.faults.size(), overlay.faults.size() == 1 ? "" : "s");
+        return text + fmt::format("{}: {} fault{}\n", options.file, overlay.faults.size(),
+                                  overlay.faults.size() == 1 ? "" : "s");
     }
     for (const ConstantsChange& change : overlay.changes) {
         text += fmt::format("{} {} {}\n", change.replaced ? "replaces" : "adds", change.kind, change.name);

@@ -4,9 +4,10 @@
 #include <cstdio>
 #include <cstring>
 #include <filesystem>
-#include <fmt/format.h>
 #include <memory>
 #include <unistd.h>
+
+#include <fmt/format.h>
 
 #include "carboy/error.h"
 
@@ -19,14 +20,19 @@ struct Close {
 };
 using File = std::unique_ptr<std::FILE, Close>;
 
-Error file_error(std::string code, const std::string& path, std::string_view what, int reason) {
-    return {ErrorKind::file, std::move(code), fmt::format("{}: {}", what, std::strerror(reason)), path,
-            "check the path, its permissions and the space left"};
+Error cannot_read(const std::string& path, std::string_view what, int reason) {
+    return {ErrorKind::file, "cannot_read", fmt::format("{}: {}", what, std::strerror(reason)), path,
+            "check the path and its permissions"};
+}
+
+Error cannot_write(const std::string& path, std::string_view what, int reason) {
+    return {ErrorKind::file, "cannot_write", fmt::format("{}: {}", what, std::strerror(reason)), path,
+            "check the folder, its permissions and the space left"};
 }
 
 void write_to(std::FILE* stream, std::string_view text, const std::string& name) {
     if (std::fwrite(text.data(), 1, text.size(), stream) != text.size() || std::fflush(stream) != 0) {
-        throw file_error("cannot_write", name, "the result cannot be written", errno);
+        throw cannot_write(name, "the result cannot be written", errno);
     }
 }
 
@@ -38,7 +44,7 @@ std::string read_file(const std::string& path) {
     if (path != "-") {
         opened.reset(std::fopen(path.c_str(), "rb"));
         if (!opened) {
-            throw file_error("cannot_read", path, "the file cannot be opened", errno);
+            throw cannot_read(path, "the file cannot be opened", errno);
         }
         file = opened.get();
     }
@@ -48,7 +54,7 @@ std::string read_file(const std::string& path) {
         content.append(chunk, got);
     }
     if (std::ferror(file) != 0) {
-        throw file_error("cannot_read", path, "the file cannot be read", errno);
+        throw cannot_read(path, "the file cannot be read", errno);
     }
     return content;
 }
@@ -64,7 +70,7 @@ void write_result(std::string_view text, const std::string& path) {
     if (std::filesystem::exists(status) && !std::filesystem::is_regular_file(status)) {
         File file(std::fopen(path.c_str(), "wb"));
         if (!file) {
-            throw file_error("cannot_write", path, "it cannot be opened for writing", errno);
+            throw cannot_write(path, "it cannot be opened for writing", errno);
         }
         write_to(file.get(), text, path);
         return;
@@ -76,11 +82,11 @@ void write_result(std::string_view text, const std::string& path) {
     const auto give_up = [&](std::string_view what) {
         const int reason = errno;
         std::remove(partial.c_str());
-        throw file_error("cannot_write", path, what, reason);
+        throw cannot_write(path, what, reason);
     };
     File file(std::fopen(partial.c_str(), "wbx"));
     if (!file) {
-        throw file_error("cannot_write", path, "the file cannot be made", errno);
+        throw cannot_write(path, "the file cannot be made", errno);
     }
     if (std::fwrite(text.data(), 1, text.size(), file.get()) != text.size() || std::fflush(file.get()) != 0 ||
         fsync(fileno(file.get())) != 0) {

@@ -1,16 +1,18 @@
-#include <CLI/CLI.hpp>
 #include <array>
 #include <cstdio>
 #include <exception>
-#include <fmt/format.h>
-#include <fmt/ranges.h>
 #include <string>
 #include <string_view>
 #include <unistd.h>
 #include <vector>
 
+#include <CLI/CLI.hpp>
+#include <fmt/format.h>
+#include <fmt/ranges.h>
+
 #include "carboy/error.h"
 #include "carboy/notation.h"
+
 #include "cli/commands.h"
 #include "report/error_text.h"
 #include "report/json.h"
@@ -29,8 +31,7 @@ struct Command {
 };
 
 constexpr std::array commands{
-    Command{"recipe", "From a label to what to weigh, measure and read",
-            carboy::cli::declare_recipe},
+    Command{"recipe", "From a label to what to weigh, measure and read", carboy::cli::declare_recipe},
     Command{"predict", "The pH and the species of a mixture as made", carboy::cli::declare_predict},
     Command{"constants", "Look into the constants, or check a file of them", carboy::cli::declare_constants}};
 
@@ -52,8 +53,9 @@ void report(const Error& error, const SharedOptions* shared) {
         fmt::print(stderr, "{}\n", carboy::error_json(error, {}).dump());
         return;
     }
-    const bool colour = shared == nullptr || shared->color == "auto" ? isatty(STDERR_FILENO) != 0 && shared != nullptr && shared->colour()
-                                                                      : shared->color == "always";
+    const bool colour = shared == nullptr || shared->color == "auto"
+                            ? isatty(STDERR_FILENO) != 0 && shared != nullptr && shared->colour()
+                            : shared->color == "always";
     std::fputs(carboy::error_text(error, colour).c_str(), stderr);
 }
 
@@ -70,7 +72,8 @@ Error unknown_command(const std::string& word, const CLI::App& app) {
     }
     const auto near = carboy::nearest_words(word, names);
     return {ErrorKind::input, "usage", fmt::format("there is no command '{}'", word), "command line",
-            near.empty() ? fmt::format("the commands are {}", fmt::join(names, ", ")) : fmt::format("did you mean {}?", near.front())};
+            near.empty() ? fmt::format("the commands are {}", fmt::join(names, ", "))
+                         : fmt::format("did you mean {}?", near.front())};
 }
 
 /// CLI11's complaint in our form, with the nearest option or command where a word is unknown.
@@ -114,7 +117,8 @@ int run(int argc, char** argv) {
     SharedOptions* shared = nullptr;
     try {
         CLI::App app{"Recipes for buffers, from the label on the bottle to the balance and the meter.", "carboy"};
-        app.set_version_flag("--version", fmt::format("carboy {} (constants {})", CARBOY_VERSION, carboy::bundled_table().version));
+        app.set_version_flag("--version",
+                             fmt::format("carboy {} (constants {})", CARBOY_VERSION, carboy::bundled_table().version));
         app.footer(overview);
         app.require_subcommand(1);
         Action action;
@@ -133,18 +137,22 @@ int run(int argc, char** argv) {
                 return app.exit(error);
             }
             const auto used = app.get_subcommands();
-            throw usage_error(error, used.empty() ? app : *used.front(), std::vector<std::string>(argv + 1, argv + argc));
+            throw usage_error(error, used.empty() ? app : *used.front(),
+                              std::vector<std::string>(argv + 1, argv + argc));
         }
         return action ? action() : 0;
     } catch (const Error& error) {
         report(error, shared);
         return carboy::exit_status(error.kind());
     } catch (const std::exception& error) {
-        report(Error(ErrorKind::defect, "unexpected", error.what(), {}, "please report this line and what was typed"), shared);
+        report(Error(ErrorKind::defect, "unexpected", error.what(), {}, "please report this line and what was typed"),
+               shared);
         return carboy::exit_status(ErrorKind::defect);
     }
 }
 
 }  // namespace
 
-int main(int argc, char** argv) { return run(argc, argv); }
+int main(int argc, char** argv) {
+    return run(argc, argv);
+}

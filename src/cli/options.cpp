@@ -1,15 +1,17 @@
 #include "cli/options.h"
 
-#include <CLI/CLI.hpp>
 #include <cstdio>
 #include <cstdlib>
-#include <fmt/format.h>
 #include <string_view>
 #include <unistd.h>
+
+#include <CLI/CLI.hpp>
+#include <fmt/format.h>
 
 #include "carboy/constants_file.h"
 #include "carboy/error.h"
 #include "carboy/notation.h"
+
 #include "cli/file.h"
 
 namespace carboy::cli {
@@ -32,17 +34,17 @@ std::optional<Temperature> SharedOptions::bench_at() const {
     return prepare_at.empty() ? std::nullopt : std::optional(read_temperature(prepare_at, "--prepare-at"));
 }
 
-const ActivityModel& SharedOptions::activity_model() const { return *find_activity_model(activity); }
+const ActivityModel& SharedOptions::activity_model() const {
+    return *find_activity_model(activity);
+}
 
 void add_output_options(CLI::App& app, SharedOptions& options) {
     app.add_option("--format", options.format, "text for people, json for programs")
         ->check(CLI::IsMember({"text", "json"}))
         ->type_name("FORMAT")
         ->capture_default_str();
-    app.add_option("-o,--output", options.output_file, "Write to FILE, whole or not at all")
-        ->type_name("FILE");
-    app.add_option("--constants", options.constants_file, "Lay FILE over the bundled constants")
-        ->type_name("FILE");
+    app.add_option("-o,--output", options.output_file, "Write to FILE, whole or not at all")->type_name("FILE");
+    app.add_option("--constants", options.constants_file, "Lay FILE over the bundled constants")->type_name("FILE");
     app.add_option("--color", options.color, "Emphasis in text: auto, always or never")
         ->check(CLI::IsMember({"auto", "always", "never"}))
         ->type_name("WHEN")
@@ -52,8 +54,7 @@ void add_output_options(CLI::App& app, SharedOptions& options) {
 
 void add_computing_options(CLI::App& app, SharedOptions& options) {
     app.add_option("--at", options.at, "Temperature of use [25 C, or the label's]")->type_name("T");
-    app.add_option("--prepare-at", options.prepare_at, "Temperature at the bench and the meter [25 C]")
-        ->type_name("T");
+    app.add_option("--prepare-at", options.prepare_at, "Temperature at the bench and the meter [25 C]")->type_name("T");
     app.add_option("--activity", options.activity, "davies, debye-huckel or ideal")
         ->check(CLI::IsMember({"davies", "debye-huckel", "ideal"}))
         ->type_name("MODEL")
@@ -72,12 +73,13 @@ Table table_for(const SharedOptions& options) {
             overlay.faults.size() > 1 ? fmt::format(" (and {} more)", overlay.faults.size() - 1) : std::string();
         throw Error(ErrorKind::data, "invalid_constants",
                     fmt::format("{}: {}{}", first.path.empty() ? "document" : first.path, first.message, more),
-                    options.constants_file, fmt::format("'carboy constants check {}' lists every fault", options.constants_file));
+                    options.constants_file,
+                    fmt::format("'carboy constants check {}' lists every fault", options.constants_file));
     }
     if (!options.quiet) {
         for (const ConstantsChange& change : overlay.changes) {
-            fmt::print(stderr, "{}: {} {} {}\n", options.constants_file, change.replaced ? "replaces" : "adds", change.kind,
-                       change.name);
+            fmt::print(stderr, "{}: {} {} {}\n", options.constants_file, change.replaced ? "replaces" : "adds",
+                       change.kind, change.name);
         }
     }
     return std::move(overlay.table);

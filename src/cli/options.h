@@ -39,8 +39,8 @@ void add_output_options(CLI::App& app, SharedOptions& options);
 /// --at, --prepare-at, --activity, --explain: commands that compute.
 void add_computing_options(CLI::App& app, SharedOptions& options);
 
-/// The bundled table, with the user's file laid over it when one is given; what it changed is told on standard error unless
-/// quiet. Throws Error (file or data).
+/// The bundled table, with the user's file laid over it when one is given; what it changed is told on standard error
+/// unless quiet. Throws Error (file or data).
 Table table_for(const SharedOptions& options);
 
 /// One command: its options are declared on a CLI::App, and it runs later.

@@ -1,9 +1,11 @@
-#include <CLI/CLI.hpp>
 #include <memory>
+
+#include <CLI/CLI.hpp>
 
 #include "carboy/notation.h"
 #include "carboy/prediction.h"
 #include "carboy/preparation.h"
+
 #include "cli/commands.h"
 #include "cli/file.h"
 #include "report/json.h"
@@ -33,8 +35,9 @@ int run(const Options& options) {
     const Table table = table_for(options.shared);
     const Temperature bench = options.shared.bench_at().value_or(Temperature{});
     const Preparation preparation = read_mixture(options.mixture, table, bench);
-    const Prediction prediction = predict(table, compose(table, preparation).mixture,
-                                          options.shared.use_at().value_or(Temperature{}), options.shared.activity_model());
+    const Prediction prediction =
+        predict(table, compose(table, preparation).mixture, options.shared.use_at().value_or(Temperature{}),
+                options.shared.activity_model());
     if (options.shared.json()) {
         write_result(prediction_json(prediction, table).dump() + "\n", options.shared.output_file);
     } else {

@@ -1,11 +1,13 @@
+#include <memory>
+
 #include <CLI/CLI.hpp>
 #include <fmt/format.h>
-#include <memory>
 
 #include "carboy/error.h"
 #include "carboy/notation.h"
 #include "carboy/plan.h"
 #include "carboy/request_json.h"
+
 #include "cli/commands.h"
 #include "cli/file.h"
 #include "report/json.h"
@@ -49,23 +51,27 @@ void take_use_temperature(Request& request, const Options& options, const Table&
     const auto on_label = read_label(options.label, table).ph_at;
     if (on_label && *on_label != *use_at) {
         throw Error(ErrorKind::input, "two_temperatures",
-                    fmt::format("the label says {:g} °C and --at says {:g} °C", on_label->celsius(), use_at->celsius()), "--at",
-                    "leave one of them out");
+                    fmt::format("the label says {:g} °C and --at says {:g} °C", on_label->celsius(), use_at->celsius()),
+                    "--at", "leave one of them out");
     }
     request.use_at = *use_at;
 }
 
 Request request_of(const Options& options, const Table& table) {
     if (!options.request_file.empty()) {
-        if (!options.label.empty() || !options.volume.empty() || !options.shared.at.empty() || !options.shared.prepare_at.empty()) {
-            throw Error(ErrorKind::input, "usage", "--request holds the whole request: no label, --volume, --at or --prepare-at beside it",
+        if (!options.label.empty() || !options.volume.empty() || !options.shared.at.empty() ||
+            !options.shared.prepare_at.empty()) {
+            throw Error(ErrorKind::input, "usage",
+                        "--request holds the whole request: no label, --volume, --at or --prepare-at beside it",
                         "command line", "write them into the request");
         }
         return read_request(read_file(options.request_file), table, options.request_file);
     }
     if (options.label.empty() || options.volume.empty()) {
-        throw Error(ErrorKind::input, "usage", options.label.empty() ? "a label is missing" : "--volume is missing", "command line",
-                    "'carboy recipe \"50 mM Tris-HCl, pH 8.0\" --volume 1L' is a whole command; 'carboy recipe --help' tells more");
+        throw Error(ErrorKind::input, "usage", options.label.empty() ? "a label is missing" : "--volume is missing",
+                    "command line",
+                    "'carboy recipe \"50 mM Tris-HCl, pH 8.0\" --volume 1L' is a whole command; 'carboy recipe --help' "
+                    "tells more");
     }
     Request request = request_from_label(options.label, table);
     take_use_temperature(request, options, table);
@@ -96,12 +102,12 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
     app.footer(examples);
     app.add_option("label", options->label, "What is to stand on the bottle")->type_name("LABEL");
     app.add_option("--volume", options->volume, "Volume to make, such as 1L or '250 mL'")->type_name("V");
-    app.add_option("--route", options->route, "any; titrated (one form, acid or base); salts (two)")
+    app.add_option("--route", options->route, "any, titrated or salts")
         ->check(CLI::IsMember({"any", "titrated", "salts"}))
         ->type_name("ROUTE")
         ->capture_default_str();
     add_computing_options(app, options->shared);
-    app.add_option("--request", options->request_file, "Read a JSON request from FILE ('-': standard input)")->type_name("FILE");
+    app.add_option("--request", options->request_file, "Read a JSON request from FILE, or from -")->type_name("FILE");
     add_output_options(app, options->shared);
     return [options] { return run(*options); };
 }

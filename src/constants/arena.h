@@ -34,9 +34,12 @@ std::span<const T> TableBuilder::keep_array(std::vector<T> items) {
 }
 
 template <class Entry>
-std::size_t TableBuilder::place(std::vector<Entry>& entries, Entry entry, std::string_view Entry::*key, const char* kind) {
-    // Names are folded as users type them; keys of sources, elements and hazards (H360FD, H360Fd) are taken letter by letter.
-    const bool is_name = std::is_same_v<Entry, Spectator> || std::is_same_v<Entry, System> || std::is_same_v<Entry, Reagent>;
+std::size_t TableBuilder::place(std::vector<Entry>& entries, Entry entry, std::string_view Entry::*key,
+                                const char* kind) {
+    // Names are folded as users type them; keys of sources, elements and hazards (H360FD, H360Fd) are taken letter by
+    // letter.
+    const bool is_name =
+        std::is_same_v<Entry, Spectator> || std::is_same_v<Entry, System> || std::is_same_v<Entry, Reagent>;
     const auto compared = [&](std::string_view text) { return is_name ? fold_name(text) : std::string(text); };
     const std::string wanted = compared(entry.*key);
     const auto known = std::find_if(entries.begin(), entries.end(),

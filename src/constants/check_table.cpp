@@ -1,6 +1,7 @@
 #include <algorithm>
-#include <fmt/format.h>
 #include <map>
+
+#include <fmt/format.h>
 
 #include "constants/arena.h"
 #include "constants/name.h"
@@ -18,7 +19,8 @@ void TableBuilder::resolve_counter_ions() {
                 ions.push_back(*id);
             } else {
                 faults.push_back({path_of("system", systems_[index].name) + "/counter_ions",
-                                  fmt::format("there is no ion or system '{}'", name), {}});
+                                  fmt::format("there is no ion or system '{}'", name),
+                                  {}});
             }
         }
         systems_[index].counter_ions = keep_array(std::move(ions));
@@ -38,13 +40,14 @@ void TableBuilder::check_usual_forms() {
         if (reagent == reagents_.end() || std::none_of(reagent->supplies.begin(), reagent->supplies.end(),
                                                        [&](const Supply& supply) { return supply.component == id; })) {
             faults.push_back({path_of("system", system.name) + "/usual_form",
-                              fmt::format("there is no reagent '{}' that supplies {}", system.usual_form, system.name), {}});
+                              fmt::format("there is no reagent '{}' that supplies {}", system.usual_form, system.name),
+                              {}});
         }
     }
 }
 
-/// Electroneutrality says how many protons a reagent brings beyond the bare bases; its formula must then be those bases, the
-/// spectators and the protons, give or take water.
+/// Electroneutrality says how many protons a reagent brings beyond the bare bases; its formula must then be those
+/// bases, the spectators and the protons, give or take water.
 void TableBuilder::check_reagent(Reagent& reagent) {
     Formula rest;
     try {
@@ -82,8 +85,8 @@ void TableBuilder::check_reagent(Reagent& reagent) {
             }
         }
         faults.push_back({path_of("reagent", reagent.name) + "/supplies",
-                          fmt::format("{} is not what it supplies, with {:g} H+ for electroneutrality: {} left over", reagent.formula,
-                                      protons, surplus),
+                          fmt::format("{} is not what it supplies, with {:g} H+ for electroneutrality: {} left over",
+                                      reagent.formula, protons, surplus),
                           "check the formula and the counts; water need not balance"});
     }
 }
@@ -103,7 +106,9 @@ void TableBuilder::index_names() {
             names_.push_back({keep(std::move(folded)), kind, static_cast<std::uint16_t>(index)});
         } else if (owner->second != index) {
             const auto name_at = [&](std::size_t i) {
-                return kind == EntryKind::system ? systems_[i].name : kind == EntryKind::spectator ? spectators_[i].name : reagents_[i].name;
+                return kind == EntryKind::system      ? systems_[i].name
+                       : kind == EntryKind::spectator ? spectators_[i].name
+                                                      : reagents_[i].name;
             };
             faults.push_back({path_of(word, name_at(index)),
                               fmt::format("'{}' is also a name of {} '{}'", name, word, name_at(owner->second)),
@@ -121,9 +126,8 @@ void TableBuilder::index_names() {
     enter_all(EntryKind::system, "system", systems_);
     enter_all(EntryKind::spectator, "spectator", spectators_);
     enter_all(EntryKind::reagent, "reagent", reagents_);
-    std::sort(names_.begin(), names_.end(), [](const NameEntry& a, const NameEntry& b) {
-        return a.key != b.key ? a.key < b.key : a.kind < b.kind;
-    });
+    std::sort(names_.begin(), names_.end(),
+              [](const NameEntry& a, const NameEntry& b) { return a.key != b.key ? a.key < b.key : a.kind < b.kind; });
 }
 
 }  // namespace carboy

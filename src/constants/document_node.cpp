@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+
 #include <fmt/format.h>
 #include <fmt/ranges.h>
 
@@ -46,7 +47,8 @@ bool DocumentNode::is_object_with(std::initializer_list<const char*> keys) const
         if (std::none_of(keys.begin(), keys.end(), [&k = key](const char* known) { return k == known; })) {
             const std::string near = nearest_key(key, keys);
             fault(fmt::format("the key '{}' is not known here", key),
-                  near.empty() ? fmt::format("known keys: {}", fmt::join(keys, ", ")) : fmt::format("did you mean '{}'?", near));
+                  near.empty() ? fmt::format("known keys: {}", fmt::join(keys, ", "))
+                               : fmt::format("did you mean '{}'?", near));
         }
     }
     return true;

@@ -12,15 +12,17 @@
 
 namespace carboy {
 
-/// A place in a constants document: the value, its JSON path, and where to note what is wrong with it. Every getter notes a
-/// fault and gives something harmless instead of stopping, so that a user learns of all faults at once.
+/// A place in a constants document: the value, its JSON path, and where to note what is wrong with it. Every getter
+/// notes a fault and gives something harmless instead of stopping, so that a user learns of all faults at once.
 class DocumentNode {
 public:
     DocumentNode(const nlohmann::json& value, std::string path, std::vector<ConstantsFault>& faults)
         : value_(&value), path_(std::move(path)), faults_(&faults) {}
 
     const std::string& path() const { return path_; }
-    void fault(std::string message, std::string help = {}) const { faults_->push_back({path_, std::move(message), std::move(help)}); }
+    void fault(std::string message, std::string help = {}) const {
+        faults_->push_back({path_, std::move(message), std::move(help)});
+    }
 
     /// True when it is an object whose keys are all among these; each fault is noted.
     bool is_object_with(std::initializer_list<const char*> keys) const;

@@ -1,17 +1,18 @@
-// Build-time program: reads the constants documents, refuses faulty ones with every fault, and writes them as C++ constants,
-// so that the finished program neither looks for a file nor parses anything when it starts.
+// Build-time program: reads the constants documents, refuses faulty ones with every fault, and writes them as C++
+// constants, so that the finished program neither looks for a file nor parses anything when it starts.
 //
 //     carboy_embed OUT.cpp VERSION DOCUMENT.json...
 
 #include <cmath>
 #include <cstdio>
-#include <fmt/format.h>
-#include <fmt/ranges.h>
 #include <fstream>
 #include <map>
 #include <sstream>
 #include <string>
 #include <vector>
+
+#include <fmt/format.h>
+#include <fmt/ranges.h>
 
 #include "carboy/constants_file.h"
 
@@ -35,13 +36,18 @@ std::string quoted(std::string_view text) {
     return literal + "\"sv";
 }
 
-std::string number(double value) { return std::isnan(value) ? "none" : fmt::format("{:.17g}", value); }
-
-std::string figure(const Figure& f) {
-    return fmt::format("{{{}, {}, {}, Evidence{{{}}}}}", number(f.value), number(f.uncertainty), f.source, static_cast<int>(f.evidence));
+std::string number(double value) {
+    return std::isnan(value) ? "none" : fmt::format("{:.17g}", value);
 }
 
-std::string component(ComponentId id) { return fmt::format("{{ComponentKind{{{}}}, {}}}", static_cast<int>(id.kind), id.index); }
+std::string figure(const Figure& f) {
+    return fmt::format("{{{}, {}, {}, Evidence{{{}}}}}", number(f.value), number(f.uncertainty), f.source,
+                       static_cast<int>(f.evidence));
+}
+
+std::string component(ComponentId id) {
+    return fmt::format("{{ComponentKind{{{}}}, {}}}", static_cast<int>(id.kind), id.index);
+}
 
 /// Writes arrays one after the other and hands out their names; equal arrays are written once.
 class Arrays {
@@ -74,22 +80,26 @@ private:
     std::string text_;
 };
 
-std::string words(Arrays& arrays, std::span<const std::string_view> list) { return arrays.of("std::string_view", list, quoted); }
+std::string words(Arrays& arrays, std::span<const std::string_view> list) {
+    return arrays.of("std::string_view", list, quoted);
+}
 
 std::string indices(Arrays& arrays, std::span<const std::uint16_t> list) {
     return arrays.of("std::uint16_t", list, [](std::uint16_t index) { return fmt::format("{}", index); });
 }
 
 std::string step(const Step& s) {
-    return fmt::format("{{{}, {}, {}, {}, {}, {{{}, {}, {}, {}, {}}}, {}, {}, {}}}", figure(s.pK_25C), figure(s.enthalpy_kJ_per_mol),
-                       figure(s.heat_capacity_J_per_K_mol), number(s.reference_ionic_strength_mol_per_kg), s.has_expression,
-                       number(s.expression[0]), number(s.expression[1]), number(s.expression[2]), number(s.expression[3]),
+    return fmt::format("{{{}, {}, {}, {}, {}, {{{}, {}, {}, {}, {}}}, {}, {}, {}}}", figure(s.pK_25C),
+                       figure(s.enthalpy_kJ_per_mol), figure(s.heat_capacity_J_per_K_mol),
+                       number(s.reference_ionic_strength_mol_per_kg), s.has_expression, number(s.expression[0]),
+                       number(s.expression[1]), number(s.expression[2]), number(s.expression[3]),
                        number(s.expression[4]), number(s.expression_from_C), number(s.expression_to_C), quoted(s.note));
 }
 
 std::string system(Arrays& arrays, const System& s) {
     const std::string species = arrays.of("Species", s.species, [](const Species& one) {
-        return fmt::format("{{{}, {}, {}}}", quoted(one.formula), static_cast<int>(one.charge), number(one.molar_mass_g_per_mol));
+        return fmt::format("{{{}, {}, {}}}", quoted(one.formula), static_cast<int>(one.charge),
+                           number(one.molar_mass_g_per_mol));
     });
     return fmt::format("{{{}, {}, Role{{{}}}, {}, {}, {}, {}, {}, {}, {}}}", quoted(s.name), words(arrays, s.names),
                        static_cast<int>(s.role), species, arrays.of("Step", s.steps, step),
@@ -99,26 +109,31 @@ std::string system(Arrays& arrays, const System& s) {
 
 std::string spectator(Arrays& arrays, const Spectator& s) {
     return fmt::format("{{{}, {}, {}, {}, {}, {}}}", quoted(s.name), words(arrays, s.names), quoted(s.formula),
-                       static_cast<int>(s.charge), number(s.molar_mass_g_per_mol), figure(s.apparent_molar_volume_cm3_per_mol));
+                       static_cast<int>(s.charge), number(s.molar_mass_g_per_mol),
+                       figure(s.apparent_molar_volume_cm3_per_mol));
 }
 
 std::string reagent(Arrays& arrays, const Reagent& r) {
     const std::string supplies = arrays.of("Supply", r.supplies, [](const Supply& supply) {
         return fmt::format("{{{}, {}}}", component(supply.component), number(supply.count));
     });
-    const std::string ghs = fmt::format("{{{}, {}, {}, Evidence{{{}}}}}", quoted(r.ghs.signal_word), indices(arrays, r.ghs.statements),
-                                        r.ghs.source, static_cast<int>(r.ghs.evidence));
-    return fmt::format("{{{}, {}, {}, {}, Evidence{{{}}}, {}, {}, {}, State{{{}}}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}}}",
-                       quoted(r.name), words(arrays, r.names), quoted(r.formula), quoted(r.cas), static_cast<int>(r.cas_evidence),
-                       number(r.molar_mass_g_per_mol), supplies, number(r.strong_charge), static_cast<int>(r.state), r.usual, r.rarely_stocked,
-                       figure(r.assay), number(r.assay_minimum), figure(r.strength_mol_per_L), figure(r.mass_percent),
-                       figure(r.density_g_per_mL), figure(r.solubility_g_per_L), ghs, indices(arrays, r.cautions), quoted(r.note));
+    const std::string ghs =
+        fmt::format("{{{}, {}, {}, Evidence{{{}}}}}", quoted(r.ghs.signal_word), indices(arrays, r.ghs.statements),
+                    r.ghs.source, static_cast<int>(r.ghs.evidence));
+    return fmt::format(
+        "{{{}, {}, {}, {}, Evidence{{{}}}, {}, {}, {}, State{{{}}}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}}}",
+        quoted(r.name), words(arrays, r.names), quoted(r.formula), quoted(r.cas), static_cast<int>(r.cas_evidence),
+        number(r.molar_mass_g_per_mol), supplies, number(r.strong_charge), static_cast<int>(r.state), r.usual,
+        r.rarely_stocked, figure(r.assay), number(r.assay_minimum), figure(r.strength_mol_per_L),
+        figure(r.mass_percent), figure(r.density_g_per_mL), figure(r.solubility_g_per_L), ghs,
+        indices(arrays, r.cautions), quoted(r.note));
 }
 
 std::string source_code(const Table& table, std::string_view version) {
     Arrays arrays;
     const auto noted = [](const auto& item, std::string_view first, std::string_view second) {
-        return fmt::format("{{{}, {}, {}, Evidence{{{}}}}}", quoted(first), quoted(second), item.source, static_cast<int>(item.evidence));
+        return fmt::format("{{{}, {}, {}, Evidence{{{}}}}}", quoted(first), quoted(second), item.source,
+                           static_cast<int>(item.evidence));
     };
     const std::string sources = arrays.of("Source", table.sources, [](const Source& s) {
         return fmt::format("{{{}, {}, {}}}", quoted(s.key), quoted(s.citation), quoted(s.note));
@@ -128,11 +143,13 @@ std::string source_code(const Table& table, std::string_view version) {
     });
     const std::string hazards =
         arrays.of("HazardStatement", table.hazards, [&](const HazardStatement& h) { return noted(h, h.code, h.text); });
-    const std::string cautions = arrays.of("Caution", table.cautions, [&](const Caution& c) { return noted(c, c.key, c.text); });
+    const std::string cautions =
+        arrays.of("Caution", table.cautions, [&](const Caution& c) { return noted(c, c.key, c.text); });
     const std::string spectators =
         arrays.of("Spectator", table.spectators, [&](const Spectator& s) { return spectator(arrays, s); });
     const std::string systems = arrays.of("System", table.systems, [&](const System& s) { return system(arrays, s); });
-    const std::string reagents = arrays.of("Reagent", table.reagents, [&](const Reagent& r) { return reagent(arrays, r); });
+    const std::string reagents =
+        arrays.of("Reagent", table.reagents, [&](const Reagent& r) { return reagent(arrays, r); });
     const std::string names = arrays.of("NameEntry", table.names, [](const NameEntry& n) {
         return fmt::format("{{{}, EntryKind{{{}}}, {}}}", quoted(n.key), static_cast<int>(n.kind), n.index);
     });
@@ -144,7 +161,8 @@ std::string source_code(const Table& table, std::string_view version) {
         "const Table& bundled_table() {{\n"
         "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
         "    return table;\n}}\n\n}}  // namespace carboy\n",
-        arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, spectators, systems, reagents, names);
+        arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, spectators, systems,
+        reagents, names);
 }
 
 }  // namespace
@@ -168,7 +186,8 @@ int main(int argc, char** argv) {
     }
     const ConstantsOverlay overlay = lay_over(Table{}, documents);
     for (const ConstantsFault& fault : overlay.faults) {
-        fmt::print(stderr, "data/constants: {}: {}{}{}\n", fault.path, fault.message, fault.help.empty() ? "" : "; ", fault.help);
+        fmt::print(stderr, "data/constants: {}: {}{}{}\n", fault.path, fault.message, fault.help.empty() ? "" : "; ",
+                   fault.help);
     }
     for (const ConstantsChange& change : overlay.changes) {
         if (change.replaced) {

@@ -7,9 +7,15 @@ namespace carboy {
 
 namespace {
 
-bool is_upper(char c) { return c >= 'A' && c <= 'Z'; }
-bool is_lower(char c) { return c >= 'a' && c <= 'z'; }
-bool is_digit(char c) { return c >= '0' && c <= '9'; }
+bool is_upper(char c) {
+    return c >= 'A' && c <= 'Z';
+}
+bool is_lower(char c) {
+    return c >= 'a' && c <= 'z';
+}
+bool is_digit(char c) {
+    return c >= '0' && c <= '9';
+}
 
 class FormulaReader {
 public:
@@ -88,8 +94,8 @@ private:
         while (end < text_.size() && is_digit(text_[end])) {
             ++end;
         }
-        // `Na2HPO4.7H2O`: a dot before digits and an element is a hydrate; `N1.5O` a decimal count. The hydrate wins when
-        // what follows the digits is H2O.
+        // `Na2HPO4.7H2O`: a dot before digits and an element is a hydrate; `N1.5O` a decimal count. The hydrate wins
+        // when what follows the digits is H2O.
         if (end < text_.size() && text_[end] == '.' && end + 1 < text_.size() && is_digit(text_[end + 1])) {
             std::size_t after = end + 1;
             while (after < text_.size() && is_digit(text_[after])) {
@@ -160,7 +166,9 @@ private:
 
 }  // namespace
 
-Formula read_formula(std::string_view text) { return FormulaReader(text).read(); }
+Formula read_formula(std::string_view text) {
+    return FormulaReader(text).read();
+}
 
 void add(Formula& formula, const Formula& other, double count) {
     for (const auto& [symbol, number] : other.atoms) {

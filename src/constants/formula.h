@@ -23,8 +23,8 @@ private:
     std::size_t position_;
 };
 
-/// Element symbols with whole or decimal counts, nested parentheses, hydrates after `·` or `.` with a leading number that may
-/// be a fraction (`·3/2H2O`), a charge at the end as `+`, `-`, `^2+`, `^3-`. Throws FormulaError.
+/// Element symbols with whole or decimal counts, nested parentheses, hydrates after `·` or `.` with a leading number
+/// that may be a fraction (`·3/2H2O`), a charge at the end as `+`, `-`, `^2+`, `^3-`. Throws FormulaError.
 Formula read_formula(std::string_view text);
 
 /// The difference a - b, element by element; charges too.

@@ -2,6 +2,7 @@
 
 #include "carboy/constants_file.h"
 #include "carboy/error.h"
+
 #include "constants/arena.h"
 #include "constants/sha256.h"
 #include "constants/table_builder.h"
@@ -14,13 +15,15 @@ namespace {
 constexpr auto format_word = "carboy-constants/1";
 
 bool head_is_sound(const DocumentNode& node) {
-    if (!node.is_object_with({"schema", "sources", "elements", "hazards", "cautions", "spectators", "systems", "reagents", "note"})) {
+    if (!node.is_object_with(
+            {"schema", "sources", "elements", "hazards", "cautions", "spectators", "systems", "reagents", "note"})) {
         return false;
     }
     if (!node.has("schema")) {
         node.fault("'schema' is missing", fmt::format("begin with \"schema\": \"{}\"", format_word));
     } else if (node.at("schema").text() != format_word) {
-        node.at("schema").fault("this is not a format that this program reads", fmt::format("it reads \"{}\"", format_word));
+        node.at("schema").fault("this is not a format that this program reads",
+                                fmt::format("it reads \"{}\"", format_word));
     }
     return true;
 }
@@ -49,8 +52,8 @@ ConstantsOverlay lay_over(const Table& base, const std::vector<ConstantsDocument
         }
     }
     for (const auto section : {&TableBuilder::read_sources, &TableBuilder::read_elements, &TableBuilder::read_hazards,
-                               &TableBuilder::read_cautions, &TableBuilder::read_spectators, &TableBuilder::read_systems,
-                               &TableBuilder::read_reagents}) {
+                               &TableBuilder::read_cautions, &TableBuilder::read_spectators,
+                               &TableBuilder::read_systems, &TableBuilder::read_reagents}) {
         for (const DocumentNode& node : nodes) {
             (builder.*section)(node);
         }

@@ -2,6 +2,7 @@
 #include <array>
 
 #include "carboy/constants.h"
+
 #include "constants/name.h"
 
 namespace carboy {
@@ -24,9 +25,12 @@ int find(const Table& table, EntryKind kind, std::string_view name) {
 }  // namespace
 
 std::string_view evidence_word(Evidence evidence) {
-    constexpr std::array words{std::string_view("seen"),        std::string_view("near"),
-                               std::string_view("secondary"),   std::string_view("from memory"),
-                               std::string_view("common practice"), std::string_view("computed")};
+    constexpr std::array words{std::string_view("seen"),
+                               std::string_view("near"),
+                               std::string_view("secondary"),
+                               std::string_view("from memory"),
+                               std::string_view("common practice"),
+                               std::string_view("computed")};
     return words[static_cast<std::size_t>(evidence)];
 }
 

@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <cmath>
+
 #include <fmt/format.h>
 
 #include "constants/arena.h"
@@ -38,7 +39,8 @@ bool cas_is_sound(std::string_view cas) {
 Ghs TableBuilder::read_ghs(const DocumentNode& entry) {
     Ghs ghs{};
     if (!entry.has("ghs")) {
-        entry.fault("'ghs' is missing", "for an article that is not classified: {\"signal_word\": null, \"statements\": []}");
+        entry.fault("'ghs' is missing",
+                    "for an article that is not classified: {\"signal_word\": null, \"statements\": []}");
         return ghs;
     }
     const DocumentNode node = entry.at("ghs");
@@ -64,10 +66,11 @@ Ghs TableBuilder::read_ghs(const DocumentNode& entry) {
     if (node.has("statements")) {
         for (const DocumentNode& statement : node.at("statements").elements()) {
             const std::string code = statement.text();
-            const auto known =
-                std::find_if(hazards_.begin(), hazards_.end(), [&](const HazardStatement& h) { return h.code == code; });
+            const auto known = std::find_if(hazards_.begin(), hazards_.end(),
+                                            [&](const HazardStatement& h) { return h.code == code; });
             if (known == hazards_.end()) {
-                statement.fault(fmt::format("there is no hazard statement '{}'", code), "add it under 'hazards' with its text");
+                statement.fault(fmt::format("there is no hazard statement '{}'", code),
+                                "add it under 'hazards' with its text");
             } else {
                 statements.push_back(static_cast<std::uint16_t>(known - hazards_.begin()));
             }
@@ -77,7 +80,8 @@ Ghs TableBuilder::read_ghs(const DocumentNode& entry) {
     return ghs;
 }
 
-/// Strength in mol/L as given, or from the mass percent and the density; also of a pure liquid by its assay and density.
+/// Strength in mol/L as given, or from the mass percent and the density; also of a pure liquid by its assay and
+/// density.
 void TableBuilder::read_strength(const DocumentNode& entry, Reagent& reagent) {
     const Provenance provenance = read_provenance(entry, {});
     reagent.density_g_per_mL = read_figure(entry, "density_g_per_mL", 0.5, 4, provenance);
@@ -92,16 +96,17 @@ void TableBuilder::read_strength(const DocumentNode& entry, Reagent& reagent) {
         }
         const Provenance own = read_provenance(node, provenance);
         Figure& figure = node.has("mol_per_L") ? reagent.strength_mol_per_L : reagent.mass_percent;
-        figure.value = node.has("mol_per_L") ? node.at("mol_per_L").number(1e-6, 60) : node.at("mass_percent").number(1e-3, 100);
+        figure.value =
+            node.has("mol_per_L") ? node.at("mol_per_L").number(1e-6, 60) : node.at("mass_percent").number(1e-3, 100);
         figure.uncertainty = node.has("uncertainty") ? node.at("uncertainty").number(1e-9, 60)
                                                      : std::numeric_limits<double>::quiet_NaN();
         figure.source = own.source;
         figure.evidence = own.evidence;
     }
     const bool liquid = reagent.state == State::liquid;
-    const double percent = reagent.mass_percent.known()           ? reagent.mass_percent.value
-                           : liquid && reagent.assay.known()      ? 100 * reagent.assay.value
-                                                                  : std::numeric_limits<double>::quiet_NaN();
+    const double percent = reagent.mass_percent.known()      ? reagent.mass_percent.value
+                           : liquid && reagent.assay.known() ? 100 * reagent.assay.value
+                                                             : std::numeric_limits<double>::quiet_NaN();
     if (!reagent.strength_mol_per_L.known() && std::isfinite(percent) && reagent.density_g_per_mL.known()) {
         reagent.strength_mol_per_L = reagent.density_g_per_mL;
         reagent.strength_mol_per_L.uncertainty = std::numeric_limits<double>::quiet_NaN();
@@ -119,8 +124,9 @@ void TableBuilder::read_reagents(const DocumentNode& document) {
         return;
     }
     for (const DocumentNode& node : document.at("reagents").elements()) {
-        if (!node.is_object_with({"name", "names", "formula", "cas", "cas_evidence", "supplies", "state", "usual", "rarely_stocked", "assay", "strength",
-                                  "density_g_per_mL", "solubility_g_per_L", "ghs", "cautions", "source", "evidence", "note"})) {
+        if (!node.is_object_with({"name", "names", "formula", "cas", "cas_evidence", "supplies", "state", "usual",
+                                  "rarely_stocked", "assay", "strength", "density_g_per_mL", "solubility_g_per_L",
+                                  "ghs", "cautions", "source", "evidence", "note"})) {
             continue;
         }
         Reagent reagent{};
@@ -134,7 +140,8 @@ void TableBuilder::read_reagents(const DocumentNode& document) {
         }
         reagent.cas = keep(node.optional_text("cas"));  // a house compound may have none
         if (!reagent.cas.empty() && !cas_is_sound(reagent.cas)) {
-            node.fault(fmt::format("the CAS number {} fails its check digit or form", reagent.cas), "compare it with the bottle");
+            node.fault(fmt::format("the CAS number {} fails its check digit or form", reagent.cas),
+                       "compare it with the bottle");
         }
         reagent.cas_evidence = provenance.evidence;
         if (node.has("cas_evidence")) {
@@ -157,7 +164,8 @@ void TableBuilder::read_reagents(const DocumentNode& document) {
                 }
             }
         }
-        std::sort(supplies.begin(), supplies.end(), [](const Supply& a, const Supply& b) { return a.component < b.component; });
+        std::sort(supplies.begin(), supplies.end(),
+                  [](const Supply& a, const Supply& b) { return a.component < b.component; });
         reagent.supplies = keep_array(std::move(supplies));
         const std::string state = node.required_text("state");
         if (state != "solid" && state != "liquid" && state != "solution") {

@@ -1,5 +1,6 @@
 #include <array>
 #include <cmath>
+
 #include <fmt/format.h>
 
 #include "constants/arena.h"
@@ -41,8 +42,8 @@ void TableBuilder::read_expression(const DocumentNode& node, Step& step) {
     constexpr double reference_K = 298.15;
     constexpr double agreement = 0.05;
     const auto& e = step.expression;
-    const double at_25C =
-        e[0] / reference_K + e[1] + e[2] * reference_K + e[3] * std::log(reference_K) + e[4] * reference_K * reference_K;
+    const double at_25C = e[0] / reference_K + e[1] + e[2] * reference_K + e[3] * std::log(reference_K) +
+                          e[4] * reference_K * reference_K;
     if (step.pK_25C.known() && std::abs(at_25C - step.pK_25C.value) > agreement) {
         node.fault(fmt::format("the expression gives {:.3f} at 25 °C, 'pK_25C' says {:g}", at_25C, step.pK_25C.value),
                    "temperatures in the terms are in kelvin");
@@ -136,8 +137,9 @@ void TableBuilder::read_systems(const DocumentNode& document) {
             previous = formula;
         }
         if (species.size() != steps.size() + 1) {
-            node.fault(fmt::format("{} steps need {} species, {} are given", steps.size(), steps.size() + 1, species.size()),
-                       "list every protonation state under 'species'");
+            node.fault(
+                fmt::format("{} steps need {} species, {} are given", steps.size(), steps.size() + 1, species.size()),
+                "list every protonation state under 'species'");
         }
         // A faulty entry keeps a shape that later checks can walk over.
         species.resize(steps.size() + 1, Species{"", 0, 1.0});

@@ -2,6 +2,7 @@
 
 #include <array>
 #include <cstdint>
+
 #include <fmt/format.h>
 #include <nettle/sha2.h>
 

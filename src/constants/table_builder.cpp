@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <array>
 #include <cmath>
+
 #include <fmt/format.h>
 #include <fmt/ranges.h>
 
@@ -34,7 +35,9 @@ TableBuilder::TableBuilder(const Table& base)
     arena_->base_owner = base.owner;
 }
 
-std::string_view TableBuilder::keep(std::string text) { return arena_->texts.emplace_back(std::move(text)); }
+std::string_view TableBuilder::keep(std::string text) {
+    return arena_->texts.emplace_back(std::move(text));
+}
 
 std::span<const std::string_view> TableBuilder::keep_all(const std::vector<std::string>& texts) {
     std::vector<std::string_view> views;
@@ -63,8 +66,9 @@ TableBuilder::Provenance TableBuilder::read_provenance(const DocumentNode& node,
         const std::string word = node.at("evidence").text();
         const auto known = std::find(evidence_words.begin(), evidence_words.end(), word);
         if (known == evidence_words.end()) {
-            node.at("evidence").fault(fmt::format("'{}' is no evidence word", word),
-                                      fmt::format("one of: {}", fmt::join(evidence_words, ", ")));
+            node.at("evidence")
+                .fault(fmt::format("'{}' is no evidence word", word),
+                       fmt::format("one of: {}", fmt::join(evidence_words, ", ")));
         } else {
             inherited.evidence = static_cast<Evidence>(known - evidence_words.begin());
         }
@@ -100,7 +104,8 @@ std::optional<Formula> TableBuilder::formula_at(const DocumentNode& node, const 
     try {
         return read_formula(text);
     } catch (const FormulaError& error) {
-        node.fault(fmt::format("the formula '{}' cannot be read at character {}: {}", text, error.position() + 1, error.what()),
+        node.fault(fmt::format("the formula '{}' cannot be read at character {}: {}", text, error.position() + 1,
+                               error.what()),
                    "write it as Na2HPO4·7H2O, with a charge as + - ^2+ ^3-");
         return std::nullopt;
     }
@@ -109,8 +114,8 @@ std::optional<Formula> TableBuilder::formula_at(const DocumentNode& node, const 
 double TableBuilder::molar_mass(const DocumentNode& node, const Formula& formula) {
     double mass = 0;
     for (const auto& [symbol, count] : formula.atoms) {
-        const auto element = std::find_if(elements_.begin(), elements_.end(),
-                                          [&s = symbol](const Element& e) { return e.symbol == s; });
+        const auto element =
+            std::find_if(elements_.begin(), elements_.end(), [&s = symbol](const Element& e) { return e.symbol == s; });
         if (element == elements_.end()) {
             node.fault(fmt::format("there is no atomic weight for '{}'", symbol), "add it under 'elements'");
         } else {
@@ -146,8 +151,8 @@ void TableBuilder::read_sources(const DocumentNode& document) {
     }
     for (const auto& [key, node] : document.at("sources").members()) {
         if (node.is_object_with({"citation", "note", "doi"})) {
-            place(sources_, Source{keep(key), keep(node.required_text("citation")), keep(node.optional_text("note"))}, &Source::key,
-                  "source");
+            place(sources_, Source{keep(key), keep(node.required_text("citation")), keep(node.optional_text("note"))},
+                  &Source::key, "source");
         }
     }
 }
@@ -183,7 +188,8 @@ void TableBuilder::read_hazards(const DocumentNode& document) {
     for (const auto& [code, node] : document.at("hazards").members()) {
         if (node.is_object_with({"text", "source", "evidence"})) {
             const Provenance provenance = read_provenance(node, {});
-            place(hazards_, HazardStatement{keep(code), keep(node.required_text("text")), provenance.source, provenance.evidence},
+            place(hazards_,
+                  HazardStatement{keep(code), keep(node.required_text("text")), provenance.source, provenance.evidence},
                   &HazardStatement::code, "hazard");
         }
     }
@@ -196,7 +202,8 @@ void TableBuilder::read_cautions(const DocumentNode& document) {
     for (const auto& [key, node] : document.at("cautions").members()) {
         if (node.is_object_with({"text", "source", "evidence"})) {
             const Provenance provenance = read_provenance(node, {});
-            place(cautions_, Caution{keep(key), keep(node.required_text("text")), provenance.source, provenance.evidence},
+            place(cautions_,
+                  Caution{keep(key), keep(node.required_text("text")), provenance.source, provenance.evidence},
                   &Caution::key, "caution");
         }
     }
@@ -207,7 +214,8 @@ void TableBuilder::read_spectators(const DocumentNode& document) {
         return;
     }
     for (const DocumentNode& node : document.at("spectators").elements()) {
-        if (!node.is_object_with({"name", "names", "formula", "apparent_molar_volume_cm3_per_mol", "source", "evidence", "note"})) {
+        if (!node.is_object_with(
+                {"name", "names", "formula", "apparent_molar_volume_cm3_per_mol", "source", "evidence", "note"})) {
             continue;
         }
         Spectator spectator{};
@@ -230,7 +238,8 @@ std::span<const std::uint16_t> TableBuilder::read_cautions_of(const DocumentNode
     if (entry.has("cautions")) {
         for (const DocumentNode& node : entry.at("cautions").elements()) {
             const std::string key = node.text();
-            const auto known = std::find_if(cautions_.begin(), cautions_.end(), [&](const Caution& c) { return c.key == key; });
+            const auto known =
+                std::find_if(cautions_.begin(), cautions_.end(), [&](const Caution& c) { return c.key == key; });
             if (known == cautions_.end()) {
                 node.fault(fmt::format("there is no caution '{}'", key), "add it under 'cautions' with its text");
             } else {

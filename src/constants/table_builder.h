@@ -10,13 +10,15 @@
 
 #include "carboy/constants.h"
 #include "carboy/constants_file.h"
+
 #include "constants/document_node.h"
 #include "constants/formula.h"
 
 namespace carboy {
 
-/// Builds a table from a base and documents. Text and nested arrays of new entries live in an arena that the finished table
-/// owns. Sections are read in an order in which each refers only to earlier ones; what refers onwards is resolved at the end.
+/// Builds a table from a base and documents. Text and nested arrays of new entries live in an arena that the finished
+/// table owns. Sections are read in an order in which each refers only to earlier ones; what refers onwards is resolved
+/// at the end.
 class TableBuilder {
 public:
     explicit TableBuilder(const Table& base);
@@ -53,7 +55,8 @@ private:
     };
     std::optional<std::uint16_t> source_index(const DocumentNode& at, const std::string& key);
     Provenance read_provenance(const DocumentNode& node, Provenance inherited);
-    Figure read_figure(const DocumentNode& parent, const char* key, double lowest, double highest, Provenance inherited);
+    Figure read_figure(const DocumentNode& parent, const char* key, double lowest, double highest,
+                       Provenance inherited);
     std::span<const std::uint16_t> read_cautions_of(const DocumentNode& entry);
     Step read_step(const DocumentNode& node);
     void read_expression(const DocumentNode& node, Step& step);
@@ -81,11 +84,12 @@ private:
     std::vector<Reagent> reagents_;
     std::vector<NameEntry> names_;
     std::map<std::size_t, std::vector<std::string>> counter_ion_names_;  ///< by system, still to be resolved
-    std::map<std::string, std::string> paths_;                          ///< kind and name -> JSON path, of new entries
+    std::map<std::string, std::string> paths_;                           ///< kind and name -> JSON path, of new entries
 };
 
 constexpr Figure unknown_figure() {
-    return {std::numeric_limits<double>::quiet_NaN(), std::numeric_limits<double>::quiet_NaN(), 0, Evidence::from_memory};
+    return {std::numeric_limits<double>::quiet_NaN(), std::numeric_limits<double>::quiet_NaN(), 0,
+            Evidence::from_memory};
 }
 
 }  // namespace carboy

@@ -1,9 +1,10 @@
 #include <algorithm>
 #include <array>
 #include <cmath>
-#include <fmt/format.h>
 #include <numbers>
 #include <string>
+
+#include <fmt/format.h>
 
 #include "carboy/equilibrium.h"
 #include "carboy/error.h"
@@ -30,7 +31,9 @@ double near_exp(double x) {
     return (even + 6.0 * x) / (even - 6.0 * x);
 }
 
-double ten_to(double exponent) { return std::exp(exponent * std::numbers::ln10); }
+double ten_to(double exponent) {
+    return std::exp(exponent * std::numbers::ln10);
+}
 
 }  // namespace
 
@@ -204,12 +207,14 @@ EquilibriumSolver::Crossing EquilibriumSolver::find_crossing() const {
         sum_zz -= total * (2.0 * z + 1.0);
         crossing.charge -= total;
     }
-    crossing.ionic_strength = 0.5 * (sum_zz + (crossing.step == steps_.size() || crossing.charge < 0 ? std::abs(crossing.charge) : 0));
+    crossing.ionic_strength =
+        0.5 * (sum_zz + (crossing.step == steps_.size() || crossing.charge < 0 ? std::abs(crossing.charge) : 0));
     return crossing;
 }
 
 /// Well inside a step, that step alone tells the pH. Near the boundary after step k the balance reads
-/// a (1 + sum_{j<=k} n_j/K_j) + r - (Kw + sum_{j>k} n_j K_j) / a = 0 with r the charge left there: a quadratic in a(H+).
+/// a (1 + sum_{j<=k} n_j/K_j) + r - (Kw + sum_{j>k} n_j K_j) / a = 0 with r the charge left there: a quadratic in
+/// a(H+).
 double EquilibriumSolver::first_guess(const Crossing& crossing) const {
     constexpr double clearly_partial = 0.02;
     double rest = crossing.charge;
@@ -327,9 +332,10 @@ void EquilibriumSolver::solve() {
     for (const Part& part : parts_) {
         amounts += fmt::format(" {}:{:.17g}", formula_[part.first], part.total);
     }
-    throw Error(ErrorKind::defect, "not_converged",
-                fmt::format("the equilibrium of{} mol/kg at {} °C did not converge", amounts, water_.temperature.celsius()),
-                {}, "please report this line");
+    throw Error(
+        ErrorKind::defect, "not_converged",
+        fmt::format("the equilibrium of{} mol/kg at {} °C did not converge", amounts, water_.temperature.celsius()), {},
+        "please report this line");
 }
 
 void EquilibriumSolver::hold_at(PH ph) {
@@ -353,7 +359,9 @@ void EquilibriumSolver::hold_at(PH ph) {
                 fmt::format("the ionic strength at pH {} did not converge", ph.value()), {}, "please report this line");
 }
 
-PH EquilibriumSolver::ph() const { return PH(-std::log10(activity_H_)); }
+PH EquilibriumSolver::ph() const {
+    return PH(-std::log10(activity_H_));
+}
 
 Molality EquilibriumSolver::buffer_value() const {
     return Molality::mol_per_kg(balance_.charge_by_x * std::numbers::ln10);
@@ -402,6 +410,8 @@ void EquilibriumSolver::shift_pK(std::size_t part, std::size_t step, double by) 
     dissociation_[parts_[part].first + step + 1] *= ten_to(-by);
 }
 
-void EquilibriumSolver::shift_pKw(double by) { ion_product_ *= ten_to(-by); }
+void EquilibriumSolver::shift_pKw(double by) {
+    ion_product_ *= ten_to(-by);
+}
 
 }  // namespace carboy

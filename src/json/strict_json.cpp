@@ -1,10 +1,11 @@
 #include "json/strict_json.h"
 
-#include <fmt/format.h>
 #include <optional>
 #include <set>
 #include <string>
 #include <vector>
+
+#include <fmt/format.h>
 
 #include "carboy/error.h"
 

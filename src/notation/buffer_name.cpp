@@ -6,14 +6,16 @@
 #include <vector>
 
 #include "carboy/notation.h"
+
 #include "constants/name.h"
 
 namespace carboy {
 
 namespace {
 
-constexpr std::array dashes{std::string_view(" "),      std::string_view("-"),      std::string_view("\u2010"), std::string_view("\u2011"),
-                            std::string_view("\u2012"), std::string_view("\u2013"), std::string_view("\u2014"), std::string_view("\u2212")};
+constexpr std::array dashes{std::string_view(" "),      std::string_view("-"),      std::string_view("\u2010"),
+                            std::string_view("\u2011"), std::string_view("\u2012"), std::string_view("\u2013"),
+                            std::string_view("\u2014"), std::string_view("\u2212")};
 
 /// A place where a name may be divided: the text before it and after it.
 struct Division {
@@ -33,9 +35,13 @@ std::vector<Division> divisions(std::string_view text) {
     return found;
 }
 
-bool is_cation_name(std::string_view word) { return fold_name(word).ends_with("ium"); }
+bool is_cation_name(std::string_view word) {
+    return fold_name(word).ends_with("ium");
+}
 
-bool is_amine(const System& system) { return system.species.front().charge > 0; }
+bool is_amine(const System& system) {
+    return system.species.front().charge > 0;
+}
 
 /// An ion named beside a buffer: a strong one, or a system that is used as one.
 std::optional<ComponentId> ion_named(const Table& table, std::string_view name) {

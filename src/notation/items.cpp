@@ -4,10 +4,15 @@ namespace carboy {
 
 namespace {
 
-bool is_digit(char c) { return c >= '0' && c <= '9'; }
-bool is_letter(char c) { return (c >= 'a' && c <= 'z') || (c >= 'A' && c <= 'Z'); }
+bool is_digit(char c) {
+    return c >= '0' && c <= '9';
+}
+bool is_letter(char c) {
+    return (c >= 'a' && c <= 'z') || (c >= 'A' && c <= 'Z');
+}
 
-/// Locants in a name: `1,3-`, `N,N-`, `N,N'-`, `1,4-`: digit or N, comma, digit or N, then a hyphen or another comma or prime.
+/// Locants in a name: `1,3-`, `N,N-`, `N,N'-`, `1,4-`: digit or N, comma, digit or N, then a hyphen or another comma or
+/// prime.
 bool joins_locants(std::string_view text, std::size_t comma) {
     if (comma == 0 || comma + 2 >= text.size()) {
         return false;
@@ -26,7 +31,8 @@ bool joins_locants(std::string_view text, std::size_t comma) {
     if (text[next] == '\'' || (nitrogens && text[next] == ',')) {
         return true;
     }
-    return text[next] == '-' && next + 1 < text.size() && (is_letter(text[next + 1]) || text[next + 1] == '(' || text[next + 1] == '[');
+    return text[next] == '-' && next + 1 < text.size() &&
+           (is_letter(text[next + 1]) || text[next + 1] == '(' || text[next + 1] == '[');
 }
 
 }  // namespace
@@ -41,8 +47,8 @@ std::vector<Part> items_of(const Line& line) {
         }
         const Part item = trimmed(line, {begin, i});
         if (item.empty()) {
-            line.fail("empty_item", "nothing stands between the commas here", i == text.size() && i > 0 ? i - 1 : i, i + 1,
-                      "take the extra comma out");
+            line.fail("empty_item", "nothing stands between the commas here", i == text.size() && i > 0 ? i - 1 : i,
+                      i + 1, "take the extra comma out");
         }
         items.push_back(item);
         begin = i + 1;

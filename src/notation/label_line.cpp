@@ -1,10 +1,12 @@
 #include <algorithm>
-#include <fmt/format.h>
-#include <fmt/ranges.h>
 #include <string>
 #include <vector>
 
+#include <fmt/format.h>
+#include <fmt/ranges.h>
+
 #include "carboy/notation.h"
+
 #include "constants/name.h"
 #include "notation/items.h"
 #include "notation/line.h"
@@ -39,7 +41,8 @@ constexpr std::string_view ionic_strength_words = "ionic strength";
 
 class LabelReader {
 public:
-    LabelReader(std::string_view text, const Table& table, std::string_view where) : line_(text, where), table_(table) {}
+    LabelReader(std::string_view text, const Table& table, std::string_view where)
+        : line_(text, where), table_(table) {}
 
     Label read() {
         for (const Part item : items_of(line_)) {
@@ -77,16 +80,16 @@ private:
         }
         const std::string words = lower(text_of(line_, rest));
         if (!words.starts_with("at ") && !words.starts_with("at\t") && words != "at" && !words.starts_with("@")) {
-            line_.fail("trailing_text", fmt::format("'{}' does not belong to the pH", text_of(line_, rest)), rest.begin, rest.end,
-                       "after the pH only a temperature may stand, as in pH 7.5 at 4 C");
+            line_.fail("trailing_text", fmt::format("'{}' does not belong to the pH", text_of(line_, rest)), rest.begin,
+                       rest.end, "after the pH only a temperature may stand, as in pH 7.5 at 4 C");
         }
         rest = trimmed(line_, {rest.begin + (words.front() == '@' ? 1 : 2), rest.end});
         const ReadQuantity temperature = read_quantity(line_, rest);
         expect_kind(line_, temperature, QuantityKind::temperature, "pH 7.5 at 4 C");
         rest = trimmed(line_, rest);
         if (!rest.empty()) {
-            line_.fail("trailing_text", fmt::format("'{}' does not belong to the temperature", text_of(line_, rest)), rest.begin,
-                       rest.end, "put a comma before the next item");
+            line_.fail("trailing_text", fmt::format("'{}' does not belong to the temperature", text_of(line_, rest)),
+                       rest.begin, rest.end, "put a comma before the next item");
         }
         label_.ph_at = Temperature::celsius(temperature.value);
     }
@@ -102,13 +105,13 @@ private:
         const ReadQuantity quantity = read_quantity(line_, rest);
         expect_kind(line_, quantity, QuantityKind::concentration, "ionic strength 0.15 M");
         if (quantity.unit != ConcentrationUnit::mol_per_L && quantity.unit != ConcentrationUnit::mol_per_kg) {
-            line_.fail("unusable_unit", "an ionic strength is given in mol/L or mol/kg", quantity.whole.begin, quantity.whole.end,
-                       "write it like ionic strength 0.15 M");
+            line_.fail("unusable_unit", "an ionic strength is given in mol/L or mol/kg", quantity.whole.begin,
+                       quantity.whole.end, "write it like ionic strength 0.15 M");
         }
         rest = trimmed(line_, rest);
         if (!rest.empty()) {
-            line_.fail("trailing_text", fmt::format("'{}' does not belong to the ionic strength", text_of(line_, rest)), rest.begin,
-                       rest.end, "the temperature belongs to the pH, as in pH 7.5 at 4 C");
+            line_.fail("trailing_text", fmt::format("'{}' does not belong to the ionic strength", text_of(line_, rest)),
+                       rest.begin, rest.end, "the temperature belongs to the pH, as in pH 7.5 at 4 C");
         }
         label_.ionic_strength = IonicStrengthTarget{quantity.value, quantity.unit == ConcentrationUnit::mol_per_L};
     }
@@ -125,24 +128,26 @@ private:
             Part rest = item;
             const auto quantity = read_trailing_quantity(line_, rest);
             if (!quantity) {
-                const bool known = read_buffer_name(text_of(line_, item), table_) || find_reagent(table_, text_of(line_, item)) != nullptr;
+                const bool known = read_buffer_name(text_of(line_, item), table_) ||
+                                   find_reagent(table_, text_of(line_, item)) != nullptr;
                 line_.fail(known ? "missing_quantity" : "unreadable_item",
                            known ? fmt::format("'{}' has no concentration", text_of(line_, item))
                                  : fmt::format("'{}' cannot be read", text_of(line_, item)),
-                           item.begin, item.end, "an item is an amount and a name, as in 50 mM Tris-HCl, or a pH, as in pH 7.5 at 4 C");
+                           item.begin, item.end,
+                           "an item is an amount and a name, as in 50 mM Tris-HCl, or a pH, as in pH 7.5 at 4 C");
             }
             ingredient.quantity = *quantity;
             ingredient.name = rest;
         }
         check_quantity(ingredient);
         if (ingredient.name.empty()) {
-            line_.fail("missing_name", fmt::format("{} of what?", text_of(line_, ingredient.quantity.whole)), item.begin, item.end,
-                       "write the name after the amount, as in 50 mM Tris-HCl");
+            line_.fail("missing_name", fmt::format("{} of what?", text_of(line_, ingredient.quantity.whole)),
+                       item.begin, item.end, "write the name after the amount, as in 50 mM Tris-HCl");
         }
         const std::string name = lower(text_of(line_, ingredient.name));
         if (const auto at = name.find(" at "); at != std::string::npos) {
-            line_.fail("misplaced_temperature", "a temperature stands here", ingredient.name.begin + at + 1, ingredient.name.end,
-                       "the temperature belongs to the pH, as in pH 7.5 at 4 C");
+            line_.fail("misplaced_temperature", "a temperature stands here", ingredient.name.begin + at + 1,
+                       ingredient.name.end, "the temperature belongs to the pH, as in pH 7.5 at 4 C");
         }
         resolve(ingredient);
     }
@@ -153,16 +158,18 @@ private:
             line_.fail("unknown_formula",
                        fmt::format("'{}' is a strength, which belongs to a named formula; this table holds none",
                                    text_of(line_, quantity.whole)),
-                       quantity.whole.begin, quantity.whole.end, "write out what is in it, as in 10 mM sodium phosphate, 137 mM NaCl, pH 7.4");
+                       quantity.whole.begin, quantity.whole.end,
+                       "write out what is in it, as in 10 mM sodium phosphate, 137 mM NaCl, pH 7.4");
         }
         expect_kind(line_, quantity, QuantityKind::concentration, "50 mM");
         if (!(quantity.value > 0)) {
-            line_.fail("zero_quantity", "a concentration must be more than zero", quantity.whole.begin, quantity.whole.end,
-                       "leave the item out");
+            line_.fail("zero_quantity", "a concentration must be more than zero", quantity.whole.begin,
+                       quantity.whole.end, "leave the item out");
         }
         if (quantity.unit == ConcentrationUnit::percent_w_w || quantity.unit == ConcentrationUnit::normal) {
-            line_.fail("unusable_unit", fmt::format("'{}' is for titrants and stocks, not for a finished solution",
-                                                    text_of(line_, quantity.whole)),
+            line_.fail("unusable_unit",
+                       fmt::format("'{}' is for titrants and stocks, not for a finished solution",
+                                   text_of(line_, quantity.whole)),
                        quantity.whole.begin, quantity.whole.end, "write mM, g/L or % w/v");
         }
     }
@@ -170,13 +177,13 @@ private:
     void add_buffer(const Ingredient& ingredient, const NamedBuffer& named) {
         const ReadQuantity& quantity = ingredient.quantity;
         if (quantity.unit != ConcentrationUnit::mol_per_L && quantity.unit != ConcentrationUnit::mol_per_kg) {
-            line_.fail("unusable_unit", "a buffer's concentration is given in mol/L or mol/kg", quantity.whole.begin, quantity.whole.end,
-                       "write it like 50 mM");
+            line_.fail("unusable_unit", "a buffer's concentration is given in mol/L or mol/kg", quantity.whole.begin,
+                       quantity.whole.end, "write it like 50 mM");
         }
         for (const BufferItem& item : label_.buffers) {
             if (item.system == named.system) {
-                line_.fail("duplicate_item", fmt::format("{} stands twice", name_of(table_, named.system)), ingredient.whole.begin,
-                           ingredient.whole.end, "give its total once");
+                line_.fail("duplicate_item", fmt::format("{} stands twice", name_of(table_, named.system)),
+                           ingredient.whole.begin, ingredient.whole.end, "give its total once");
             }
         }
         label_.buffers.push_back({named.system, {quantity.value, quantity.unit}, named.counter_ion});
@@ -186,9 +193,11 @@ private:
     std::uint16_t article_meant(const Ingredient& ingredient, const Reagent& reagent) const {
         const auto index = static_cast<std::uint16_t>(&reagent - table_.reagents.data());
         const std::string name = lower(text_of(line_, ingredient.name));
-        const bool in_moles = ingredient.quantity.unit == ConcentrationUnit::mol_per_L || ingredient.quantity.unit == ConcentrationUnit::mol_per_kg;
-        const bool particular = name == reagent.cas || name.find("hydr") != std::string::npos || name.find('.') != std::string::npos ||
-                                name.find("\u00B7") != std::string::npos || name.find('%') != std::string::npos;
+        const bool in_moles = ingredient.quantity.unit == ConcentrationUnit::mol_per_L ||
+                              ingredient.quantity.unit == ConcentrationUnit::mol_per_kg;
+        const bool particular = name == reagent.cas || name.find("hydr") != std::string::npos ||
+                                name.find('.') != std::string::npos || name.find("\u00B7") != std::string::npos ||
+                                name.find('%') != std::string::npos;
         return in_moles && !particular ? usual_article(table_, index) : index;
     }
 
@@ -196,8 +205,8 @@ private:
         const std::uint16_t index = article_meant(ingredient, reagent);
         for (const AdditiveItem& item : label_.additives) {
             if (item.reagent == index) {
-                line_.fail("duplicate_item", fmt::format("{} stands twice", reagent.name), ingredient.whole.begin, ingredient.whole.end,
-                           "give its total once");
+                line_.fail("duplicate_item", fmt::format("{} stands twice", reagent.name), ingredient.whole.begin,
+                           ingredient.whole.end, "give its total once");
             }
         }
         label_.additives.push_back({index, {ingredient.quantity.value, ingredient.quantity.unit}});
@@ -241,7 +250,8 @@ private:
             reagent = form_of(*named);
             if (reagent == nullptr) {
                 line_.fail("no_reagent", fmt::format("the table has no reagent for '{}'", name), ingredient.name.begin,
-                           ingredient.name.end, "'carboy constants list reagents' shows what there is; --constants adds to it",
+                           ingredient.name.end,
+                           "'carboy constants list reagents' shows what there is; --constants adds to it",
                            ErrorKind::no_recipe);
             }
         }
@@ -249,7 +259,8 @@ private:
             const auto near = nearest_names(name, table_);
             line_.fail("unknown_name", fmt::format("the table knows nothing called '{}'", name), ingredient.name.begin,
                        ingredient.name.end,
-                       near.empty() ? std::string("'carboy constants list' shows every name") : fmt::format("did you mean {}?", fmt::join(near, ", ")));
+                       near.empty() ? std::string("'carboy constants list' shows every name")
+                                    : fmt::format("did you mean {}?", fmt::join(near, ", ")));
         }
         add_additive(ingredient, *reagent);
     }
@@ -262,8 +273,8 @@ private:
                            "add one, as in: pH 7.5 at 4 C");
             }
             if (label_.ionic_strength) {
-                throw Error(ErrorKind::input, "missing_ph", "an ionic strength is asked for without a pH", std::string(line_.where()),
-                            "add one, as in: pH 7.5");
+                throw Error(ErrorKind::input, "missing_ph", "an ionic strength is asked for without a pH",
+                            std::string(line_.where()), "add one, as in: pH 7.5");
             }
             return;
         }
@@ -282,8 +293,8 @@ private:
         }
         if (candidates.size() > 1) {
             const Part item = additives_[candidates[1]].whole;
-            line_.fail("no_buffer", "more than one of these could hold the pH, and none is a usual buffer", item.begin, item.end,
-                       "name the buffer that is to hold it");
+            line_.fail("no_buffer", "more than one of these could hold the pH, and none is a usual buffer", item.begin,
+                       item.end, "name the buffer that is to hold it");
         }
         if (candidates.empty()) {
             throw Error(ErrorKind::input, "no_buffer", "nothing on this label holds a pH", std::string(line_.where()),
@@ -305,6 +316,8 @@ private:
 
 }  // namespace
 
-Label read_label(std::string_view line, const Table& table, std::string_view where) { return LabelReader(line, table, where).read(); }
+Label read_label(std::string_view line, const Table& table, std::string_view where) {
+    return LabelReader(line, table, where).read();
+}
 
 }  // namespace carboy

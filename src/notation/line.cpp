@@ -1,6 +1,7 @@
 #include "notation/line.h"
 
 #include <algorithm>
+
 #include <fmt/format.h>
 
 namespace carboy {
@@ -10,7 +11,8 @@ namespace {
 constexpr std::size_t longest_line = 4096;
 constexpr std::string_view no_break_space = "\u00A0";
 
-/// Length of the well-formed UTF-8 sequence at the front, 0 when there is none (RFC 3629: no overlong forms, no surrogates).
+/// Length of the well-formed UTF-8 sequence at the front, 0 when there is none (RFC 3629: no overlong forms, no
+/// surrogates).
 std::size_t sequence_length(std::string_view text) {
     const auto byte = [&](std::size_t i) { return i < text.size() ? static_cast<unsigned char>(text[i]) : 0U; };
     const auto continues = [&](std::size_t i) { return (byte(i) & 0xC0U) == 0x80U; };
@@ -34,8 +36,9 @@ std::size_t sequence_length(std::string_view text) {
 }
 
 std::size_t column_of(std::string_view text, std::size_t byte) {
-    return 1 + static_cast<std::size_t>(std::count_if(text.begin(), text.begin() + static_cast<std::ptrdiff_t>(std::min(byte, text.size())),
-                                                      [](char c) { return (static_cast<unsigned char>(c) & 0xC0U) != 0x80U; }));
+    return 1 + static_cast<std::size_t>(
+                   std::count_if(text.begin(), text.begin() + static_cast<std::ptrdiff_t>(std::min(byte, text.size())),
+                                 [](char c) { return (static_cast<unsigned char>(c) & 0xC0U) != 0x80U; }));
 }
 
 }  // namespace
@@ -43,7 +46,8 @@ std::size_t column_of(std::string_view text, std::size_t byte) {
 Line::Line(std::string_view text, std::string_view where) : text_(text), where_(where) {
     if (text.size() > longest_line) {
         throw Error(ErrorKind::input, "line_too_long",
-                    fmt::format("the text has {} bytes, more than {} are not read", text.size(), longest_line), std::string(where));
+                    fmt::format("the text has {} bytes, more than {} are not read", text.size(), longest_line),
+                    std::string(where));
     }
     for (std::size_t i = 0; i < text.size();) {
         const std::size_t length = sequence_length(text.substr(i));
@@ -65,8 +69,8 @@ void Line::fail(std::string code, std::string message, std::size_t begin, std::s
                 ErrorKind kind) const {
     begin = std::min(begin, text_.size());
     end = std::clamp(end, begin, text_.size());
-    throw Error(kind, std::move(code), std::move(message), fmt::format("{}, column {}", where_, column_of(text_, begin)),
-                std::move(help))
+    throw Error(kind, std::move(code), std::move(message),
+                fmt::format("{}, column {}", where_, column_of(text_, begin)), std::move(help))
         .with_excerpt({std::string(text_), begin, std::max<std::size_t>(end - begin, 1)});
 }
 

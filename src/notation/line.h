@@ -17,8 +17,8 @@ public:
     std::string_view where() const { return where_; }
 
     /// Error whose excerpt is the bytes from `begin` to `end`.
-    [[noreturn]] void fail(std::string code, std::string message, std::size_t begin, std::size_t end, std::string help = {},
-                           ErrorKind kind = ErrorKind::input) const;
+    [[noreturn]] void fail(std::string code, std::string message, std::size_t begin, std::size_t end,
+                           std::string help = {}, ErrorKind kind = ErrorKind::input) const;
 
 private:
     std::string_view text_;
@@ -32,7 +32,9 @@ struct Part {
     bool empty() const { return begin >= end; }
 };
 
-inline std::string_view text_of(const Line& line, Part part) { return line.text().substr(part.begin, part.end - part.begin); }
+inline std::string_view text_of(const Line& line, Part part) {
+    return line.text().substr(part.begin, part.end - part.begin);
+}
 
 /// The part without spaces around it (ASCII and no-break).
 Part trimmed(const Line& line, Part part);

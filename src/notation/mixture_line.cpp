@@ -1,13 +1,15 @@
 #include <algorithm>
 #include <cmath>
-#include <fmt/format.h>
-#include <fmt/ranges.h>
 #include <optional>
 #include <string>
 #include <vector>
 
+#include <fmt/format.h>
+#include <fmt/ranges.h>
+
 #include "carboy/notation.h"
 #include "carboy/preparation.h"
+
 #include "notation/items.h"
 #include "notation/line.h"
 #include "notation/quantity_reader.h"
@@ -63,8 +65,9 @@ private:
             expect_kind(line_, volume, QuantityKind::volume, "to 1 L");
             rest = trimmed(line_, rest);
             if (!rest.empty() || !(volume.value > 0)) {
-                line_.fail("trailing_text", rest.empty() ? "the final volume must be more than zero"
-                                                         : fmt::format("'{}' does not belong to the final volume", text_of(line_, rest)),
+                line_.fail("trailing_text",
+                           rest.empty() ? "the final volume must be more than zero"
+                                        : fmt::format("'{}' does not belong to the final volume", text_of(line_, rest)),
                            rest.empty() ? volume.whole.begin : rest.begin, items[i].end, "write it like to 1 L");
             }
             final_ = Volume::litres(volume.value);
@@ -89,8 +92,8 @@ private:
             name = item;
             const auto trailing = read_trailing_quantity(line_, name);
             if (!trailing) {
-                line_.fail("missing_quantity", fmt::format("'{}' has no amount", text_of(line_, item)), item.begin, item.end,
-                           "write one before it, as in 25 mmol/kg KH2PO4 or 50 mL of 0.1 M NaOH");
+                line_.fail("missing_quantity", fmt::format("'{}' has no amount", text_of(line_, item)), item.begin,
+                           item.end, "write one before it, as in 25 mmol/kg KH2PO4 or 50 mL of 0.1 M NaOH");
             }
             quantity = *trailing;
         }
@@ -114,7 +117,8 @@ private:
             case QuantityKind::temperature:
             case QuantityKind::strength:
                 line_.fail("wrong_quantity",
-                           fmt::format("'{}' is {}; an amount is expected here", text_of(line_, quantity.whole), kind_phrase(quantity.kind)),
+                           fmt::format("'{}' is {}; an amount is expected here", text_of(line_, quantity.whole),
+                                       kind_phrase(quantity.kind)),
                            quantity.whole.begin, quantity.whole.end, "write mmol/kg, mM, g or mL");
         }
     }
@@ -134,7 +138,8 @@ private:
             std::vector<std::string_view> forms;
             const ComponentId id = id_of(table_, *system);
             for (const Reagent& reagent : table_.reagents) {
-                if (reagent.usual && forms.size() < 3 && !reagent.supplies.empty() && reagent.supplies.front().component == id) {
+                if (reagent.usual && forms.size() < 3 && !reagent.supplies.empty() &&
+                    reagent.supplies.front().component == id) {
                     forms.push_back(reagent.name);
                 }
             }
@@ -144,11 +149,13 @@ private:
         } else {
             help = "'carboy constants list reagents' shows every reagent";
         }
-        line_.fail("unknown_name", fmt::format("the table has no reagent called '{}'", text), name.begin, name.end, help);
+        line_.fail("unknown_name", fmt::format("the table has no reagent called '{}'", text), name.begin, name.end,
+                   help);
     }
 
     Portion& add(const Reagent& reagent) {
-        preparation_.portions.push_back({static_cast<std::uint16_t>(&reagent - table_.reagents.data()), std::nullopt, std::nullopt});
+        preparation_.portions.push_back(
+            {static_cast<std::uint16_t>(&reagent - table_.reagents.data()), std::nullopt, std::nullopt});
         return preparation_.portions.back();
     }
 
@@ -172,7 +179,8 @@ private:
                               : reagent.assay.known()      ? reagent.assay.value
                                                            : 1.0;
         if (reagent.state == State::solution && !reagent.mass_percent.known()) {
-            line_.fail("unusable_unit", fmt::format("{} is measured by volume, its density is not known here", reagent.name),
+            line_.fail("unusable_unit",
+                       fmt::format("{} is measured by volume, its density is not known here", reagent.name),
                        quantity.whole.begin, quantity.whole.end, "give its volume in mL");
         }
         add(reagent).amount = Amount::mol(quantity.value * purity / reagent.molar_mass_g_per_mol);
@@ -185,8 +193,11 @@ private:
         poured_ += volume;
         if (const Reagent* reagent = known_reagent(text_of(line_, name))) {
             if (!reagent->strength_mol_per_L.known()) {
-                line_.fail("missing_strength", fmt::format("{} is a solid: a volume of it needs the strength of the solution", reagent->name),
-                           quantity.whole.begin, name.end, fmt::format("write it like 50 mL of 0.1 M {}", text_of(line_, name)));
+                line_.fail(
+                    "missing_strength",
+                    fmt::format("{} is a solid: a volume of it needs the strength of the solution", reagent->name),
+                    quantity.whole.begin, name.end,
+                    fmt::format("write it like 50 mL of 0.1 M {}", text_of(line_, name)));
             }
             add(*reagent).amount = Amount::mol(reagent->strength_mol_per_L.value * volume.L());
             return;
@@ -208,12 +219,13 @@ private:
             rest = trimmed(line_, {rest.begin + 2, rest.end});
         }
         if (rest.empty()) {
-            line_.fail("missing_name", fmt::format("{} of what?", text_of(line_, strength.whole)), quantity.whole.begin, name.end,
-                       "write the reagent after the strength");
+            line_.fail("missing_name", fmt::format("{} of what?", text_of(line_, strength.whole)), quantity.whole.begin,
+                       name.end, "write the reagent after the strength");
         }
         const Reagent& reagent = reagent_at(rest);
-        add(reagent).amount = strength.unit == ConcentrationUnit::percent_w_w ? amount_of(strength, volume, of_strength(strength, reagent))
-                                                                              : amount_of(strength, volume, reagent);
+        add(reagent).amount = strength.unit == ConcentrationUnit::percent_w_w
+                                  ? amount_of(strength, volume, of_strength(strength, reagent))
+                                  : amount_of(strength, volume, reagent);
     }
 
     /// The article of the same chemistry whose mass percent is nearest: its density turns the percent into mol/L.
@@ -221,17 +233,20 @@ private:
         constexpr double near_enough = 2.0;
         const Reagent* best = nullptr;
         const auto apart = [&](const Reagent& article) {
-            const double percent = article.mass_percent.known() ? article.mass_percent.value : 100 * article.assay.value;
+            const double percent =
+                article.mass_percent.known() ? article.mass_percent.value : 100 * article.assay.value;
             return std::abs(percent - strength.value);
         };
         for (const Reagent& article : table_.reagents) {
-            const bool liquid = article.density_g_per_mL.known() && (article.mass_percent.known() || article.assay.known());
+            const bool liquid =
+                article.density_g_per_mL.known() && (article.mass_percent.known() || article.assay.known());
             if (article.formula == reagent.formula && liquid && (best == nullptr || apart(article) < apart(*best))) {
                 best = &article;
             }
         }
         if (best == nullptr || apart(*best) > near_enough) {
-            line_.fail("unknown_density", fmt::format("the table knows no density of {} near {:g} % w/w", reagent.name, strength.value),
+            line_.fail("unknown_density",
+                       fmt::format("the table knows no density of {} near {:g} % w/w", reagent.name, strength.value),
                        strength.whole.begin, strength.whole.end, "give its strength in mol/L");
         }
         return *best;
@@ -247,17 +262,20 @@ private:
 
     void need_final_volume(const ReadQuantity& quantity) const {
         if (!final_) {
-            line_.fail("missing_final_volume",
-                       fmt::format("'{}' is an amount, and the final volume is missing", text_of(line_, quantity.whole)),
-                       quantity.whole.begin, quantity.whole.end, "end the line with it, as in: to 1 L");
+            line_.fail(
+                "missing_final_volume",
+                fmt::format("'{}' is an amount, and the final volume is missing", text_of(line_, quantity.whole)),
+                quantity.whole.begin, quantity.whole.end, "end the line with it, as in: to 1 L");
         }
     }
 
     void check_volumes() const {
         constexpr double rounding = 1.0001;
         if (final_ && poured_ > rounding * *final_) {
-            line_.fail("overfull", fmt::format("{:g} mL were poured together, more than the final {:g} mL", poured_.mL(), final_->mL()), 0,
-                       line_.text().size(), "check the volumes");
+            line_.fail(
+                "overfull",
+                fmt::format("{:g} mL were poured together, more than the final {:g} mL", poured_.mL(), final_->mL()), 0,
+                line_.text().size(), "check the volumes");
         }
     }
 

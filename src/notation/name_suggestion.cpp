@@ -3,6 +3,7 @@
 #include <vector>
 
 #include "carboy/notation.h"
+
 #include "constants/name.h"
 
 namespace carboy {
@@ -104,7 +105,8 @@ void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& 
             const std::size_t apart = entry.kind == EntryKind::system ? nearness(typed, entry.key) : std::string::npos;
             if (apart != std::string::npos) {
                 const std::string system = spelling(table, entry);
-                found.push_back({apart, ion_last ? system + text[i] + std::string(right) : std::string(left) + text[i] + system});
+                found.push_back(
+                    {apart, ion_last ? system + text[i] + std::string(right) : std::string(left) + text[i] + system});
             }
         }
     }
@@ -129,7 +131,8 @@ std::vector<std::string> nearest_names(std::string_view text, const Table& table
     return best_of(std::move(found), at_most);
 }
 
-std::vector<std::string> nearest_words(std::string_view text, const std::vector<std::string>& words, std::size_t at_most) {
+std::vector<std::string> nearest_words(std::string_view text, const std::vector<std::string>& words,
+                                       std::size_t at_most) {
     const std::string typed = fold_name(text);
     std::vector<Near> found;
     for (const std::string& word : words) {

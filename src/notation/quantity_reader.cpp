@@ -3,9 +3,10 @@
 #include <array>
 #include <charconv>
 #include <cmath>
-#include <fmt/format.h>
 #include <string>
 #include <vector>
+
+#include <fmt/format.h>
 
 #include "carboy/notation.h"
 
@@ -82,8 +83,12 @@ constexpr std::array units{Unit{"M", QuantityKind::concentration, 1, molar},
 
 constexpr double zero_celsius_K = 273.15;
 
-bool is_space(char c) { return c == ' ' || c == '\t'; }
-bool is_digit(char c) { return c >= '0' && c <= '9'; }
+bool is_space(char c) {
+    return c == ' ' || c == '\t';
+}
+bool is_digit(char c) {
+    return c >= '0' && c <= '9';
+}
 
 /// The unit's letters: up to a space or comma, with `% w/v` kept together.
 Part unit_token(const Line& line, Part part) {
@@ -152,8 +157,9 @@ const Unit* find_unit(std::string_view token) {
 }  // namespace
 
 std::string_view kind_phrase(QuantityKind kind) {
-    constexpr std::array phrases{std::string_view("a concentration"), std::string_view("a volume"), std::string_view("a mass"),
-                                 std::string_view("a temperature"), std::string_view("a strength of a named formula")};
+    constexpr std::array phrases{std::string_view("a concentration"), std::string_view("a volume"),
+                                 std::string_view("a mass"), std::string_view("a temperature"),
+                                 std::string_view("a strength of a named formula")};
     return phrases[static_cast<std::size_t>(kind)];
 }
 
@@ -174,9 +180,10 @@ double read_number(const Line& line, Part& part, bool may_be_negative) {
     const std::size_t start = part.begin;
     if (!number_begins(text_of(line, part))) {
         const Part token = part.empty() ? Part{part.begin, part.begin} : unit_token(line, part);
-        line.fail("not_a_number",
-                  part.empty() ? "a number is expected here" : fmt::format("'{}' is not a number", text_of(line, token)), token.begin,
-                  token.end, "write it as 7.4 or 1e-3");
+        line.fail(
+            "not_a_number",
+            part.empty() ? "a number is expected here" : fmt::format("'{}' is not a number", text_of(line, token)),
+            token.begin, token.end, "write it as 7.4 or 1e-3");
     }
     bool negative = false;
     constexpr std::string_view minus_sign = "\u2212";
@@ -191,8 +198,9 @@ double read_number(const Line& line, Part& part, bool may_be_negative) {
     const auto [end, error] = std::from_chars(text.data() + part.begin, text.data() + part.end, value);
     part.begin = static_cast<std::size_t>(end - text.data());
     if (error == std::errc::result_out_of_range || !std::isfinite(value)) {
-        line.fail("number_out_of_range", fmt::format("'{}' is too large or too small a number", text.substr(start, part.begin - start)),
-                  start, part.begin);
+        line.fail("number_out_of_range",
+                  fmt::format("'{}' is too large or too small a number", text.substr(start, part.begin - start)), start,
+                  part.begin);
     }
     if (part.begin + 1 < text.size() && text[part.begin] == ',' && is_digit(text[part.begin + 1])) {
         std::size_t after = part.begin + 1;
@@ -202,13 +210,14 @@ double read_number(const Line& line, Part& part, bool may_be_negative) {
         // `7.4,150 mM` is two items; `0,5 M` and `1,000 mL` are one number with a comma in it.
         const std::string_view so_far = text.substr(start, part.begin - start);
         if (so_far.find('.') == std::string_view::npos && so_far.find('e') == std::string_view::npos) {
-            line.fail("decimal_comma", fmt::format("'{}' has a comma in a number", text.substr(start, after - start)), start, after,
+            line.fail("decimal_comma", fmt::format("'{}' has a comma in a number", text.substr(start, after - start)),
+                      start, after,
                       "write a decimal point, no thousands separators, and a space after a comma between items");
         }
     }
     if (negative && value != 0 && !may_be_negative) {
-        line.fail("negative_quantity", fmt::format("'{}' is negative", text.substr(start, part.begin - start)), start, part.begin,
-                  "amounts are zero or more");
+        line.fail("negative_quantity", fmt::format("'{}' is negative", text.substr(start, part.begin - start)), start,
+                  part.begin, "amounts are zero or more");
     }
     return negative ? -value : value;
 }
@@ -237,12 +246,13 @@ ReadQuantity read_quantity(const Line& line, Part& part) {
         quantity.value -= zero_celsius_K;
     }
     if (unit->kind != QuantityKind::temperature && value < 0) {
-        line.fail("negative_quantity", fmt::format("'{}' is negative", text_of(line, quantity.number)), quantity.number.begin,
-                  quantity.number.end, "amounts are zero or more");
+        line.fail("negative_quantity", fmt::format("'{}' is negative", text_of(line, quantity.number)),
+                  quantity.number.begin, quantity.number.end, "amounts are zero or more");
     }
     if (unit->kind == QuantityKind::temperature && quantity.value < -zero_celsius_K) {
-        line.fail("temperature_out_of_range", fmt::format("'{}' is below absolute zero", text_of(line, quantity.number)),
-                  quantity.number.begin, token.end);
+        line.fail("temperature_out_of_range",
+                  fmt::format("'{}' is below absolute zero", text_of(line, quantity.number)), quantity.number.begin,
+                  token.end);
     }
     part.begin = token.end;
     quantity.whole = {start, token.end};
@@ -273,8 +283,8 @@ std::optional<ReadQuantity> read_trailing_quantity(const Line& line, Part& part)
 void expect_kind(const Line& line, const ReadQuantity& quantity, QuantityKind expected, std::string_view example) {
     if (quantity.kind != expected) {
         line.fail("wrong_quantity",
-                  fmt::format("'{}' is {}; {} is expected here", text_of(line, quantity.whole), kind_phrase(quantity.kind),
-                              kind_phrase(expected)),
+                  fmt::format("'{}' is {}; {} is expected here", text_of(line, quantity.whole),
+                              kind_phrase(quantity.kind), kind_phrase(expected)),
                   quantity.whole.begin, quantity.whole.end, fmt::format("write it like {}", example));
     }
 }

@@ -5,6 +5,7 @@
 #include <string_view>
 
 #include "carboy/concentration.h"
+
 #include "notation/line.h"
 
 namespace carboy {
@@ -29,7 +30,8 @@ bool number_begins(std::string_view text);
 /// `number_out_of_range`, `decimal_comma`.
 double read_number(const Line& line, Part& part, bool may_be_negative = false);
 
-/// Reads number and unit at the beginning of `part` and moves `part` past them. Errors as above, `missing_unit`, `unknown_unit`.
+/// Reads number and unit at the beginning of `part` and moves `part` past them. Errors as above, `missing_unit`,
+/// `unknown_unit`.
 ReadQuantity read_quantity(const Line& line, Part& part);
 
 /// Looks for a quantity that ends the part, as in `NaCl 150 mM`; `part` then ends before it. Empty when there is none.

@@ -1,7 +1,9 @@
 #include <cmath>
+
 #include <fmt/format.h>
 
 #include "carboy/notation.h"
+
 #include "notation/quantity_reader.h"
 
 // Single quantities, as options and JSON carry them.
@@ -17,7 +19,8 @@ ReadQuantity read_only(const Line& line, QuantityKind expected, std::string_view
     expect_kind(line, quantity, expected, example);
     part = trimmed(line, part);
     if (!part.empty()) {
-        line.fail("trailing_text", fmt::format("'{}' does not belong to {}", text_of(line, part), kind_phrase(expected)), part.begin,
+        line.fail("trailing_text",
+                  fmt::format("'{}' does not belong to {}", text_of(line, part), kind_phrase(expected)), part.begin,
                   part.end, fmt::format("write it like {}", example));
     }
     return quantity;
@@ -25,8 +28,8 @@ ReadQuantity read_only(const Line& line, QuantityKind expected, std::string_view
 
 void expect_positive(const Line& line, const ReadQuantity& quantity) {
     if (!(quantity.value > 0)) {
-        line.fail("zero_quantity", fmt::format("{} must be more than zero", kind_phrase(quantity.kind)), quantity.whole.begin,
-                  quantity.whole.end);
+        line.fail("zero_quantity", fmt::format("{} must be more than zero", kind_phrase(quantity.kind)),
+                  quantity.whole.begin, quantity.whole.end);
     }
 }
 
@@ -71,8 +74,8 @@ PH read_ph(std::string_view text, std::string_view where) {
     const std::size_t end = part.begin;
     part = trimmed(line, part);
     if (!part.empty()) {
-        line.fail("trailing_text", fmt::format("'{}' does not belong to a pH", text_of(line, part)), part.begin, part.end,
-                  "a pH has no unit: 7.4");
+        line.fail("trailing_text", fmt::format("'{}' does not belong to a pH", text_of(line, part)), part.begin,
+                  part.end, "a pH has no unit: 7.4");
     }
     if (!(value >= -2 && value <= 16)) {
         line.fail("ph_out_of_range", fmt::format("pH {:g} is outside -2 to 16", value), start, end);

@@ -1,15 +1,17 @@
 #include "carboy/request_json.h"
 
 #include <algorithm>
-#include <fmt/format.h>
-#include <fmt/ranges.h>
 #include <initializer_list>
-#include <nlohmann/json.hpp>
 #include <string>
 #include <vector>
 
+#include <fmt/format.h>
+#include <fmt/ranges.h>
+#include <nlohmann/json.hpp>
+
 #include "carboy/error.h"
 #include "carboy/notation.h"
+
 #include "json/strict_json.h"
 
 namespace carboy {
@@ -25,7 +27,8 @@ Error fault(std::string code, std::string message, std::string where, std::strin
 /// An object being read: knows its path, and that every key must be one of those asked for.
 class Reader {
 public:
-    Reader(const json& object, std::string path, std::initializer_list<const char*> keys) : object_(object), path_(std::move(path)) {
+    Reader(const json& object, std::string path, std::initializer_list<const char*> keys)
+        : object_(object), path_(std::move(path)) {
         if (!object.is_object()) {
             throw fault("wrong_type", "an object is expected here", path_);
         }
@@ -46,7 +49,8 @@ public:
     std::string text(const char* key) const {
         const json& value = at(key);
         if (!value.is_string()) {
-            throw fault("wrong_type", fmt::format("'{}' must be text in quotes", key), path_to(key), "quantities carry their unit, as \"50 mmol/L\"");
+            throw fault("wrong_type", fmt::format("'{}' must be text in quotes", key), path_to(key),
+                        "quantities carry their unit, as \"50 mmol/L\"");
         }
         return value.get<std::string>();
     }
@@ -99,14 +103,17 @@ BufferItem read_buffer(const json& value, const std::string& path, const Table& 
     if (!named) {
         const auto near = nearest_names(name, table, 1);
         throw fault("unknown_name", fmt::format("the table has no system called '{}'", name), reader.path_to("system"),
-                    near.empty() ? "'carboy constants list' shows every system" : fmt::format("did you mean {}?", near.front()));
+                    near.empty() ? "'carboy constants list' shows every system"
+                                 : fmt::format("did you mean {}?", near.front()));
     }
     BufferItem item;
     item.system = named->system;
     item.counter_ion = named->counter_ion;
     item.concentration = read_concentration(reader.text("concentration"), reader.path_to("concentration"));
-    if (item.concentration.unit != ConcentrationUnit::mol_per_L && item.concentration.unit != ConcentrationUnit::mol_per_kg) {
-        throw fault("unusable_unit", "a buffer's concentration is given in mol/L or mol/kg", reader.path_to("concentration"));
+    if (item.concentration.unit != ConcentrationUnit::mol_per_L &&
+        item.concentration.unit != ConcentrationUnit::mol_per_kg) {
+        throw fault("unusable_unit", "a buffer's concentration is given in mol/L or mol/kg",
+                    reader.path_to("concentration"));
     }
     for (const char* key : {"cation", "anion"}) {
         if (reader.has(key)) {
@@ -125,8 +132,10 @@ AdditiveItem read_additive(const json& value, const std::string& path, const Tab
     }
     if (reagent == nullptr) {
         const auto near = nearest_names(name, table, 1);
-        throw fault("unknown_name", fmt::format("the table has no reagent called '{}'", name), reader.path_to("reagent"),
-                    near.empty() ? "'carboy constants list reagents' shows every reagent" : fmt::format("did you mean {}?", near.front()));
+        throw fault("unknown_name", fmt::format("the table has no reagent called '{}'", name),
+                    reader.path_to("reagent"),
+                    near.empty() ? "'carboy constants list reagents' shows every reagent"
+                                 : fmt::format("did you mean {}?", near.front()));
     }
     AdditiveItem item;
     item.reagent = static_cast<std::uint16_t>(reagent - table.reagents.data());
@@ -198,12 +207,14 @@ Request request_from_label(std::string_view label, const Table& table, std::stri
 Request read_request(std::string_view json_text, const Table& table, std::string_view where) {
     const json document = parse_strictly(json_text, where);
     const std::string path(where);
-    const Reader reader(document, path, {"id", "label", "buffers", "additives", "target", "volume", "prepare_at", "route"});
+    const Reader reader(document, path,
+                        {"id", "label", "buffers", "additives", "target", "volume", "prepare_at", "route"});
     Request request;
     if (reader.has("label")) {
         for (const char* key : {"buffers", "additives", "target"}) {
             if (reader.has(key)) {
-                throw fault("label_and_parts", fmt::format("a request has a label or '{}', not both", key), reader.path_to(key));
+                throw fault("label_and_parts", fmt::format("a request has a label or '{}', not both", key),
+                            reader.path_to(key));
             }
         }
         request = request_from_label(reader.text("label"), table, reader.path_to("label"));

@@ -8,10 +8,9 @@ namespace carboy {
 namespace {
 
 bool same_supplies(const Reagent& a, const Reagent& b) {
-    return std::is_permutation(a.supplies.begin(), a.supplies.end(), b.supplies.begin(), b.supplies.end(),
-                               [](const Supply& x, const Supply& y) {
-                                   return x.component == y.component && x.count == y.count;
-                               });
+    return std::is_permutation(
+        a.supplies.begin(), a.supplies.end(), b.supplies.begin(), b.supplies.end(),
+        [](const Supply& x, const Supply& y) { return x.component == y.component && x.count == y.count; });
 }
 
 void add_article(std::vector<Chemistry>& chemistries, const Table& table, std::uint16_t index) {
@@ -88,7 +87,9 @@ std::uint16_t article_to_titrate_with(const Table& table, const Chemistry& chemi
             return 1e6;
         }
         const double share = amount.mol() / strength.value / total.L();
-        return share < least ? std::log(least / std::max(share, 1e-12)) : share > most ? 10 * std::log(share / most) : 0.0;
+        return share < least  ? std::log(least / std::max(share, 1e-12))
+               : share > most ? 10 * std::log(share / most)
+                              : 0.0;
     };
     return *std::min_element(chemistry.articles.begin(), chemistry.articles.end(),
                              [&](std::uint16_t a, std::uint16_t b) { return awkwardness(a) < awkwardness(b); });

@@ -27,8 +27,8 @@ std::optional<Chemistry> salt_of(const Table& table, ComponentId cation, Compone
 /// The article of the same chemistry that a bench most often has.
 std::uint16_t usual_article(const Table& table, std::uint16_t reagent);
 
-/// The article whose volume for this amount is the best to measure into `total`: 0.5 to 10 % of it where one can, else the
-/// nearest to that. Solids, which have no volume, come last.
+/// The article whose volume for this amount is the best to measure into `total`: 0.5 to 10 % of it where one can, else
+/// the nearest to that. Solids, which have no volume, come last.
 std::uint16_t article_to_titrate_with(const Table& table, const Chemistry& chemistry, Amount amount, Volume total);
 
 }  // namespace carboy

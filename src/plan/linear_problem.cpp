@@ -81,7 +81,8 @@ std::vector<LinearProblem::Term> LinearProblem::terms_of(std::uint16_t reagent) 
     const auto parts = shape_.parts();
     for (const auto& [component, count] : table_->reagents[reagent].supplies) {
         const ComponentId wanted = component;
-        const auto place = std::find_if(parts.begin(), parts.end(), [&](const auto& p) { return p.component == wanted; });
+        const auto place =
+            std::find_if(parts.begin(), parts.end(), [&](const auto& p) { return p.component == wanted; });
         terms.push_back({static_cast<std::size_t>(place - parts.begin()), count});
     }
     return terms;
@@ -110,7 +111,8 @@ void LinearProblem::set_composition(const std::vector<std::uint16_t>& columns, c
             litres_per_kg += portion.molality->mol_per_kg() * litres;
         }
     }
-    water_kg_ = std::max(free_litres, 0.1 * fixed_.filled_to->L()) * density_kg_per_L_ / (1 + litres_per_kg * density_kg_per_L_);
+    water_kg_ = std::max(free_litres, 0.1 * fixed_.filled_to->L()) * density_kg_per_L_ /
+                (1 + litres_per_kg * density_kg_per_L_);
     for (const Portion& portion : fixed_.portions) {
         put(portion.reagent, portion.amount ? portion.amount->mol() : portion.molality->mol_per_kg() * water_kg_);
     }
@@ -159,7 +161,8 @@ bool LinearProblem::solve_once(const std::vector<std::uint16_t>& columns, std::v
     const double hydroxide = solver_.species(1).molality.mol_per_kg();
     at(charge_row, size) = -charge - (hydrogen - hydroxide) * water_kg_;
     if (ionic_strength_) {
-        const double wanted = ionic_strength_->value_mol * (ionic_strength_->per_litre ? fixed_.filled_to->L() : water_kg_);
+        const double wanted =
+            ionic_strength_->value_mol * (ionic_strength_->per_litre ? fixed_.filled_to->L() : water_kg_);
         at(ionic_row, size) = wanted - half_squares - 0.5 * (hydrogen + hydroxide) * water_kg_;
     }
     if (!eliminate(matrix_, size)) {

@@ -14,8 +14,8 @@ namespace carboy {
 
 /// The planner's linear problem at one pH, temperature and composition.
 ///
-/// At a fixed pH and ionic strength each system has a known mean charge, so electroneutrality is linear in the amounts of
-/// the reagents, as are the totals of the buffers and, given the mean squared charges, the ionic strength. Activity
+/// At a fixed pH and ionic strength each system has a known mean charge, so electroneutrality is linear in the amounts
+/// of the reagents, as are the totals of the buffers and, given the mean squared charges, the ionic strength. Activity
 /// coefficients and the mass of water depend on the answer: it is solved again until the amounts repeat.
 class LinearProblem {
 public:
@@ -26,8 +26,8 @@ public:
         bool per_kg_water = false;
     };
 
-    /// `fixed` are the additives; `volume` and `filled_at` give the water; components that may occur are those of `fixed`
-    /// and of `reagents`.
+    /// `fixed` are the additives; `volume` and `filled_at` give the water; components that may occur are those of
+    /// `fixed` and of `reagents`.
     LinearProblem(const Table& table, const Preparation& fixed, std::vector<Total> totals,
                   const std::vector<std::uint16_t>& reagents, PH ph, Temperature use_at, const ActivityModel& model);
 
@@ -37,10 +37,11 @@ public:
     struct Answer {
         std::vector<double> amounts_mol;  ///< one per column; may be negative: then these columns cannot do it
         Mass water;
-        bool settled = false;             ///< amounts repeat to the precision asked for
+        bool settled = false;  ///< amounts repeat to the precision asked for
     };
     /// Amounts of the reagents in `columns`: as many as there are totals, plus one for the charge, plus one if an ionic
-    /// strength is asked for. Empty when the columns are not independent. `precision` is the relative change to stop at.
+    /// strength is asked for. Empty when the columns are not independent. `precision` is the relative change to stop
+    /// at.
     std::optional<Answer> solve(const std::vector<std::uint16_t>& columns, double precision);
 
 private:

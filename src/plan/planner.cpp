@@ -1,13 +1,15 @@
 #include <algorithm>
 #include <array>
 #include <cmath>
-#include <fmt/format.h>
 #include <optional>
 #include <tuple>
 #include <vector>
 
+#include <fmt/format.h>
+
 #include "carboy/error.h"
 #include "carboy/plan.h"
+
 #include "plan/candidates.h"
 #include "plan/linear_problem.h"
 #include "plan/shortfall.h"
@@ -37,7 +39,9 @@ std::vector<std::uint16_t> columns_of(const Candidate& candidate) {
 }
 
 /// Rounding noise of an amount that should be none.
-bool negative(double mol, double largest) { return mol < -1e-9 * largest; }
+bool negative(double mol, double largest) {
+    return mol < -1e-9 * largest;
+}
 
 bool feasible(const LinearProblem::Answer& answer) {
     const double largest = *std::max_element(answer.amounts_mol.begin(), answer.amounts_mol.end());
@@ -45,8 +49,8 @@ bool feasible(const LinearProblem::Answer& answer) {
                         [&](double mol) { return negative(mol, largest); });
 }
 
-/// Lower is better: usual counter-ions, then articles that benches keep, then few weighings, then little titrant, then little
-/// of everything.
+/// Lower is better: usual counter-ions, then articles that benches keep, then few weighings, then little titrant, then
+/// little of everything.
 std::tuple<std::size_t, int, int, double, double> rank(const Solved& solved, const Table& table) {
     const auto& amounts = solved.answer.amounts_mol;
     const std::size_t extra = solved.candidate->forms.size();
@@ -65,13 +69,15 @@ std::tuple<std::size_t, int, int, double, double> rank(const Solved& solved, con
 void check(const Request& request) {
     constexpr double most_mol_per_L = 50;
     if (!(request.volume.L() > 0) || !std::isfinite(request.volume.L())) {
-        throw Error(ErrorKind::input, "bad_amount", "a recipe needs a volume greater than zero", "volume", "give one, such as 1 L");
+        throw Error(ErrorKind::input, "bad_amount", "a recipe needs a volume greater than zero", "volume",
+                    "give one, such as 1 L");
     }
     for (const BufferItem& buffer : request.buffers) {
         const double value = buffer.concentration.value;
         if (!(value > 0) || value > most_mol_per_L) {
-            throw Error(ErrorKind::input, "bad_amount", "a buffer's concentration must be above zero and below 50 mol/L",
-                        "label", "give one, such as 50 mM");
+            throw Error(ErrorKind::input, "bad_amount",
+                        "a buffer's concentration must be above zero and below 50 mol/L", "label",
+                        "give one, such as 50 mM");
         }
     }
 }
@@ -103,7 +109,8 @@ std::vector<LinearProblem::Total> totals_of(const Request& request) {
 }
 
 /// Best candidate, or an Error that says in the bench's words why there is none.
-Solved choose(LinearProblem& problem, const Table& table, const std::vector<Candidate>& all, const Shortfall& shortfall) {
+Solved choose(LinearProblem& problem, const Table& table, const std::vector<Candidate>& all,
+              const Shortfall& shortfall) {
     constexpr double good_enough_to_rank = 1e-4;
     std::optional<Solved> best;
     for (const Candidate& candidate : all) {
@@ -140,10 +147,12 @@ void add_to_plan(Plan& plan, const Table& table, std::uint16_t reagent, Purpose 
     plan.preparation.portions.push_back({reagent, amount, std::nullopt});
     if (article.strength_mol_per_L.known()) {
         const Molarity strength = Molarity::mol_per_L(article.strength_mol_per_L.value);
-        plan.measure.push_back({reagent, purpose, amount, strength, Volume::litres(amount.mol() / strength.mol_per_L())});
+        plan.measure.push_back(
+            {reagent, purpose, amount, strength, Volume::litres(amount.mol() / strength.mol_per_L())});
     } else {
         const double assay = article.assay.known() ? article.assay.value : 1.0;
-        plan.weigh.push_back({reagent, purpose, amount, Mass::grams(amount.mol() * article.molar_mass_g_per_mol / assay)});
+        plan.weigh.push_back(
+            {reagent, purpose, amount, Mass::grams(amount.mol() * article.molar_mass_g_per_mol / assay)});
     }
 }
 
@@ -181,7 +190,9 @@ void plan_to_ph(Plan& plan, const Table& table, const Preparation& fixed, const 
     plan.route = chosen.route;
     plan.counter_ions = sets[chosen.set].choices;
 
-    const auto amount = [&](std::size_t column) { return Amount::mol(std::max(solved.answer.amounts_mol[column], 0.0)); };
+    const auto amount = [&](std::size_t column) {
+        return Amount::mol(std::max(solved.answer.amounts_mol[column], 0.0));
+    };
     const std::size_t extra = chosen.forms.size();
     for (std::size_t column = 0; column < extra; ++column) {
         add_to_plan(plan, table, solved.columns[column], Purpose::buffer, amount(column));
@@ -193,9 +204,9 @@ void plan_to_ph(Plan& plan, const Table& table, const Preparation& fixed, const 
         add_to_plan(plan, table, solved.columns[extra + 1], Purpose::ionic_strength, amount(extra + 1));
     }
     for (const Portion& portion : fixed.portions) {
-        add_to_plan(plan, table, portion.reagent, Purpose::additive,
-                    portion.amount ? *portion.amount
-                                   : Amount::mol(portion.molality->mol_per_kg() * solved.answer.water.kg()));
+        add_to_plan(
+            plan, table, portion.reagent, Purpose::additive,
+            portion.amount ? *portion.amount : Amount::mol(portion.molality->mol_per_kg() * solved.answer.water.kg()));
     }
     if (chosen.route == Route::titrated) {
         const std::uint16_t article = article_to_titrate_with(table, *chosen.extra, amount(extra), request.volume);

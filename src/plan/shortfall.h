@@ -6,6 +6,7 @@
 
 #include "carboy/error.h"
 #include "carboy/plan.h"
+
 #include "plan/candidates.h"
 
 namespace carboy {

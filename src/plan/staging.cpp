@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+
 #include <fmt/format.h>
 
 #include "carboy/equilibrium.h"
@@ -18,9 +19,8 @@ PH reading_of(const Table& table, const Preparation& preparation, const Activity
 
 bool is_titrant(const Plan& plan, std::size_t portion) {
     // The planner puts the titrant last.
-    const bool titrated =
-        (!plan.measure.empty() && plan.measure.back().purpose == Purpose::titrant) ||
-        (!plan.weigh.empty() && plan.weigh.back().purpose == Purpose::titrant);
+    const bool titrated = (!plan.measure.empty() && plan.measure.back().purpose == Purpose::titrant) ||
+                          (!plan.weigh.empty() && plan.weigh.back().purpose == Purpose::titrant);
     return titrated && portion + 1 == plan.preparation.portions.size();
 }
 
@@ -30,15 +30,17 @@ void warn_of_weak_buffering(Plan& plan) {
     for (const BufferItem& buffer : plan.request.buffers) {
         total += buffer.concentration.value;
     }
-    // Best possible: ln 10 / 4 = 0.576 of the concentration, at pH = pK. Common practice: within 1 pH of a pK, 0.19 of it.
+    // Best possible: ln 10 / 4 = 0.576 of the concentration, at pH = pK. Common practice: within 1 pH of a pK, 0.19 of
+    // it.
     constexpr double one_ph_away = 0.19;
     const double value = plan.predicted.buffer_value.mol_per_kg();
     if (total > 0 && value < one_ph_away * total) {
         plan.warnings.push_back(
             {"weak_buffering",
-             fmt::format("At pH {:.2f} this buffer is more than 1 pH from its pK: its buffer value is {:.2g} mol/kg per pH, "
-                         "{:.0f} % of the best that its concentration allows. Small amounts of acid or base will move it.",
-                         plan.predicted.ph.value(), value, 100 * value / (0.576 * total))});
+             fmt::format(
+                 "At pH {:.2f} this buffer is more than 1 pH from its pK: its buffer value is {:.2g} mol/kg per pH, "
+                 "{:.0f} % of the best that its concentration allows. Small amounts of acid or base will move it.",
+                 plan.predicted.ph.value(), value, 100 * value / (0.576 * total))});
     }
 }
 
@@ -50,9 +52,10 @@ void warn_of_large_titrant(Plan& plan) {
     const double share = titrant.volume / plan.request.volume;
     if (share > 0.5) {
         plan.warnings.push_back(
-            {"much_titrant", fmt::format("The titrant makes up {:.0f} % of the final volume. A stronger one, or the route "
-                                         "with two salts, leaves more room.",
-                                         100 * share)});
+            {"much_titrant",
+             fmt::format("The titrant makes up {:.0f} % of the final volume. A stronger one, or the route "
+                         "with two salts, leaves more room.",
+                         100 * share)});
     }
 }
 

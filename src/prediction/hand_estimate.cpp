@@ -16,8 +16,8 @@ struct PaperStep {
     ComponentId system;
 };
 
-constexpr double whole = 1e-3;  ///< a ratio beyond 1000 to 1 counts as one form alone
-constexpr double traces = 1e-6; ///< mol/kg; below it water decides and no sum on paper holds
+constexpr double whole = 1e-3;   ///< a ratio beyond 1000 to 1 counts as one form alone
+constexpr double traces = 1e-6;  ///< mol/kg; below it water decides and no sum on paper holds
 
 }  // namespace
 

@@ -1,8 +1,10 @@
 #include <cmath>
+
 #include <fmt/format.h>
 
 #include "carboy/equilibrium.h"
 #include "carboy/prediction.h"
+
 #include "prediction/hand_estimate.h"
 
 namespace carboy {
@@ -17,10 +19,11 @@ void warn_of_ionic_strength(Prediction& prediction, const ActivityModel& model) 
     const double expanded = 2 * model.ph_uncertainty(prediction.ionic_strength);
     prediction.warnings.push_back(
         {"ionic_strength_beyond_model",
-         fmt::format("Ionic strength {:.2f} mol/kg is above {:g} mol/kg, the range of the {} model. Expect the pH to be off "
-                     "by up to {:.2f}; trust the meter, or check at working strength after dilution.",
-                     ionic_strength, model.trusted_to_mol_per_kg(),
-                     model.name() == "davies" ? "Davies" : "Debye-Hückel", expanded)});
+         fmt::format(
+             "Ionic strength {:.2f} mol/kg is above {:g} mol/kg, the range of the {} model. Expect the pH to be off "
+             "by up to {:.2f}; trust the meter, or check at working strength after dilution.",
+             ionic_strength, model.trusted_to_mol_per_kg(), model.name() == "davies" ? "Davies" : "Debye-Hückel",
+             expanded)});
 }
 
 void warn_of_unknown_temperature_dependence(Prediction& prediction, const Table& table) {
@@ -31,10 +34,10 @@ void warn_of_unknown_temperature_dependence(Prediction& prediction, const Table&
         if (takes_part && pK_is_extrapolated(system, used.step, prediction.temperature)) {
             prediction.warnings.push_back(
                 {"temperature_dependence_unknown",
-                 fmt::format("The table does not know how pK{} of {} moves with temperature at {:g} °C; its value at 25 °C "
-                             "is used. The pH at {:g} °C is a guess: set it with a meter at that temperature.",
-                             used.step + 1, system.name, prediction.temperature.celsius(),
-                             prediction.temperature.celsius())});
+                 fmt::format(
+                     "The table does not know how pK{} of {} moves with temperature at {:g} °C; its value at 25 °C "
+                     "is used. The pH at {:g} °C is a guess: set it with a meter at that temperature.",
+                     used.step + 1, system.name, prediction.temperature.celsius(), prediction.temperature.celsius())});
         }
     }
 }
@@ -71,8 +74,8 @@ Prediction predict(const Table& table, const Mixture& mixture, Temperature tempe
         }
         const System& system = table.systems[component.index];
         for (std::size_t step = 0; step < system.steps.size(); ++step) {
-            prediction.constants.push_back({component.index, step, thermodynamic_pK(system, step, Temperature{}),
-                                            solver.pK(part, step)});
+            prediction.constants.push_back(
+                {component.index, step, thermodynamic_pK(system, step, Temperature{}), solver.pK(part, step)});
         }
     }
     prediction.uncertainty = ph_uncertainty(solver, table, model);

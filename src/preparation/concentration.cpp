@@ -1,6 +1,7 @@
 #include "carboy/concentration.h"
 
 #include <cmath>
+
 #include <fmt/format.h>
 
 #include "carboy/error.h"
@@ -15,7 +16,9 @@ Error unusable(std::string message, std::string help) {
 
 /// Mass fraction of the substance in the article.
 double purity(const Reagent& reagent) {
-    return reagent.mass_percent.known() ? reagent.mass_percent.value / 100.0 : reagent.assay.known() ? reagent.assay.value : 1.0;
+    return reagent.mass_percent.known() ? reagent.mass_percent.value / 100.0
+           : reagent.assay.known()      ? reagent.assay.value
+                                        : 1.0;
 }
 
 }  // namespace
@@ -54,18 +57,22 @@ Amount amount_in(const Concentration& concentration, Volume volume, const Reagen
         }
         case ConcentrationUnit::percent_v_v:
             if (reagent.state == State::solid || !reagent.strength_mol_per_L.known()) {
-                throw unusable(fmt::format("% v/v is for liquids, and {} is none", reagent.name), "write mM, g/L or % w/v");
+                throw unusable(fmt::format("% v/v is for liquids, and {} is none", reagent.name),
+                               "write mM, g/L or % w/v");
             }
             return Amount::mol(value / 100.0 * volume.L() * reagent.strength_mol_per_L.value);
         case ConcentrationUnit::percent_w_w:
             if (!reagent.density_g_per_mL.known()) {
-                throw unusable(fmt::format("% w/w needs a density, and the table has none for {}", reagent.name), "give it in mol/L or g/L");
+                throw unusable(fmt::format("% w/w needs a density, and the table has none for {}", reagent.name),
+                               "give it in mol/L or g/L");
             }
-            return Amount::mol(value * 10.0 * reagent.density_g_per_mL.value / reagent.molar_mass_g_per_mol * volume.L());
+            return Amount::mol(value * 10.0 * reagent.density_g_per_mL.value / reagent.molar_mass_g_per_mol *
+                               volume.L());
         case ConcentrationUnit::normal: {
             const double equivalents = std::abs(equivalents_per_mole(reagent, table));
             if (equivalents == 0) {
-                throw unusable(fmt::format("N is for strong acids and bases, and {} is none", reagent.name), "give it in mol/L");
+                throw unusable(fmt::format("N is for strong acids and bases, and {} is none", reagent.name),
+                               "give it in mol/L");
             }
             return Amount::mol(value * volume.L() / equivalents);
         }

@@ -8,7 +8,8 @@ namespace {
 
 void advise(std::vector<Advice>& list, std::span<const std::uint16_t> cautions, std::string_view subject) {
     for (const std::uint16_t caution : cautions) {
-        auto known = std::find_if(list.begin(), list.end(), [&](const Advice& advice) { return advice.caution == caution; });
+        auto known =
+            std::find_if(list.begin(), list.end(), [&](const Advice& advice) { return advice.caution == caution; });
         if (known == list.end()) {
             list.push_back({caution, {}});
             known = list.end() - 1;

@@ -16,8 +16,8 @@ struct Advice {
     std::vector<std::string_view> subjects;
 };
 
-/// What a sheet must say about hazards: the classified reagents, and the advice attached to reagents and systems in use,
-/// each once. The advice that every sheet carries comes last.
+/// What a sheet must say about hazards: the classified reagents, and the advice attached to reagents and systems in
+/// use, each once. The advice that every sheet carries comes last.
 struct Cautions {
     std::vector<std::uint16_t> hazardous;  ///< indices into Table::reagents
     std::vector<Advice> advice;

@@ -8,7 +8,9 @@ using nlohmann::ordered_json;
 
 namespace {
 
-ordered_json number_or_null(double value) { return std::isnan(value) ? ordered_json(nullptr) : ordered_json(value); }
+ordered_json number_or_null(double value) {
+    return std::isnan(value) ? ordered_json(nullptr) : ordered_json(value);
+}
 
 ordered_json figure_json(const Figure& figure, const Table& table) {
     if (!figure.known()) {

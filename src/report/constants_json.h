@@ -5,6 +5,7 @@
 #include <nlohmann/json.hpp>
 
 #include "carboy/constants.h"
+
 #include "report/constants_text.h"
 
 namespace carboy {

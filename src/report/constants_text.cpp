@@ -1,8 +1,9 @@
 #include "report/constants_text.h"
 
 #include <cmath>
-#include <fmt/format.h>
 #include <vector>
+
+#include <fmt/format.h>
 
 #include "report/figure_text.h"
 #include "report/page.h"
@@ -50,17 +51,20 @@ void figure_fact(Page& page, std::string_view name, const Figure& figure, std::s
 void step_text(Page& page, const System& system, std::size_t index, const Table& table) {
     const Step& step = system.steps[index];
     page.blank();
-    page.paragraph(fmt::format("step {}: {} -> {}", index + 1, system.species[index].formula, system.species[index + 1].formula));
+    page.paragraph(
+        fmt::format("step {}: {} -> {}", index + 1, system.species[index].formula, system.species[index + 1].formula));
     figure_fact(page, "pK at 25 °C", step.pK_25C, "", table);
     if (step.reference_ionic_strength_mol_per_kg > 0) {
-        fact(page, "", fmt::format("concentration constant at ionic strength {:g} mol/kg; turned into one at zero ionic "
-                                   "strength by the Davies equation",
-                                   step.reference_ionic_strength_mol_per_kg));
+        fact(page, "",
+             fmt::format("concentration constant at ionic strength {:g} mol/kg; turned into one at zero ionic "
+                         "strength by the Davies equation",
+                         step.reference_ionic_strength_mol_per_kg));
     }
     if (step.has_expression) {
         const auto& e = step.expression;
-        fact(page, "pK(T)", fmt::format("{:g}/T + {:g} + {:g} T + {:g} ln T + {:g} T², {:g} to {:g} °C", e[0], e[1], e[2], e[3],
-                                        e[4], step.expression_from_C, step.expression_to_C));
+        fact(page, "pK(T)",
+             fmt::format("{:g}/T + {:g} + {:g} T + {:g} ln T + {:g} T², {:g} to {:g} °C", e[0], e[1], e[2], e[3], e[4],
+                         step.expression_from_C, step.expression_to_C));
     }
     figure_fact(page, "enthalpy", step.enthalpy_kJ_per_mol, "kJ/mol", table);
     figure_fact(page, "heat capacity", step.heat_capacity_J_per_K_mol, "J/(K mol)", table);
@@ -124,7 +128,8 @@ void reagent_text(Page& page, const Reagent& reagent, const Table& table) {
     figure_fact(page, "solubility", reagent.solubility_g_per_L, "g/L at 20 to 25 °C", table);
     std::string hazards(reagent.ghs.signal_word);
     for (const std::uint16_t statement : reagent.ghs.statements) {
-        hazards += fmt::format("{}{} {}", hazards.empty() ? "" : "; ", table.hazards[statement].code, table.hazards[statement].text);
+        hazards += fmt::format("{}{} {}", hazards.empty() ? "" : "; ", table.hazards[statement].code,
+                               table.hazards[statement].text);
     }
     fact(page, "GHS",
          fmt::format("{}  {} ({})", hazards.empty() ? "not classified" : hazards, table.sources[reagent.ghs.source].key,
@@ -144,10 +149,11 @@ void list_systems(Page& page, const Table& table) {
         page.row(columns, {std::string(system.name), system.role == Role::buffer ? "buffer" : "additive", steps});
     }
     page.blank();
-    page.paragraph(fmt::format("{} systems; 'carboy constants list reagents' and 'list ions' show the rest, 'show NAME' one entry "
-                               "whole. Constants {}.",
-                               table.systems.size(), table.version),
-                   "");
+    page.paragraph(
+        fmt::format("{} systems; 'carboy constants list reagents' and 'list ions' show the rest, 'show NAME' one entry "
+                    "whole. Constants {}.",
+                    table.systems.size(), table.version),
+        "");
 }
 
 void list_reagents(Page& page, const Table& table) {

@@ -1,8 +1,9 @@
 #include "report/error_text.h"
 
 #include <algorithm>
-#include <fmt/format.h>
 #include <string_view>
+
+#include <fmt/format.h>
 
 #include "report/figure_text.h"
 #include "report/page.h"
@@ -23,7 +24,9 @@ std::string sentence(const std::string& text) {
     return text.empty() || std::string_view(".?!").find(text.back()) != std::string_view::npos ? text : text + ".";
 }
 
-bool continues_character(char c) { return (static_cast<unsigned char>(c) & 0xC0U) == 0x80U; }
+bool continues_character(char c) {
+    return (static_cast<unsigned char>(c) & 0xC0U) == 0x80U;
+}
 
 Window window_of(const Error::Excerpt& excerpt) {
     constexpr std::size_t room = 76;

@@ -3,6 +3,7 @@
 #include "carboy/constants.h"
 #include "carboy/plan.h"
 #include "carboy/prediction.h"
+
 #include "report/page.h"
 
 namespace carboy {

@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+
 #include <fmt/format.h>
 
 namespace carboy {
@@ -49,9 +50,13 @@ std::string vessel_text(Volume volume) {
     return volume.mL() >= 1.0 ? fmt::format("{:g} mL", volume.mL()) : fmt::format("{:g} µL", volume.mL() * 1e3);
 }
 
-std::string ph_text(PH ph) { return fmt::format("{:.2f}", ph.value()); }
+std::string ph_text(PH ph) {
+    return fmt::format("{:.2f}", ph.value());
+}
 
-std::string temperature_text(Temperature temperature) { return fmt::format("{:g} °C", temperature.celsius()); }
+std::string temperature_text(Temperature temperature) {
+    return fmt::format("{:g} °C", temperature.celsius());
+}
 
 std::string plain_number(double value, int significant) {
     const double size = std::abs(value);
@@ -61,7 +66,9 @@ std::string plain_number(double value, int significant) {
     return fixed(value, significant);
 }
 
-std::string molality_text(Molality molality) { return fmt::format("{} mol/kg", plain_number(molality.mol_per_kg())); }
+std::string molality_text(Molality molality) {
+    return fmt::format("{} mol/kg", plain_number(molality.mol_per_kg()));
+}
 
 std::string concentration_text(const Concentration& concentration) {
     const double value = concentration.value;
@@ -69,7 +76,8 @@ std::string concentration_text(const Concentration& concentration) {
         if (value >= 0.1 || value == 0) {
             return fmt::format("{:.6g} {}", value, whole);
         }
-        return value >= 1e-4 ? fmt::format("{:.6g} {}", value * 1e3, milli) : fmt::format("{:.6g} {}", value * 1e6, micro);
+        return value >= 1e-4 ? fmt::format("{:.6g} {}", value * 1e3, milli)
+                             : fmt::format("{:.6g} {}", value * 1e6, micro);
     };
     switch (concentration.unit) {
         case ConcentrationUnit::mol_per_L:
@@ -89,8 +97,8 @@ std::string concentration_text(const Concentration& concentration) {
 }
 
 std::size_t display_width(std::string_view text) {
-    return static_cast<std::size_t>(
-        std::count_if(text.begin(), text.end(), [](char c) { return (static_cast<unsigned char>(c) & 0xC0U) != 0x80U; }));
+    return static_cast<std::size_t>(std::count_if(
+        text.begin(), text.end(), [](char c) { return (static_cast<unsigned char>(c) & 0xC0U) != 0x80U; }));
 }
 
 }  // namespace carboy

@@ -202,7 +202,7 @@ void add_cautions(ordered_json& record, const Plan& plan, const Table& table) {
         }
         hazards.push_back({{"reagent", reagent.name},
                            {"signal_word", reagent.ghs.signal_word.empty() ? ordered_json(nullptr)
-                                                                          : ordered_json(reagent.ghs.signal_word)},
+                                                                           : ordered_json(reagent.ghs.signal_word)},
                            {"statements", std::move(statements)}});
     }
     record["cautions"] = std::move(hazards);

@@ -11,8 +11,8 @@
 
 namespace carboy {
 
-// The records of the contract; schemas in `data/schema/`. Keys keep their order, numbers are exact (shortest text that reads
-// back to the same double), nothing depends on clock, locale or chance.
+// The records of the contract; schemas in `data/schema/`. Keys keep their order, numbers are exact (shortest text that
+// reads back to the same double), nothing depends on clock, locale or chance.
 
 nlohmann::ordered_json prediction_json(const Prediction& prediction, const Table& table);
 nlohmann::ordered_json recipe_json(const Plan& plan, const Table& table);

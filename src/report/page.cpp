@@ -12,7 +12,9 @@ constexpr std::string_view strong = "\x1b[1m";
 constexpr std::string_view caution = "\x1b[33m";
 constexpr std::string_view plain = "\x1b[0m";
 
-std::string spaces(std::size_t count) { return std::string(count, ' '); }
+std::string spaces(std::size_t count) {
+    return std::string(count, ' ');
+}
 
 /// Longest beginning of a word that fits, cut between characters.
 std::size_t bytes_that_fit(std::string_view word, std::size_t width) {

@@ -6,8 +6,8 @@
 
 namespace carboy {
 
-/// A page of text for a terminal or paper: 80 columns, headings, wrapped paragraphs, aligned rows. Colour is only emphasis;
-/// without it nothing is lost.
+/// A page of text for a terminal or paper: 80 columns, headings, wrapped paragraphs, aligned rows. Colour is only
+/// emphasis; without it nothing is lost.
 class Page {
 public:
     static constexpr std::size_t width = 80;

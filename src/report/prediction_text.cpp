@@ -18,9 +18,9 @@ void species_table(Page& page, const Prediction& prediction) {
     page.row(species_columns, {"", "of", "species", "mol/kg", "γ"});
     std::string_view last;
     for (const PredictedSpecies& species : prediction.species) {
-        page.row(species_columns,
-                 {"", species.owner == last ? "" : std::string(species.owner), std::string(species.formula),
-                  fmt::format("{:.4e}", species.molality.mol_per_kg()), fmt::format("{:.4f}", species.activity_coefficient)});
+        page.row(species_columns, {"", species.owner == last ? "" : std::string(species.owner),
+                                   std::string(species.formula), fmt::format("{:.4e}", species.molality.mol_per_kg()),
+                                   fmt::format("{:.4f}", species.activity_coefficient)});
         last = species.owner;
     }
 }
@@ -32,14 +32,16 @@ std::string prediction_text(std::string_view mixture, const Prediction& predicti
     Page page(style.colour);
     page.title(mixture, temperature_text(prediction.temperature));
     page.blank();
-    page.row(result_columns, {"", fmt::format("pH {:.3f} ± {:.3f}", prediction.ph.value(), prediction.uncertainty.expanded_k2),
-                              "expanded uncertainty, k = 2; amounts and meter not included"},
+    page.row(result_columns,
+             {"", fmt::format("pH {:.3f} ± {:.3f}", prediction.ph.value(), prediction.uncertainty.expanded_k2),
+              "expanded uncertainty, k = 2; amounts and meter not included"},
              true);
     page.row(result_columns, {"", "ionic strength", molality_text(prediction.ionic_strength)});
     page.row(result_columns, {"", "buffer value", molality_text(prediction.buffer_value) + " per pH"});
     if (prediction.hand_estimate) {
-        page.row(result_columns, {"", "sum on paper",
-                                  fmt::format("pH {:.2f}, with pK at 25 °C and no activities", prediction.hand_estimate->value())});
+        page.row(result_columns,
+                 {"", "sum on paper",
+                  fmt::format("pH {:.2f}, with pK at 25 °C and no activities", prediction.hand_estimate->value())});
     }
     page.row(result_columns, {"", "activity model", std::string(prediction.activity_model)});
     if (!prediction.warnings.empty()) {

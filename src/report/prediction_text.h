@@ -5,6 +5,7 @@
 
 #include "carboy/constants.h"
 #include "carboy/prediction.h"
+
 #include "report/recipe_text.h"
 
 namespace carboy {

@@ -28,8 +28,12 @@ std::string_view purpose_word(Purpose purpose) {
 }
 
 std::string detail(const Reagent& reagent, Purpose purpose) {
-    const std::string_view word = purpose_word(purpose);
-    return word.empty() ? fmt::format("{}  {:.2f} g/mol", reagent.formula, reagent.molar_mass_g_per_mol) : std::string(word);
+    if (const std::string_view word = purpose_word(purpose); !word.empty()) {
+        return std::string(word);
+    }
+    const std::string mass = fmt::format("{:.2f} g/mol", reagent.molar_mass_g_per_mol);
+    const std::string whole = fmt::format("{} {}", reagent.formula, mass);
+    return display_width(whole) <= ingredient_columns.back().width ? whole : mass;
 }
 
 void ingredients(Page& page, const Plan& plan, const Table& table) {
@@ -38,7 +42,8 @@ void ingredients(Page& page, const Plan& plan, const Table& table) {
         for (const Weighing& item : plan.weigh) {
             const Reagent& reagent = table.reagents[item.reagent];
             page.row(ingredient_columns,
-                     {"", std::string(reagent.name), "", mass_text(item.mass), "", detail(reagent, item.purpose)}, true);
+                     {"", std::string(reagent.name), "", mass_text(item.mass), "", detail(reagent, item.purpose)},
+                     true);
         }
     }
     if (!plan.measure.empty()) {
@@ -46,11 +51,13 @@ void ingredients(Page& page, const Plan& plan, const Table& table) {
         for (const Measurement& item : plan.measure) {
             const Reagent& reagent = table.reagents[item.reagent];
             page.row(ingredient_columns,
-                     {"", std::string(reagent.name), "", volume_text(item.volume), "", detail(reagent, item.purpose)}, true);
+                     {"", std::string(reagent.name), "", volume_text(item.volume), "", detail(reagent, item.purpose)},
+                     true);
         }
     }
-    page.row(ingredient_columns, {"", "purified water, to", "", vessel_text(plan.request.volume), "",
-                                  "at " + temperature_text(plan.request.prepare_at)},
+    page.row(ingredient_columns,
+             {"", "purified water, to", "", vessel_text(plan.request.volume), "",
+              "at " + temperature_text(plan.request.prepare_at)},
              true);
 }
 
@@ -61,7 +68,8 @@ void readings(Page& page, const Plan& plan) {
                                   : reading.stage == Stage::titrated ? "titrant added: stop here"
                                                                      : "filled to the mark";
         const bool only = plan.readings.size() == 2 && reading.stage == Stage::dissolved;
-        page.row(reading_columns, {"", only ? "dissolved" : words, volume_text(reading.volume), "pH " + ph_text(reading.ph)},
+        page.row(reading_columns,
+                 {"", only ? "dissolved" : words, volume_text(reading.volume), "pH " + ph_text(reading.ph)},
                  reading.stage != Stage::dissolved);
     }
 }
@@ -79,8 +87,8 @@ void result(Page& page, const Plan& plan, const Table& table) {
     page.row(result_columns, {"", "buffer value", molality_text(predicted.buffer_value) + " per pH"});
     for (const CounterIonChoice& choice : plan.counter_ions) {
         page.row(result_columns, {"", fmt::format("counter-ion of {}", name_of(table, choice.system)),
-                                     fmt::format("{}{}", name_of(table, choice.counter_ion),
-                                                 choice.named_by_label ? "" : " (usual one; the label names none)")});
+                                  fmt::format("{}{}", name_of(table, choice.counter_ion),
+                                              choice.named_by_label ? "" : " (usual one; the label names none)")});
     }
 }
 
@@ -89,8 +97,8 @@ void cautions(Page& page, const Plan& plan, const Table& table) {
     page.heading("CAUTIONS");
     for (const std::uint16_t index : all.hazardous) {
         const Reagent& reagent = table.reagents[index];
-        std::string text = fmt::format("{}: {}.", reagent.name,
-                                       reagent.ghs.signal_word.empty() ? "Caution" : reagent.ghs.signal_word);
+        std::string text =
+            fmt::format("{}: {}.", reagent.name, reagent.ghs.signal_word.empty() ? "Caution" : reagent.ghs.signal_word);
         for (const std::uint16_t statement : reagent.ghs.statements) {
             text += fmt::format(" {} {}.", table.hazards[statement].code, table.hazards[statement].text);
         }
@@ -112,9 +120,10 @@ void warnings(Page& page, const Plan& plan, const TextStyle& style) {
         }
     }
     if (style.bench_temperature_assumed) {
-        page.paragraph("The bench temperature was not given; 25 °C is assumed for the volumes and the meter "
-                       "(--prepare-at sets it).",
-                       "  - ");
+        page.paragraph(
+            "The bench temperature was not given; 25 °C is assumed for the volumes and the meter "
+            "(--prepare-at sets it).",
+            "  - ");
     }
 }
 

@@ -9,7 +9,7 @@ namespace carboy {
 
 struct TextStyle {
     bool colour = false;
-    bool explain = false;              ///< the constants, equations and sources behind the figures
+    bool explain = false;                    ///< the constants, equations and sources behind the figures
     bool bench_temperature_assumed = false;  ///< --prepare-at was left out; the sheet says so
 };
 

@@ -1,6 +1,7 @@
 #include "report/steps.h"
 
 #include <cmath>
+
 #include <fmt/format.h>
 
 #include "report/figure_text.h"
@@ -55,7 +56,8 @@ Titrant titrant_of(const Plan& plan, const Table& table) {
     constexpr double at_once = 0.9;  // common practice, no source: the last tenth in small portions
     if (!plan.measure.empty() && plan.measure.back().purpose == Purpose::titrant) {
         const Measurement& item = plan.measure.back();
-        return {std::string(table.reagents[item.reagent].name), volume_text(item.volume), volume_text(at_once * item.volume)};
+        return {std::string(table.reagents[item.reagent].name), volume_text(item.volume),
+                volume_text(at_once * item.volume)};
     }
     if (!plan.weigh.empty() && plan.weigh.back().purpose == Purpose::titrant) {
         const Weighing& item = plan.weigh.back();
@@ -97,10 +99,12 @@ std::vector<std::string> steps_of(const Plan& plan, const Table& table) {
                                 volume_text(plan.dissolve_in), bench, ph_text(plan.readings.front().ph)));
     if (!titrant.name.empty()) {
         const PH target = plan.readings[1].ph;
-        steps.push_back(fmt::format("Calibrate the meter at {} with two standards that bracket pH {}.", bench, ph_text(target)));
-        steps.push_back(fmt::format("Add {}: about {} at once, then the rest in small portions until the meter reads {} "
-                                    "(about {} in all). Let any heat go before you read.",
-                                    titrant.name, titrant.most, ph_text(target), titrant.all));
+        steps.push_back(
+            fmt::format("Calibrate the meter at {} with two standards that bracket pH {}.", bench, ph_text(target)));
+        steps.push_back(
+            fmt::format("Add {}: about {} at once, then the rest in small portions until the meter reads {} "
+                        "(about {} in all). Let any heat go before you read.",
+                        titrant.name, titrant.most, ph_text(target), titrant.all));
     }
     steps.push_back(fmt::format("Transfer with rinsing, fill to {} at {} and mix. The meter should read {}.",
                                 vessel_text(plan.request.volume), bench, ph_text(plan.readings.back().ph)));

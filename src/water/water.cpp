@@ -2,8 +2,9 @@
 
 #include <array>
 #include <cmath>
-#include <fmt/format.h>
 #include <numbers>
+
+#include <fmt/format.h>
 
 #include "carboy/error.h"
 
@@ -64,9 +65,9 @@ double relative_permittivity(double density, double kelvin) {
            (4.0 - 4.0 * b);
 }
 
-/// IAPWS R11-07, Release on the Ionization Constant of H2O (Bandura AV, Lvov SN, J. Phys. Chem. Ref. Data 35, 15 (2006)),
-/// with the coefficients that give the release's check value, 13.906565 at 300 K and 1000 kg/m3. Another set is in
-/// circulation that differs by 0.002 at 100 °C and misses the check value.
+/// IAPWS R11-07, Release on the Ionization Constant of H2O (Bandura AV, Lvov SN, J. Phys. Chem. Ref. Data 35, 15
+/// (2006)), with the coefficients that give the release's check value, 13.906565 at 300 K and 1000 kg/m3. Another set
+/// is in circulation that differs by 0.002 at 100 °C and misses the check value.
 double ion_product_pKw(double density, double kelvin) {
     constexpr double coordination = 6;
     constexpr double molar_mass = 18.015268;
@@ -89,9 +90,10 @@ Mass water_in(Volume volume, const WaterProperties& water) {
 WaterProperties water_at(Temperature temperature) {
     const double t = temperature.celsius();
     if (!(t >= 0.0 && t <= 100.0)) {
-        throw Error(ErrorKind::input, "temperature_out_of_range",
-                    fmt::format("{:g} °C is outside 0 to 100 °C, where liquid water at normal pressure is described", t),
-                    "temperature", "give a temperature from 0 to 100 °C");
+        throw Error(
+            ErrorKind::input, "temperature_out_of_range",
+            fmt::format("{:g} °C is outside 0 to 100 °C, where liquid water at normal pressure is described", t),
+            "temperature", "give a temperature from 0 to 100 °C");
     }
     const double kelvin = temperature.kelvin();
     const double density = density_kg_per_m3(t);
@@ -103,8 +105,8 @@ WaterProperties water_at(Temperature temperature) {
     water.relative_permittivity = permittivity;
     water.pKw = ion_product_pKw(density, kelvin);
     // Limiting law: A = (2 pi N rho)^1/2 (e^2 / 4 pi eps kT)^3/2 / ln 10; B = (2 e^2 N rho / eps kT)^1/2.
-    const double screening =
-        elementary_charge_C * elementary_charge_C / (vacuum_permittivity_F_per_m * permittivity * boltzmann_J_per_K * kelvin);
+    const double screening = elementary_charge_C * elementary_charge_C /
+                             (vacuum_permittivity_F_per_m * permittivity * boltzmann_J_per_K * kelvin);
     water.debye_huckel_A = std::sqrt(2.0 * std::numbers::pi * avogadro_per_mol * density) *
                            std::pow(screening / (4.0 * std::numbers::pi), 1.5) / std::numbers::ln10;
     water.debye_huckel_B_per_nm = std::sqrt(2.0 * screening * avogadro_per_mol * density) * 1e-9;

@@ -1,11 +1,12 @@
 #include <array>
-#include <benchmark/benchmark.h>
-#include <boost/math/tools/toms748_solve.hpp>
 #include <cmath>
 #include <cstdint>
-#include <fmt/format.h>
 #include <numbers>
 #include <utility>
+
+#include <benchmark/benchmark.h>
+#include <boost/math/tools/toms748_solve.hpp>
+#include <fmt/format.h>
 
 #include "carboy/equilibrium.h"
 #include "carboy/notation.h"
@@ -35,7 +36,9 @@ Mixture phosphate_mixture() {
 }
 
 /// Sodium between 0.03 and 0.07 mol/kg, so that no two solves in a row are the same problem.
-double varied_sodium(int i) { return 0.03 + 0.04 * ((i * 37) % 101) / 100.0; }
+double varied_sodium(int i) {
+    return 0.03 + 0.04 * ((i * 37) % 101) / 100.0;
+}
 
 /// The textbook way: what a program would do with a general root finder.
 class Baseline {
@@ -70,8 +73,8 @@ public:
             // pH to 1e-12, as the solver gives it: 2^(1 - bits) of a pH near 7.
             constexpr int bits = 44;
             std::uintmax_t iterations = 100;
-            const auto bracket = boost::math::tools::toms748_solve(charge, 0.0, 14.0,
-                                                                   boost::math::tools::eps_tolerance<double>(bits), iterations);
+            const auto bracket = boost::math::tools::toms748_solve(
+                charge, 0.0, 14.0, boost::math::tools::eps_tolerance<double>(bits), iterations);
             ph = 0.5 * (bracket.first + bracket.second);
             const auto s = species(ph);
             const double next = spectators_half_squares + 0.5 * (s[0] + s[1] + s[2] + 4 * s[3] + 9 * s[4]);
@@ -141,8 +144,10 @@ public:
     }
     void Finalize() override {
         if (ours_ > 0 && baseline_ > 0) {
-            fmt::print("\nforward solve {:.0f} ns; Boost.Math toms748_solve nested in ionic strength {:.0f} ns; ratio {:.1f}\n",
-                       ours_, baseline_, baseline_ / ours_);
+            fmt::print(
+                "\nforward solve {:.0f} ns; Boost.Math toms748_solve nested in ionic strength {:.0f} ns; ratio "
+                "{:.1f}\n",
+                ours_, baseline_, baseline_ / ours_);
         }
     }
 

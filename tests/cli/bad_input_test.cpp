@@ -99,23 +99,25 @@ TEST_CASE("bad input: labels and mixtures at the shell", "[cli][bad-input]") {
     for (const auto& [label, words] : labels) {
         check({{{"recipe", label, "--volume", "1L"}, 2, words}});
     }
-    check({{{"recipe", "50 mM sodium acetate, pH 2", "--volume", "1L"}, 1, "too acid"},
-           {{"recipe", "50 mM Tris-HCl, pH 12", "--volume", "1L"}, 1, "too basic"},
-           {{"recipe", "0.1 M sodium phosphate, pH 7.2, ionic strength 10 mM", "--volume", "1L"}, 1, "cannot be reached"},
-           {{"recipe", "50 mM hypochlorite, pH 7.5", "--volume", "1L"}, 1, "no reagent"},
-           {{"recipe", "49 M sodium acetate, pH 5", "--volume", "1L"}, 2, "no room for water"},
-           {{"predict", "6 g Tris"}, 2, "final volume is missing"},
-           {{"predict", "6 g Triss, to 1 L"}, 2, "did you mean Tris"},
-           {{"predict", "25 mM phosphate"}, 2, "which form"},
-           {{"predict", "600 mL of 1 M HCl, 600 mL of 1 M NaOH, to 1 L"}, 2, "more than the final"},
-           {{"predict", "5 kg NaCl, 5 kg sucrose, to 1 L"}, 2, "no room for water"}});
+    check(
+        {{{"recipe", "50 mM sodium acetate, pH 2", "--volume", "1L"}, 1, "too acid"},
+         {{"recipe", "50 mM Tris-HCl, pH 12", "--volume", "1L"}, 1, "too basic"},
+         {{"recipe", "0.1 M sodium phosphate, pH 7.2, ionic strength 10 mM", "--volume", "1L"}, 1, "cannot be reached"},
+         {{"recipe", "50 mM hypochlorite, pH 7.5", "--volume", "1L"}, 1, "no reagent"},
+         {{"recipe", "49 M sodium acetate, pH 5", "--volume", "1L"}, 2, "no room for water"},
+         {{"predict", "6 g Tris"}, 2, "final volume is missing"},
+         {{"predict", "6 g Triss, to 1 L"}, 2, "did you mean Tris"},
+         {{"predict", "25 mM phosphate"}, 2, "which form"},
+         {{"predict", "600 mL of 1 M HCl, 600 mL of 1 M NaOH, to 1 L"}, 2, "more than the final"},
+         {{"predict", "5 kg NaCl, 5 kg sucrose, to 1 L"}, 2, "no room for water"}});
 }
 
 TEST_CASE("bad input: files", "[cli][bad-input]") {
     const TemporaryFolder folder;
     const std::string broken = folder.write("broken.json", "{\"schema\": \"carboy-constants/1\", ");
     const std::string faulty = folder.write(
-        "faulty.json", R"({"schema":"carboy-constants/1","reagents":[{"name":"x","formula":"NaCl","cas":"1-2-3","supplies":{"Na+":1}}]})");
+        "faulty.json",
+        R"({"schema":"carboy-constants/1","reagents":[{"name":"x","formula":"NaCl","cas":"1-2-3","supplies":{"Na+":1}}]})");
     check({{{"recipe", good, "--volume", "1L", "--constants", folder.path("none.json")}, 3, "cannot be opened"},
            {{"recipe", good, "--volume", "1L", "--constants", broken}, 4, "not JSON"},
            {{"recipe", good, "--volume", "1L", "--constants", faulty}, 4, "more"},
@@ -144,11 +146,16 @@ TEST_CASE("bad input: requests as JSON", "[cli][bad-input]") {
         {R"({"label":"50 mM Trs-HCl, pH 8","volume":"1 L"})", "Tris-HCl"},
         {R"({"label":"50 mM Tris-HCl, pH 8","volume":"1 L","route":"magic"})", "no route 'magic'"},
         {R"({"buffers":[],"target":{"pH":7},"volume":"1 L"})", "'buffers' is empty"},
-        {R"({"buffers":[{"system":"unobtainium","concentration":"1 M"}],"target":{"pH":7},"volume":"1 L"})", "no system called"},
-        {R"({"buffers":[{"system":"Tris","concentration":"1 g/L"}],"target":{"pH":7},"volume":"1 L"})", "mol/L or mol/kg"},
-        {R"({"buffers":[{"system":"Tris","concentration":"50 mM","cation":"Xx+"}],"target":{"pH":7},"volume":"1 L"})", "no ion called"},
-        {R"({"buffers":[{"system":"Tris","concentration":"50 mM"}],"target":{"pH":"7"},"volume":"1 L"})", "must be a number"},
-        {R"({"buffers":[{"system":"Tris","concentration":"50 mM"}],"target":{"pH":77},"volume":"1 L"})", "outside -2 to 16"},
+        {R"({"buffers":[{"system":"unobtainium","concentration":"1 M"}],"target":{"pH":7},"volume":"1 L"})",
+         "no system called"},
+        {R"({"buffers":[{"system":"Tris","concentration":"1 g/L"}],"target":{"pH":7},"volume":"1 L"})",
+         "mol/L or mol/kg"},
+        {R"({"buffers":[{"system":"Tris","concentration":"50 mM","cation":"Xx+"}],"target":{"pH":7},"volume":"1 L"})",
+         "no ion called"},
+        {R"({"buffers":[{"system":"Tris","concentration":"50 mM"}],"target":{"pH":"7"},"volume":"1 L"})",
+         "must be a number"},
+        {R"({"buffers":[{"system":"Tris","concentration":"50 mM"}],"target":{"pH":77},"volume":"1 L"})",
+         "outside -2 to 16"},
         {R"({"buffers":[{"system":"Tris","concentration":"50 mM"}],"target":{},"volume":"1 L"})", "'pH' is missing"},
         {R"({"buffers":[{"system":"Tris","concentration":"50 mM"}],"additives":[{"reagent":"NaCk","concentration":"1 M"}],"target":{"pH":8},"volume":"1 L"})",
          "NaCl"},

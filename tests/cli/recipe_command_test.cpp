@@ -1,7 +1,8 @@
 #include <cmath>
+#include <regex>
+
 #include <fmt/format.h>
 #include <nlohmann/json.hpp>
-#include <regex>
 
 #include "catch_shim.h"
 #include "support/run_program.h"
@@ -36,7 +37,8 @@ std::string as_mixture(const json& record) {
 }  // namespace
 
 TEST_CASE("recipe: the label of the contract", "[cli][recipe]") {
-    const json record = recipe({"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 °C", "--volume", "2L", "--prepare-at", "22 C"});
+    const json record =
+        recipe({"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 °C", "--volume", "2L", "--prepare-at", "22 C"});
     CHECK(record.at("kind") == "recipe");
     CHECK(record.at("route") == "titrated");
     CHECK(record.at("weigh").at(0).at("cas") == "77-86-1");
@@ -56,8 +58,9 @@ TEST_CASE("recipe: the label of the contract", "[cli][recipe]") {
 
 TEST_CASE("recipe: fed back as a mixture line, weigh and measure alone give the target", "[cli][recipe]") {
     for (const char* label :
-         {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C", "0.1 M sodium phosphate, pH 7.20 at 25 C, ionic strength 0.30 M",
-          "20 mM HEPES-KOH, pH 7.4", "50 mM acetic acid, 50 mM sodium phosphate, 50 mM borate, pH 8.6", "0.2 M sodium acetate, pH 5.0",
+         {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C",
+          "0.1 M sodium phosphate, pH 7.20 at 25 C, ionic strength 0.30 M", "20 mM HEPES-KOH, pH 7.4",
+          "50 mM acetic acid, 50 mM sodium phosphate, 50 mM borate, pH 8.6", "0.2 M sodium acetate, pH 5.0",
           "100 mM glycine-HCl, pH 2.8", "50 mM potassium phosphate, pH 7.0 at 37 C", "0.5 M EDTA, pH 8.0"}) {
         for (const char* route : {"titrated", "any"}) {
             const json record = recipe({label, "--volume", "750 mL", "--prepare-at", "21 C", "--route", route});
@@ -96,8 +99,8 @@ TEST_CASE("recipe: text and JSON agree", "[cli][recipe]") {
 }
 
 TEST_CASE("recipe: the sheet fits 80 columns and needs no colour", "[cli][recipe]") {
-    for (const char* label : {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C", "0.1 M citrate, 0.05 % w/v sodium azide, pH 5.5",
-                              "2 M potassium phosphate, pH 7.4"}) {
+    for (const char* label : {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C",
+                              "0.1 M citrate, 0.05 % w/v sodium azide, pH 5.5", "2 M potassium phosphate, pH 7.4"}) {
         const auto run = run_carboy({"recipe", label, "--volume", "1L", "--explain"});
         INFO(run.err);
         REQUIRE(run.status == 0);
@@ -132,7 +135,8 @@ TEST_CASE("recipe: the same input gives the same bytes", "[cli][recipe]") {
 TEST_CASE("recipe: two temperatures that contradict each other are refused, --at alone serves", "[cli][recipe]") {
     CHECK(run_carboy({"recipe", "50 mM Tris-HCl, pH 8 at 4 C", "--volume", "1L", "--at", "37 C"}).status == 2);
     CHECK(recipe({"50 mM Tris-HCl, pH 8", "--volume", "1L", "--at", "37 C"}).at("target").at("temperature_C") == 37);
-    CHECK(recipe({"50 mM Tris-HCl, pH 8 at 37 C", "--volume", "1L", "--at", "37 C"}).at("target").at("temperature_C") == 37);
+    CHECK(recipe({"50 mM Tris-HCl, pH 8 at 37 C", "--volume", "1L", "--at", "37 C"}).at("target").at("temperature_C") ==
+          37);
 }
 
 TEST_CASE("recipe: says when the bench temperature was left out", "[cli][recipe]") {
@@ -153,8 +157,8 @@ TEST_CASE("recipe: a request file gives what the same label gives", "[cli][recip
     REQUIRE(run.status == 0);
     const json from_file = json::parse(run.out);
     CHECK(from_file.at("id") == "B-0043");
-    const json from_label = recipe({"50 mM sodium phosphate, 150 mM NaCl, pH 7.4 at 37 C, ionic strength 0.30 M", "--volume", "1L",
-                                    "--prepare-at", "22 C"});
+    const json from_label = recipe({"50 mM sodium phosphate, 150 mM NaCl, pH 7.4 at 37 C, ionic strength 0.30 M",
+                                    "--volume", "1L", "--prepare-at", "22 C"});
     CHECK(from_file.at("recipe_id") == from_label.at("recipe_id"));
     CHECK(from_file.at("weigh") == from_label.at("weigh"));
     CHECK(from_file.at("predicted") == from_label.at("predicted"));
@@ -170,5 +174,6 @@ TEST_CASE("recipe: -o writes whole files only", "[cli][recipe]") {
     CHECK(works.status == 0);
     CHECK(works.out.empty());
     CHECK(carboy::test::run_program("cat", {file}).out.find("Tris") != std::string::npos);
-    CHECK(run_carboy({"recipe", "50 mM Tris-HCl, pH 8", "--volume", "1L", "-o", folder.path("no/such/folder.txt")}).status == 3);
+    CHECK(run_carboy({"recipe", "50 mM Tris-HCl, pH 8", "--volume", "1L", "-o", folder.path("no/such/folder.txt")})
+              .status == 3);
 }

@@ -6,6 +6,7 @@
 #include <sstream>
 
 #include "carboy/constants_file.h"
+
 #include "catch_shim.h"
 #include "constants/formula.h"
 #include "constants/name.h"
@@ -42,13 +43,15 @@ TEST_CASE("bundled table: what a bench needs is there", "[constants]") {
         steps += system.steps.size();
     }
     CHECK(steps >= 175);
-    for (const char* name : {"formate", "lactate", "benzoate", "propionate", "malate", "fumarate", "malonate", "ascorbate", "EDTA",
-                             "EGTA", "lysine", "alanine", "taurine", "azide", "fluoride", "Tris", "HEPES", "phosphate", "citric acid"}) {
+    for (const char* name :
+         {"formate", "lactate", "benzoate", "propionate", "malate", "fumarate", "malonate", "ascorbate", "EDTA", "EGTA",
+          "lysine", "alanine", "taurine", "azide", "fluoride", "Tris", "HEPES", "phosphate", "citric acid"}) {
         INFO(name);
         CHECK(find_system(table, name) != nullptr);
     }
-    for (const char* name : {"NaH2PO4·H2O", "Na2HPO4.7H2O", "na2hpo4·12h2o", "7782-85-6", "citric acid monohydrate", "HCl 37 %",
-                             "sodium acetate trihydrate", "borax", "KHP", "Tris base", "KH2PO4", "Na2HPO4", "NaCl", "NaOH", "acetic acid"}) {
+    for (const char* name : {"NaH2PO4·H2O", "Na2HPO4.7H2O", "na2hpo4·12h2o", "7782-85-6", "citric acid monohydrate",
+                             "HCl 37 %", "sodium acetate trihydrate", "borax", "KHP", "Tris base", "KH2PO4", "Na2HPO4",
+                             "NaCl", "NaOH", "acetic acid"}) {
         INFO(name);
         CHECK((find_reagent(table, name) != nullptr || find_reagent_by_cas(table, name) != nullptr));
     }
@@ -92,7 +95,8 @@ TEST_CASE("bundled table: every reagent is neutral and is what it supplies", "[c
                 charge += supply.count * base.charge;
             }
         }
-        // Protons make it neutral, water makes up the rest: the masses must differ by p H and k H2O with k a multiple of 1/2.
+        // Protons make it neutral, water makes up the rest: the masses must differ by p H and k H2O with k a multiple
+        // of 1/2.
         constexpr double hydrogen = 1.008;
         constexpr double water = 18.015;
         const double waters = (reagent.molar_mass_g_per_mol - mass + charge * hydrogen) / water;
@@ -129,7 +133,8 @@ TEST_CASE("bundled table: steps, charges and names hang together", "[constants]"
                 break;
         }
     }
-    CHECK(std::is_sorted(table.names.begin(), table.names.end(), [](const auto& a, const auto& b) { return a.key < b.key; }));
+    CHECK(std::is_sorted(table.names.begin(), table.names.end(),
+                         [](const auto& a, const auto& b) { return a.key < b.key; }));
 }
 
 TEST_CASE("bundled table: one article of each chemistry is the usual one", "[constants]") {

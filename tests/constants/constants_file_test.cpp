@@ -1,7 +1,9 @@
+#include "carboy/constants_file.h"
+
 #include <algorithm>
 
-#include "carboy/constants_file.h"
 #include "carboy/equilibrium.h"
+
 #include "catch_shim.h"
 
 using namespace carboy;
@@ -9,20 +11,26 @@ using namespace carboy;
 namespace {
 
 /// A document around one section.
-std::string document(const std::string& section) { return R"({"schema":"carboy-constants/1",)" + section + "}"; }
+std::string document(const std::string& section) {
+    return R"({"schema":"carboy-constants/1",)" + section + "}";
+}
 
-std::string a_system(const std::string& more = "", const std::string& step_more = "", const std::string& name = "test acid") {
-    return document(R"("systems":[{"name":")" + name + R"(","species":["C7H6O2","C7H5O2-"],"counter_ions":["Na+"],)" + more +
-                    R"("steps":[{"pK_25C":{"value":4.2,"uncertainty":0.01},)" + step_more +
+std::string a_system(const std::string& more = "", const std::string& step_more = "",
+                     const std::string& name = "test acid") {
+    return document(R"("systems":[{"name":")" + name + R"(","species":["C7H6O2","C7H5O2-"],"counter_ions":["Na+"],)" +
+                    more + R"("steps":[{"pK_25C":{"value":4.2,"uncertainty":0.01},)" + step_more +
                     R"("source":"goldberg-2002","evidence":"seen"}]}])");
 }
 
 std::string a_reagent(const std::string& changed_key = "", const std::string& changed_value = "") {
     std::string text = "\"reagents\":[{";
-    const std::pair<const char*, const char*> members[] = {
-        {"name", R"("test salt")"}, {"names", "[]"},           {"formula", R"("NaCl")"},
-        {"cas", R"("7647-14-5")"}, {"supplies", R"({"Na+":1,"Cl-":1})"}, {"state", R"("solid")"},
-        {"ghs", R"({"signal_word":null,"statements":[]})"}};
+    const std::pair<const char*, const char*> members[] = {{"name", R"("test salt")"},
+                                                           {"names", "[]"},
+                                                           {"formula", R"("NaCl")"},
+                                                           {"cas", R"("7647-14-5")"},
+                                                           {"supplies", R"({"Na+":1,"Cl-":1})"},
+                                                           {"state", R"("solid")"},
+                                                           {"ghs", R"({"signal_word":null,"statements":[]})"}};
     bool first = true;
     for (const auto& [key, value] : members) {
         text += (first ? "\"" : ",\"") + std::string(key) + "\":" + (key == changed_key ? changed_value : value);
@@ -67,8 +75,8 @@ TEST_CASE("constants file: adds and replaces entry by entry, indices stay", "[co
 }
 
 TEST_CASE("constants file: a published expression in T", "[constants][overlay]") {
-    // Bates RG, Hetzer HB, J. Phys. Chem. 65, 667 (1961): pK of Tris 0 to 50 °C; from memory. Values at 0, 25, 37, 50 °C as
-    // their table has them: 8.850, 8.075, 7.747, 7.436 (from memory).
+    // Bates RG, Hetzer HB, J. Phys. Chem. 65, 667 (1961): pK of Tris 0 to 50 °C; from memory. Values at 0, 25, 37, 50
+    // °C as their table has them: 8.850, 8.075, 7.747, 7.436 (from memory).
     const auto overlay = lay_over(
         bundled_table(),
         document(R"("systems":[{"name":"Tris by Bates","species":["C4H12NO3+","C4H11NO3"],"counter_ions":["Cl-"],
@@ -115,21 +123,29 @@ TEST_CASE("constants file: every fault is told with its path", "[constants][over
         {a_system(R"("colour":"red",)"), "/systems/0", "'colour' is not known"},
         {a_system(R"("usual_form":"no such salt",)"), "/systems/0/usual_form", "no reagent"},
         {a_system(R"("cautions":["no-such"],)"), "/systems/0/cautions/0", "no caution"},
-        {a_system("", R"("enthalpy_kJ_per_mol":{"value":4000},)"), "/systems/0/steps/0/enthalpy_kJ_per_mol/value", "outside"},
-        {a_system("", R"("enthalpy_kJ_per_mol":{"value":"4"},)"), "/systems/0/steps/0/enthalpy_kJ_per_mol/value", "number is expected"},
+        {a_system("", R"("enthalpy_kJ_per_mol":{"value":4000},)"), "/systems/0/steps/0/enthalpy_kJ_per_mol/value",
+         "outside"},
+        {a_system("", R"("enthalpy_kJ_per_mol":{"value":"4"},)"), "/systems/0/steps/0/enthalpy_kJ_per_mol/value",
+         "number is expected"},
         {a_system("", R"("enthalpy_kJ_per_mol":4,)"), "/systems/0/steps/0/enthalpy_kJ_per_mol", "object is expected"},
         {a_system("", R"("pk":{"value":4},)"), "/systems/0/steps/0", "'pk' is not known"},
-        {a_system("", R"("expression":{"terms":{"1/T":1000},"from_C":50,"to_C":0},)"), "/systems/0/steps/0/expression", "below"},
-        {a_system("", R"("expression":{"terms":{"1/T":1000},"from_C":0,"to_C":50},)"), "/systems/0/steps/0/expression", "at 25 °C"},
-        {document(R"("systems":[{"name":"x","species":["C7H6O2","C7H5O2-"],"steps":[{"pK_25C":{"value":4.2},"source":"nobody"}]}])"),
+        {a_system("", R"("expression":{"terms":{"1/T":1000},"from_C":50,"to_C":0},)"), "/systems/0/steps/0/expression",
+         "below"},
+        {a_system("", R"("expression":{"terms":{"1/T":1000},"from_C":0,"to_C":50},)"), "/systems/0/steps/0/expression",
+         "at 25 °C"},
+        {document(
+             R"("systems":[{"name":"x","species":["C7H6O2","C7H5O2-"],"steps":[{"pK_25C":{"value":4.2},"source":"nobody"}]}])"),
          "/systems/0/steps/0/source", "no source 'nobody'"},
-        {document(R"("systems":[{"name":"x","species":["C7H6O2","C7H5O2-"],"steps":[{"pK_25C":{"value":4.2}}]}])"), "/systems/0/steps/0",
-         "'source' is missing"},
-        {document(R"("systems":[{"name":"x","species":["C7H6O2"],"steps":[{"pK_25C":{"value":4.2},"source":"goldberg-2002"}]}])"),
+        {document(R"("systems":[{"name":"x","species":["C7H6O2","C7H5O2-"],"steps":[{"pK_25C":{"value":4.2}}]}])"),
+         "/systems/0/steps/0", "'source' is missing"},
+        {document(
+             R"("systems":[{"name":"x","species":["C7H6O2"],"steps":[{"pK_25C":{"value":4.2},"source":"goldberg-2002"}]}])"),
          "/systems/0", "need 2 species"},
-        {document(R"("systems":[{"name":"x","species":["C7H5O2-","C7H6O2"],"steps":[{"pK_25C":{"value":4.2},"source":"goldberg-2002"}]}])"),
+        {document(
+             R"("systems":[{"name":"x","species":["C7H5O2-","C7H6O2"],"steps":[{"pK_25C":{"value":4.2},"source":"goldberg-2002"}]}])"),
          "/systems/0", "not the loss of one H+"},
-        {document(R"("systems":[{"name":"x","species":["Qq","C7H5O2-"],"steps":[{"pK_25C":{"value":4.2},"source":"goldberg-2002"}]}])"),
+        {document(
+             R"("systems":[{"name":"x","species":["Qq","C7H5O2-"],"steps":[{"pK_25C":{"value":4.2},"source":"goldberg-2002"}]}])"),
          "/systems/0", "no atomic weight for 'Qq'"},
         {a_system("", "", "a\\u0001b"), "/systems/0/name", "control character"},
         {document(R"("spectators":[{"name":"Xx","formula":"na+"}])"), "/spectators/0", "cannot be read"},
@@ -142,12 +158,15 @@ TEST_CASE("constants file: every fault is told with its path", "[constants][over
         {a_reagent("state", R"("solution")"), "/reagents/0", "needs a strength"},
         {a_reagent("assay", R"({"nominal":1.5})"), "/reagents/0/assay/nominal", "outside"},
         {a_reagent("density_g_per_mL", R"({"value":99})"), "/reagents/0/density_g_per_mL/value", "outside"},
-        {a_reagent("ghs", R"({"signal_word":"Beware","statements":[]})"), "/reagents/0/ghs/signal_word", "no GHS signal word"},
-        {a_reagent("ghs", R"({"signal_word":"Danger","statements":["H999"]})"), "/reagents/0/ghs/statements/0", "no hazard statement"},
+        {a_reagent("ghs", R"({"signal_word":"Beware","statements":[]})"), "/reagents/0/ghs/signal_word",
+         "no GHS signal word"},
+        {a_reagent("ghs", R"({"signal_word":"Danger","statements":["H999"]})"), "/reagents/0/ghs/statements/0",
+         "no hazard statement"},
         {a_reagent("names", R"(["KCl"])"), "/reagents/0", "also a name of reagent"},
         {a_reagent("strength", R"({"mol_per_L":1,"mass_percent":2})"), "/reagents/0/strength", "one of them"},
         {a_reagent("usual", R"("yes")"), "/reagents/0/usual", "true or false"},
-        {document(R"("elements":{"Xx":{"standard_atomic_weight":1e9}})"), "/elements/Xx/standard_atomic_weight", "outside"},
+        {document(R"("elements":{"Xx":{"standard_atomic_weight":1e9}})"), "/elements/Xx/standard_atomic_weight",
+         "outside"},
         {document(R"("sources":{"x":{"citaton":"?"}})"), "/sources/x", "did you mean"}};
     CHECK(cases.size() >= 40);
     for (const Case& c : cases) {
@@ -164,7 +183,8 @@ TEST_CASE("constants file: every fault is told with its path", "[constants][over
 }
 
 TEST_CASE("constants file: all faults at once, not only the first", "[constants][overlay]") {
-    const auto overlay = lay_over(bundled_table(), document(R"("systems":[{"name":"x","species":["C7H6O2","C7H5O2-"],"role":"?",
+    const auto overlay =
+        lay_over(bundled_table(), document(R"("systems":[{"name":"x","species":["C7H6O2","C7H5O2-"],"role":"?",
         "steps":[{"pK_25C":{"value":99},"source":"nobody"}]}],"reagents":[{"name":"y"}])"));
     CHECK(overlay.faults.size() >= 6);
 }

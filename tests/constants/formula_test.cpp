@@ -1,5 +1,6 @@
-#include "catch_shim.h"
 #include "constants/formula.h"
+
+#include "catch_shim.h"
 
 using namespace carboy;
 
@@ -28,8 +29,18 @@ TEST_CASE("formula: what cannot be read says where", "[constants][formula]") {
         const char* text;
         std::size_t position;
     };
-    for (const Case& c : {Case{"", 0}, {"na", 0}, {"Na2HPO4·", 9}, {"Mg2^", 4}, {"Mg^+", 3}, {"(OH", 3}, {"H2O)", 3}, {"H2O!", 3},
-                          {"Na 2", 2}, {"H--", 2}, {"H^2", 3}, {"7", 1}}) {
+    for (const Case& c : {Case{"", 0},
+                          {"na", 0},
+                          {"Na2HPO4·", 9},
+                          {"Mg2^", 4},
+                          {"Mg^+", 3},
+                          {"(OH", 3},
+                          {"H2O)", 3},
+                          {"H2O!", 3},
+                          {"Na 2", 2},
+                          {"H--", 2},
+                          {"H^2", 3},
+                          {"7", 1}}) {
         INFO(c.text);
         try {
             read_formula(c.text);

@@ -1,14 +1,15 @@
 #include <algorithm>
 #include <filesystem>
 #include <iostream>
+
 #include <nlohmann/json.hpp>
 
 #include "catch_shim.h"
 #include "support/document.h"
 #include "support/run_program.h"
 
-// What the program writes, in the hands of programs that nobody here wrote. Where one is missing the test is skipped, and
-// says so loudly; tests/run installs them all.
+// What the program writes, in the hands of programs that nobody here wrote. Where one is missing the test is skipped,
+// and says so loudly; tests/run installs them all.
 
 using carboy::test::run_carboy;
 using carboy::test::run_program;
@@ -40,7 +41,8 @@ json output_of(std::vector<std::string> arguments) {
 
 TEST_CASE("molar masses against periodictable", "[consumers]") {
     const auto list = run_carboy({"constants", "list", "reagents", "--format", "json"});
-    const auto run = run_program(python, {here + "molar_masses.py", std::string(CARBOY_DATA_DIR) + "/constants/10-elements.json"}, list.out);
+    const auto run = run_program(
+        python, {here + "molar_masses.py", std::string(CARBOY_DATA_DIR) + "/constants/10-elements.json"}, list.out);
     if (missing(run.status, "python3-periodictable")) {
         return;
     }
@@ -54,14 +56,16 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
     const auto add = [&](const char* schema, const json& record) {
         lines += json{{"schema", schema}, {"record", record}}.dump() + "\n";
     };
-    for (const char* label : {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C", "0.1 M sodium phosphate, pH 7.2, ionic strength 0.3 M",
-                              "150 mM NaCl, 5 mM KCl", "2 M potassium phosphate, pH 7.4", "0.02 % w/v sodium azide, 20 mM HEPES, pH 7.4",
+    for (const char* label : {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C",
+                              "0.1 M sodium phosphate, pH 7.2, ionic strength 0.3 M", "150 mM NaCl, 5 mM KCl",
+                              "2 M potassium phosphate, pH 7.4", "0.02 % w/v sodium azide, 20 mM HEPES, pH 7.4",
                               "50 mM glycine, pH 2.6", "0.1 M ammonium acetate, pH 5"}) {
         const json record = output_of({"recipe", label, "--volume", "1L"});
         add("recipe.schema.json", record);
         add("prediction.schema.json", record.at("predicted"));
     }
-    for (const char* mixture : {"25 mmol/kg KH2PO4, 25 mmol/kg Na2HPO4", "1 nM HCl", "5 mM NaCl", "6.057 g Tris, 34.5 mL of 1 M HCl, to 1 L"}) {
+    for (const char* mixture : {"25 mmol/kg KH2PO4, 25 mmol/kg Na2HPO4", "1 nM HCl", "5 mM NaCl",
+                                "6.057 g Tris, 34.5 mL of 1 M HCl, to 1 L"}) {
         for (const char* model : {"davies", "debye-huckel", "ideal"}) {
             add("prediction.schema.json", output_of({"predict", mixture, "--activity", model}));
         }
@@ -73,7 +77,8 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
     add("request.schema.json", json::parse(carboy::test::project_file("examples/saltmarsh/request.json")));
     add("constants.schema.json", json::parse(carboy::test::project_file("examples/saltmarsh/own-constants.json")));
     for (const auto& file : std::filesystem::directory_iterator(std::string(CARBOY_DATA_DIR) + "/constants")) {
-        add("constants.schema.json", json::parse(carboy::test::project_file("data/constants/" + file.path().filename().string())));
+        add("constants.schema.json",
+            json::parse(carboy::test::project_file("data/constants/" + file.path().filename().string())));
     }
     const auto run = run_program(python, {here + "validate.py", std::string(CARBOY_DATA_DIR) + "/schema"}, lines);
     if (missing(run.status, "python3-jsonschema")) {

@@ -43,7 +43,8 @@ carboy::test::Run run_in_demo(const std::string& command) {
     const std::string folder = program.substr(0, program.find_last_of('/'));
     const TemporaryFolder scratch;
     const std::string setup = "cp -r '" CARBOY_SOURCE_DIR "/examples/saltmarsh/.' . && ";
-    return run_program("bash", {"-c", "cd '" + scratch.path(".") + "' && export PATH='" + folder + "':$PATH && " + setup + command});
+    return run_program(
+        "bash", {"-c", "cd '" + scratch.path(".") + "' && export PATH='" + folder + "':$PATH && " + setup + command});
 }
 
 /// `...` on a line of its own stands for any number of lines.
@@ -69,7 +70,8 @@ std::string help_of(const std::string& command) {
     return run_carboy(words).out;
 }
 
-const std::vector<std::string> commands{"", "recipe", "predict", "constants", "constants list", "constants show", "constants check", "constants sources"};
+const std::vector<std::string> commands{
+    "", "recipe", "predict", "constants", "constants list", "constants show", "constants check", "constants sources"};
 
 }  // namespace
 

@@ -1,14 +1,19 @@
 #include <cmath>
 
 #include "carboy/equilibrium.h"
+
 #include "catch_shim.h"
 
 using namespace carboy;
 
 namespace {
 
-ComponentId spectator(const char* name) { return id_of(bundled_table(), *find_spectator(bundled_table(), name)); }
-ComponentId buffer(const char* name) { return id_of(bundled_table(), *find_system(bundled_table(), name)); }
+ComponentId spectator(const char* name) {
+    return id_of(bundled_table(), *find_spectator(bundled_table(), name));
+}
+ComponentId buffer(const char* name) {
+    return id_of(bundled_table(), *find_system(bundled_table(), name));
+}
 
 EquilibriumSolver solved(const Mixture& mixture, double celsius, const ActivityModel& model) {
     EquilibriumSolver solver(bundled_table(), mixture, Temperature::celsius(celsius), model);
@@ -75,7 +80,8 @@ TEST_CASE("ideal weak acid against its cubic", "[laws][limits]") {
         const double shift = b / 3;
         const double r = (b * b - 3 * p) / 9;
         const double s = (2 * b * b * b - 9 * b * p + 27 * q) / 54;
-        const double h = -2 * std::sqrt(r) * std::cos((std::acos(s / std::sqrt(r * r * r)) + 2 * std::acos(-1.0)) / 3) - shift;
+        const double h =
+            -2 * std::sqrt(r) * std::cos((std::acos(s / std::sqrt(r * r * r)) + 2 * std::acos(-1.0)) / 3) - shift;
         INFO("C = " << c);
         CHECK(solver.ph().value() == Approx(-std::log10(h)).margin(2e-7));
         CHECK(h * h * h + b * h * h + p * h + q == Approx(0).margin(1e-9 * h * h * (h + b)));

@@ -3,6 +3,7 @@
 #include <vector>
 
 #include "carboy/equilibrium.h"
+
 #include "catch_shim.h"
 #include "laws/random_mixture.h"
 
@@ -10,7 +11,9 @@ using namespace carboy;
 
 namespace {
 
-ComponentId spectator(const char* name) { return id_of(bundled_table(), *find_spectator(bundled_table(), name)); }
+ComponentId spectator(const char* name) {
+    return id_of(bundled_table(), *find_spectator(bundled_table(), name));
+}
 
 double solved_ph(const Mixture& mixture, Temperature temperature, const ActivityModel& model) {
     EquilibriumSolver solver(bundled_table(), mixture, temperature, model);

@@ -3,6 +3,7 @@
 #include <new>
 
 #include "carboy/equilibrium.h"
+
 #include "catch_shim.h"
 #include "laws/random_mixture.h"
 
@@ -20,8 +21,12 @@ void* operator new(std::size_t size) {
     }
     throw std::bad_alloc();
 }
-void operator delete(void* memory) noexcept { std::free(memory); }
-void operator delete(void* memory, std::size_t) noexcept { std::free(memory); }
+void operator delete(void* memory) noexcept {
+    std::free(memory);
+}
+void operator delete(void* memory, std::size_t) noexcept {
+    std::free(memory);
+}
 
 using namespace carboy;
 

@@ -23,7 +23,8 @@ inline Mixture random_mixture(std::mt19937_64& random, const Table& table, doubl
         return static_cast<std::uint16_t>(std::uniform_int_distribution<std::size_t>(0, count - 1)(random));
     };
     for (std::size_t i = 0; i < systems; ++i) {
-        mixture.add({ComponentKind::system, pick(table.systems.size())}, Molality::mol_per_kg(random_molality(random, most)));
+        mixture.add({ComponentKind::system, pick(table.systems.size())},
+                    Molality::mol_per_kg(random_molality(random, most)));
     }
     for (std::size_t i = 0; i < spectators; ++i) {
         mixture.add({ComponentKind::spectator, pick(table.spectators.size())},

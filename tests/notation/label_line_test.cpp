@@ -1,20 +1,27 @@
 #include "carboy/error.h"
 #include "carboy/notation.h"
+
 #include "catch_shim.h"
 
 using namespace carboy;
 
 namespace {
 
-Label read(const char* line) { return read_label(line, bundled_table()); }
+Label read(const char* line) {
+    return read_label(line, bundled_table());
+}
 
-std::string system_of(const BufferItem& item) { return std::string(name_of(bundled_table(), item.system)); }
+std::string system_of(const BufferItem& item) {
+    return std::string(name_of(bundled_table(), item.system));
+}
 
 std::string ion_of(const BufferItem& item) {
     return item.counter_ion ? std::string(name_of(bundled_table(), *item.counter_ion)) : std::string();
 }
 
-std::string reagent_of(const AdditiveItem& item) { return std::string(bundled_table().reagents[item.reagent].formula); }
+std::string reagent_of(const AdditiveItem& item) {
+    return std::string(bundled_table().reagents[item.reagent].formula);
+}
 
 }  // namespace
 
@@ -45,9 +52,10 @@ TEST_CASE("label: the lines of the contract", "[notation][label]") {
 }
 
 TEST_CASE("label: order, case, spaces and dashes do not matter", "[notation][label]") {
-    for (const char* line : {"pH 7.5 at 4 C, 50 mM Tris-HCl", "50mM TRIS-HCL,PH 7.5 at 4C", "50 mM tris hcl, ph=7.5 at 4 Cel",
-                             "50 mM Tris–HCl, pH: 7.5 at 277.15 K", "Tris-HCl 50 mM, pH7.5 at 4 °C", "50 mM TrisHCl buffer, pH 7.5 at 4C",
-                             "50 mM Tris\u2011HCl,\u00A0pH 7.5 at 4 C", "0.05 mol/L THAM-HCl, pH 7.5 at 4 C"}) {
+    for (const char* line :
+         {"pH 7.5 at 4 C, 50 mM Tris-HCl", "50mM TRIS-HCL,PH 7.5 at 4C", "50 mM tris hcl, ph=7.5 at 4 Cel",
+          "50 mM Tris–HCl, pH: 7.5 at 277.15 K", "Tris-HCl 50 mM, pH7.5 at 4 °C", "50 mM TrisHCl buffer, pH 7.5 at 4C",
+          "50 mM Tris\u2011HCl,\u00A0pH 7.5 at 4 C", "0.05 mol/L THAM-HCl, pH 7.5 at 4 C"}) {
         INFO(line);
         const Label label = read(line);
         REQUIRE(label.buffers.size() == 1);
@@ -65,26 +73,34 @@ TEST_CASE("label: counter-ions in every fashion", "[notation][label]") {
         const char* system;
         const char* ion;
     };
-    for (const Case& c :
-         {Case{"sodium acetate", "acetate", "Na+"}, {"HEPES-NaOH", "HEPES", "Na+"}, {"potassium phosphate", "phosphate", "K+"},
-          {"glycine-HCl", "glycine", "Cl-"}, {"Tris-acetate", "Tris", "acetate"}, {"ammonium acetate", "acetate", "ammonia"},
-          {"Tris-borate", "Tris", "borate"}, {"citric acid", "citrate", ""}, {"Tris", "Tris", ""}, {"imidazole-HCl", "imidazole", "Cl-"},
-          {"Tris-HNO3", "Tris", "NO3-"}, {"2-amino-2-methyl-1,3-propanediol-HCl", "AMPD", "Cl-"}}) {
+    for (const Case& c : {Case{"sodium acetate", "acetate", "Na+"},
+                          {"HEPES-NaOH", "HEPES", "Na+"},
+                          {"potassium phosphate", "phosphate", "K+"},
+                          {"glycine-HCl", "glycine", "Cl-"},
+                          {"Tris-acetate", "Tris", "acetate"},
+                          {"ammonium acetate", "acetate", "ammonia"},
+                          {"Tris-borate", "Tris", "borate"},
+                          {"citric acid", "citrate", ""},
+                          {"Tris", "Tris", ""},
+                          {"imidazole-HCl", "imidazole", "Cl-"},
+                          {"Tris-HNO3", "Tris", "NO3-"},
+                          {"2-amino-2-methyl-1,3-propanediol-HCl", "AMPD", "Cl-"}}) {
         INFO(c.name);
         const auto named = read_buffer_name(c.name, bundled_table());
         REQUIRE(named);
         CHECK(name_of(bundled_table(), named->system) == c.system);
         CHECK((named->counter_ion ? name_of(bundled_table(), *named->counter_ion) : "") == c.ion);
     }
-    for (const char* none : {"NaCl", "sucrose", "ammonium chloride", "Na2HPO4.7H2O", "disodium hydrogen phosphate", "nonsense-HCl"}) {
+    for (const char* none :
+         {"NaCl", "sucrose", "ammonium chloride", "Na2HPO4.7H2O", "disodium hydrogen phosphate", "nonsense-HCl"}) {
         INFO(none);
         CHECK_FALSE(read_buffer_name(none, bundled_table()));
     }
 }
 
 TEST_CASE("label: additives by formula, name, CAS number, with commas inside a name", "[notation][label]") {
-    const Label label = read(
-        "20 mM HEPES-KOH, 5 mM MgCl2.6H2O, 0.02 % w/v sodium azide, 10 % v/v glycerol, 1 mM 3483-12-3, pH 7.4");
+    const Label label =
+        read("20 mM HEPES-KOH, 5 mM MgCl2.6H2O, 0.02 % w/v sodium azide, 10 % v/v glycerol, 1 mM 3483-12-3, pH 7.4");
     REQUIRE(label.additives.size() == 4);
     CHECK(reagent_of(label.additives[0]) == "MgCl2·6H2O");
     CHECK(reagent_of(label.additives[1]) == "NaN3");
@@ -173,8 +189,8 @@ TEST_CASE("label: what is wrong is named and pointed at", "[notation][label][bad
             INFO(error.code() << ": " << error.message() << " | " << error.help());
             CHECK(error.kind() == ErrorKind::input);
             CHECK(error.code() == c.code);
-            CHECK(error.excerpt().text.substr(std::min(error.excerpt().begin, error.excerpt().text.size()), std::string(c.at).size()) ==
-                  c.at);
+            CHECK(error.excerpt().text.substr(std::min(error.excerpt().begin, error.excerpt().text.size()),
+                                              std::string(c.at).size()) == c.at);
             CHECK(error.message().size() > 8);
             CHECK(error.where().starts_with("label"));
         }

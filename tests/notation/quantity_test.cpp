@@ -1,5 +1,6 @@
 #include "carboy/error.h"
 #include "carboy/notation.h"
+
 #include "catch_shim.h"
 
 using namespace carboy;
@@ -56,24 +57,42 @@ TEST_CASE("quantities: what is wrong is named, pointed at and mended", "[notatio
         const char* at;  ///< the bytes under the caret
     };
     for (const Case& c : {
-             Case{'v', "", "empty_line", ""},          {'v', "   ", "empty_line", ""},
-             {'v', "L", "not_a_number", "L"},          {'v', "one L", "not_a_number", "one"},
-             {'v', "1", "missing_unit", "1"},          {'v', "1 litre", "unknown_unit", "litre"},
-             {'v', "1 mm", "unknown_unit", "mm"},      {'v', "1 M", "wrong_quantity", "1 M"},
-             {'v', "25 C", "wrong_quantity", "25 C"},  {'v', "-1 L", "negative_quantity", "-1"},
-             {'v', "0 L", "zero_quantity", "0 L"},     {'v', "1e999 L", "number_out_of_range", "1e999"},
-             {'v', "1e9 L", "number_out_of_range", "1e9 L"}, {'v', "1 L of it", "trailing_text", "of it"},
-             {'v', "1,5 L", "decimal_comma", "1,5"},   {'v', "1,000 mL", "decimal_comma", "1,000"},
-             {'v', "inf L", "not_a_number", "inf"},    {'v', "nan L", "not_a_number", "nan"},
-             {'v', "0x10 L", "unknown_unit", "x10"},   {'t', "25", "missing_unit", "25"},
-             {'t', "25 F", "unknown_unit", "F"},       {'t', "-300 C", "temperature_out_of_range", "-300 C"},
-             {'t', "5 mL", "wrong_quantity", "5 mL"},  {'m', "5 mL", "wrong_quantity", "5 mL"},
-             {'m', "5 lb", "unknown_unit", "lb"},      {'c', "50 mm", "unknown_unit", "mm"},
-             {'c', "50 MM", "unknown_unit", "MM"},     {'c', "50 %", "unknown_unit", "%"},
-             {'c', "50", "missing_unit", "50"},        {'c', "--5 mM", "not_a_number", "--5"},
-             {'c', "5 mM mM", "trailing_text", "mM"},  {'c', "10x", "wrong_quantity", "10x"},
-             {'p', "seven", "not_a_number", "seven"},  {'p', "17", "ph_out_of_range", "17"},
-             {'p', "-3", "ph_out_of_range", "-3"},     {'p', "7.4 M", "trailing_text", "M"},
+             Case{'v', "", "empty_line", ""},
+             {'v', "   ", "empty_line", ""},
+             {'v', "L", "not_a_number", "L"},
+             {'v', "one L", "not_a_number", "one"},
+             {'v', "1", "missing_unit", "1"},
+             {'v', "1 litre", "unknown_unit", "litre"},
+             {'v', "1 mm", "unknown_unit", "mm"},
+             {'v', "1 M", "wrong_quantity", "1 M"},
+             {'v', "25 C", "wrong_quantity", "25 C"},
+             {'v', "-1 L", "negative_quantity", "-1"},
+             {'v', "0 L", "zero_quantity", "0 L"},
+             {'v', "1e999 L", "number_out_of_range", "1e999"},
+             {'v', "1e9 L", "number_out_of_range", "1e9 L"},
+             {'v', "1 L of it", "trailing_text", "of it"},
+             {'v', "1,5 L", "decimal_comma", "1,5"},
+             {'v', "1,000 mL", "decimal_comma", "1,000"},
+             {'v', "inf L", "not_a_number", "inf"},
+             {'v', "nan L", "not_a_number", "nan"},
+             {'v', "0x10 L", "unknown_unit", "x10"},
+             {'t', "25", "missing_unit", "25"},
+             {'t', "25 F", "unknown_unit", "F"},
+             {'t', "-300 C", "temperature_out_of_range", "-300 C"},
+             {'t', "5 mL", "wrong_quantity", "5 mL"},
+             {'m', "5 mL", "wrong_quantity", "5 mL"},
+             {'m', "5 lb", "unknown_unit", "lb"},
+             {'c', "50 mm", "unknown_unit", "mm"},
+             {'c', "50 MM", "unknown_unit", "MM"},
+             {'c', "50 %", "unknown_unit", "%"},
+             {'c', "50", "missing_unit", "50"},
+             {'c', "--5 mM", "not_a_number", "--5"},
+             {'c', "5 mM mM", "trailing_text", "mM"},
+             {'c', "10x", "wrong_quantity", "10x"},
+             {'p', "seven", "not_a_number", "seven"},
+             {'p', "17", "ph_out_of_range", "17"},
+             {'p', "-3", "ph_out_of_range", "-3"},
+             {'p', "7.4 M", "trailing_text", "M"},
          }) {
         INFO("'" << c.text << "'");
         try {

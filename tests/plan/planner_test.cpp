@@ -1,11 +1,13 @@
 #include <cmath>
-#include <fmt/format.h>
 #include <random>
+
+#include <fmt/format.h>
 
 #include "carboy/error.h"
 #include "carboy/notation.h"
 #include "carboy/plan.h"
 #include "carboy/request_json.h"
+
 #include "catch_shim.h"
 #include "plan/articles.h"
 
@@ -30,7 +32,9 @@ double ph_of(const Preparation& preparation, Temperature temperature) {
     return predict(table, compose(table, preparation).mixture, temperature, davies_model()).ph.value();
 }
 
-std::string cas(std::uint16_t reagent) { return std::string(bundled_table().reagents[reagent].cas); }
+std::string cas(std::uint16_t reagent) {
+    return std::string(bundled_table().reagents[reagent].cas);
+}
 
 Error failure(const std::string& label, Route route = Route::automatic) {
     try {
@@ -45,7 +49,8 @@ Error failure(const std::string& label, Route route = Route::automatic) {
 }  // namespace
 
 TEST_CASE("plan: Henderson-Hasselbalch by hand, ideal activities, no volumes", "[plan]") {
-    // 0.1 mol of acetic acid at pH = pK: half of it neutralised, 0.05 mol of NaOH less the free H+ (1.75e-5 mol/kg x water).
+    // 0.1 mol of acetic acid at pH = pK: half of it neutralised, 0.05 mol of NaOH less the free H+ (1.75e-5 mol/kg x
+    // water).
     Request wanted = request("0.1 M sodium acetate, pH 4.756", 1.0, Route::titrated);
     const Plan plan = plan_recipe(bundled_table(), wanted, ideal_model());
     REQUIRE(plan.measure.size() == 2);
@@ -54,8 +59,9 @@ TEST_CASE("plan: Henderson-Hasselbalch by hand, ideal activities, no volumes", "
 }
 
 TEST_CASE("plan: titrated and salts are the same composition", "[plan]") {
-    for (const char* label : {"0.1 M sodium phosphate, pH 7.2", "50 mM potassium phosphate, 100 mM KCl, pH 6.8", "0.1 M sodium acetate, pH 4.9",
-                              "50 mM HEPES-NaOH, pH 7.5", "0.1 M sodium carbonate, pH 9.8"}) {
+    for (const char* label :
+         {"0.1 M sodium phosphate, pH 7.2", "50 mM potassium phosphate, 100 mM KCl, pH 6.8",
+          "0.1 M sodium acetate, pH 4.9", "50 mM HEPES-NaOH, pH 7.5", "0.1 M sodium carbonate, pH 9.8"}) {
         INFO(label);
         const Plan titrated = planned(label, 1.0, Route::titrated);
         const Plan salts = planned(label, 1.0, Route::salts);
@@ -64,13 +70,16 @@ TEST_CASE("plan: titrated and salts are the same composition", "[plan]") {
         CHECK(titrated.readings.size() == 3);
         CHECK(salts.readings.size() == 2);
         CHECK(salts.predicted.ph.value() == Approx(titrated.predicted.ph.value()).margin(1e-9));
-        CHECK(salts.predicted.ionic_strength.mol_per_kg() == Approx(titrated.predicted.ionic_strength.mol_per_kg()).epsilon(1e-9));
+        CHECK(salts.predicted.ionic_strength.mol_per_kg() ==
+              Approx(titrated.predicted.ionic_strength.mol_per_kg()).epsilon(1e-9));
     }
 }
 
 TEST_CASE("plan: half the volume takes half of everything", "[plan][laws]") {
-    for (const char* label : {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C", "20 mmol/kg HEPES-KOH, 5 mmol/kg MgCl2, pH 7.4",
-                              "50 mM acetic acid, 50 mM sodium phosphate, 50 mM borate, pH 8.6", "0.2 M sodium citrate, pH 5, ionic strength 1 M"}) {
+    for (const char* label :
+         {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C", "20 mmol/kg HEPES-KOH, 5 mmol/kg MgCl2, pH 7.4",
+          "50 mM acetic acid, 50 mM sodium phosphate, 50 mM borate, pH 8.6",
+          "0.2 M sodium citrate, pH 5, ionic strength 1 M"}) {
         INFO(label);
         const Plan whole = planned(label, 1.0);
         const Plan half = planned(label, 0.5);
@@ -86,7 +95,9 @@ TEST_CASE("plan: half the volume takes half of everything", "[plan][laws]") {
 TEST_CASE("plan: any feasible target comes out exactly, at any pair of temperatures", "[plan][laws]") {
     const Table& table = bundled_table();
     std::mt19937_64 random(20261201);
-    const auto uniform = [&](double low, double high) { return std::uniform_real_distribution<double>(low, high)(random); };
+    const auto uniform = [&](double low, double high) {
+        return std::uniform_real_distribution<double>(low, high)(random);
+    };
     int made = 0;
     int refused = 0;
     for (int trial = 0; trial < 600; ++trial) {
@@ -96,11 +107,15 @@ TEST_CASE("plan: any feasible target comes out exactly, at any pair of temperatu
         for (std::size_t b = 0; b < buffers; ++b) {
             const auto index = std::uniform_int_distribution<std::size_t>(0, table.systems.size() - 1)(random);
             const ComponentId id{ComponentKind::system, static_cast<std::uint16_t>(index)};
-            const bool twice = std::any_of(wanted.buffers.begin(), wanted.buffers.end(), [&](const auto& item) { return item.system == id; });
+            const bool twice = std::any_of(wanted.buffers.begin(), wanted.buffers.end(),
+                                           [&](const auto& item) { return item.system == id; });
             if (twice || table.systems[index].role != Role::buffer) {
                 continue;
             }
-            wanted.buffers.push_back({id, {uniform(0.001, 0.2), b % 2 == 0 ? ConcentrationUnit::mol_per_L : ConcentrationUnit::mol_per_kg}, {}});
+            wanted.buffers.push_back(
+                {id,
+                 {uniform(0.001, 0.2), b % 2 == 0 ? ConcentrationUnit::mol_per_L : ConcentrationUnit::mol_per_kg},
+                 {}});
             pK = table.systems[index].steps[0].pK_25C.value;
         }
         if (wanted.buffers.empty()) {
@@ -108,7 +123,8 @@ TEST_CASE("plan: any feasible target comes out exactly, at any pair of temperatu
         }
         if (trial % 3 == 0) {
             const Reagent* salt = find_reagent(table, trial % 2 == 0 ? "NaCl" : "(NH4)2SO4");
-            wanted.additives.push_back({static_cast<std::uint16_t>(salt - table.reagents.data()), {uniform(0.001, 0.2)}});
+            wanted.additives.push_back(
+                {static_cast<std::uint16_t>(salt - table.reagents.data()), {uniform(0.001, 0.2)}});
         }
         wanted.ph = PH(std::clamp(pK + uniform(-1.5, 1.5), 1.5, 12.5));
         wanted.use_at = Temperature::celsius(uniform(0, 60));
@@ -125,13 +141,15 @@ TEST_CASE("plan: any feasible target comes out exactly, at any pair of temperatu
                 double total = 0;
                 for (const Portion& portion : plan.preparation.portions) {
                     for (const Supply& supply : table.reagents[portion.reagent].supplies) {
-                        total += supply.component == wanted.buffers[b].system ? supply.count * portion.amount->mol() : 0.0;
+                        total +=
+                            supply.component == wanted.buffers[b].system ? supply.count * portion.amount->mol() : 0.0;
                     }
                     REQUIRE(portion.amount->mol() >= 0);
                 }
                 const double water = compose(table, plan.preparation).water.kg();
                 const Concentration& asked = wanted.buffers[b].concentration;
-                const double expected = asked.value * (asked.unit == ConcentrationUnit::mol_per_kg ? water : wanted.volume.L());
+                const double expected =
+                    asked.value * (asked.unit == ConcentrationUnit::mol_per_kg ? water : wanted.volume.L());
                 // An ammonia buffer beside ammonium sulfate holds that too.
                 REQUIRE(total >= expected * (1 - 1e-8));
             }
@@ -150,15 +168,18 @@ TEST_CASE("plan: any feasible target comes out exactly, at any pair of temperatu
 }
 
 TEST_CASE("plan: ionic strength asked for is the one made", "[plan]") {
-    const Plan plan = planned("50 mM sodium phosphate, pH 7.4 at 37 C, ionic strength 0.30 M", 2.0, Route::automatic, 22);
+    const Plan plan =
+        planned("50 mM sodium phosphate, pH 7.4 at 37 C, ionic strength 0.30 M", 2.0, Route::automatic, 22);
     const double water = compose(bundled_table(), plan.preparation).water.kg();
     CHECK(plan.predicted.ionic_strength.mol_per_kg() * water / 2.0 == Approx(0.30).epsilon(1e-9));
-    CHECK(std::any_of(plan.weigh.begin(), plan.weigh.end(),
-                      [](const Weighing& item) { return item.purpose == Purpose::ionic_strength && cas(item.reagent) == "7647-14-5"; }));
+    CHECK(std::any_of(plan.weigh.begin(), plan.weigh.end(), [](const Weighing& item) {
+        return item.purpose == Purpose::ionic_strength && cas(item.reagent) == "7647-14-5";
+    }));
     const Plan molal = planned("50 mM potassium phosphate, pH 7.4, ionic strength 0.25 mol/kg");
     CHECK(molal.predicted.ionic_strength.mol_per_kg() == Approx(0.25).epsilon(1e-9));
-    CHECK(std::any_of(molal.weigh.begin(), molal.weigh.end(),
-                      [](const Weighing& item) { return item.purpose == Purpose::ionic_strength && cas(item.reagent) == "7447-40-7"; }));
+    CHECK(std::any_of(molal.weigh.begin(), molal.weigh.end(), [](const Weighing& item) {
+        return item.purpose == Purpose::ionic_strength && cas(item.reagent) == "7447-40-7";
+    }));
 }
 
 TEST_CASE("plan: the counter-ion of the label decides what goes in", "[plan]") {
@@ -189,7 +210,8 @@ TEST_CASE("plan: the counter-ion of the label decides what goes in", "[plan]") {
 TEST_CASE("plan: Tris made warm for use in the cold reads as much lower as its pK moves", "[plan]") {
     const Plan plan = planned("50 mM Tris-HCl, pH 7.5 at 4 C", 1.0, Route::automatic, 22);
     const System& tris = *find_system(bundled_table(), "Tris");
-    const double shift = thermodynamic_pK(tris, 0, Temperature::celsius(22)) - thermodynamic_pK(tris, 0, Temperature::celsius(4));
+    const double shift =
+        thermodynamic_pK(tris, 0, Temperature::celsius(22)) - thermodynamic_pK(tris, 0, Temperature::celsius(4));
     CHECK(plan.readings.back().ph.value() == Approx(7.5 + shift).margin(0.01));
 }
 
@@ -197,7 +219,8 @@ TEST_CASE("plan: titrants that fit the volume", "[plan]") {
     const Table& table = bundled_table();
     const Chemistry hydrochloric = alone(table, id_of(table, *find_spectator(table, "Cl-"))).value();
     const auto strength = [&](double mol, double litres) {
-        return table.reagents[article_to_titrate_with(table, hydrochloric, Amount::mol(mol), Volume::litres(litres))].strength_mol_per_L.value;
+        return table.reagents[article_to_titrate_with(table, hydrochloric, Amount::mol(mol), Volume::litres(litres))]
+            .strength_mol_per_L.value;
     };
     CHECK(strength(0.05, 1) == 1);     // 50 mL of a litre
     CHECK(strength(0.0002, 1) < 0.5);  // 1 mol/L would be a fifth of a millilitre

@@ -1,9 +1,11 @@
 #include <cmath>
-#include <fmt/format.h>
 #include <iostream>
+
+#include <fmt/format.h>
 
 #include "carboy/notation.h"
 #include "carboy/prediction.h"
+
 #include "catch_shim.h"
 #include "support/csv.h"
 #include "support/document.h"
@@ -12,14 +14,19 @@ using namespace carboy;
 
 namespace {
 
-// certified.csv: Buck RP et al., Measurement of pH, IUPAC Recommendations 2002, Pure Appl. Chem. 74, 2169 (2002); Bates RG,
-// Determination of pH, 2nd ed. (1973).
+// certified.csv: Buck RP et al., Measurement of pH, IUPAC Recommendations 2002, Pure Appl. Chem. 74, 2169 (2002); Bates
+// RG, Determination of pH, 2nd ed. (1973).
 
 std::string mixture_of(const std::string& composition) {
-    static const std::map<std::string, std::string> reagents{
-        {"KHtartrate", "potassium hydrogen tartrate"}, {"KH2citrate", "potassium dihydrogen citrate"},
-        {"KHphthalate", "potassium hydrogen phthalate"}, {"KH2PO4", "KH2PO4"}, {"Na2HPO4", "Na2HPO4"},
-        {"Na2B4O7.10H2O", "Na2B4O7.10H2O"}, {"NaHCO3", "NaHCO3"}, {"Na2CO3", "Na2CO3"}, {"Ca(OH)2", "calcium hydroxide"}};
+    static const std::map<std::string, std::string> reagents{{"KHtartrate", "potassium hydrogen tartrate"},
+                                                             {"KH2citrate", "potassium dihydrogen citrate"},
+                                                             {"KHphthalate", "potassium hydrogen phthalate"},
+                                                             {"KH2PO4", "KH2PO4"},
+                                                             {"Na2HPO4", "Na2HPO4"},
+                                                             {"Na2B4O7.10H2O", "Na2B4O7.10H2O"},
+                                                             {"NaHCO3", "NaHCO3"},
+                                                             {"Na2CO3", "Na2CO3"},
+                                                             {"Ca(OH)2", "calcium hydroxide"}};
     std::string line;
     std::string rest = composition;
     while (!rest.empty()) {
@@ -39,9 +46,13 @@ double predicted(const std::string& composition, double t) {
 }
 
 /// Calcium hydroxide is a secondary standard: CaOH+ pairs form in it, which no protons-only model holds.
-bool primary(const std::string& standard) { return standard.rfind("calcium", 0) != 0; }
+bool primary(const std::string& standard) {
+    return standard.rfind("calcium", 0) != 0;
+}
 
-std::string short_name(const std::string& standard) { return standard.substr(0, standard.find(',')); }
+std::string short_name(const std::string& standard) {
+    return standard.substr(0, standard.find(','));
+}
 
 }  // namespace
 
@@ -83,7 +94,8 @@ TEST_CASE("certified pH standards from 5 to 50 °C", "[reference][certified]") {
         }
         table += "\n";
     }
-    table += fmt::format("\nPrimary standards, 5 to 50 °C: {} values, root mean square {:.4f}, largest {:.3f}.\n", count, rms, worst);
+    table += fmt::format("\nPrimary standards, 5 to 50 °C: {} values, root mean square {:.4f}, largest {:.3f}.\n",
+                         count, rms, worst);
     std::cout << "\n" << table << "\n";
     INFO("DEVELOPERS.md must carry this table as printed");
     CHECK(test::project_file("DEVELOPERS.md").find(table) != std::string::npos);

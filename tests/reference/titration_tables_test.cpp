@@ -1,11 +1,13 @@
 #include <cmath>
-#include <fmt/format.h>
 #include <iostream>
 #include <set>
+
+#include <fmt/format.h>
 
 #include "carboy/equilibrium.h"
 #include "carboy/notation.h"
 #include "carboy/prediction.h"
+
 #include "catch_shim.h"
 #include "plan/linear_problem.h"
 #include "support/csv.h"
@@ -15,8 +17,8 @@ using namespace carboy;
 
 namespace {
 
-// titration_tables.csv: Bower VE, Bates RG, J. Res. Natl. Bur. Stand. 55, 197 (1955); Bates RG, Bower VE, Anal. Chem. 28, 1322
-// (1956), as reprinted in handbooks.
+// titration_tables.csv: Bower VE, Bates RG, J. Res. Natl. Bur. Stand. 55, 197 (1955); Bates RG, Bower VE, Anal. Chem.
+// 28, 1322 (1956), as reprinted in handbooks.
 
 double ph_of(const std::string& base, const std::string& titrant, double millilitres) {
     const Table& table = bundled_table();
@@ -44,8 +46,8 @@ std::string written(const std::string& base) {
 }  // namespace
 
 TEST_CASE("handbook titration tables", "[reference][titration]") {
-    // A proton-only model with Davies is right for these. The others are shown, and explained in DEVELOPERS.md: 0.1 mol/L
-    // boron holds polyborate ions; NaCO3- pairs shift the carbonate table.
+    // A proton-only model with Davies is right for these. The others are shown, and explained in DEVELOPERS.md: 0.1
+    // mol/L boron holds polyborate ions; NaCO3- pairs shift the carbonate table.
     const std::set<std::string> held{"KCl-HCl", "KCl-NaOH", "KHP-NaOH", "KH2PO4-NaOH"};
     struct Summary {
         int rows = 0;
@@ -70,13 +72,14 @@ TEST_CASE("handbook titration tables", "[reference][titration]") {
         s.volume_highest = s.rows == 0 ? volume_residual : std::max(s.volume_highest, volume_residual);
         s.sum += residual * residual;
         ++s.rows;
-        std::cout << fmt::format("{:<12} pH {:5.2f}  predicted {:+.3f}   {:5.1f} mL, planned {:+.2f} mL\n", row.at("table"),
-                                 printed, residual, millilitres, volume_residual);
+        std::cout << fmt::format("{:<12} pH {:5.2f}  predicted {:+.3f}   {:5.1f} mL, planned {:+.2f} mL\n",
+                                 row.at("table"), printed, residual, millilitres, volume_residual);
     }
-    std::string table = "| table | rows | predicted - printed pH | rms | planned - printed volume, mL |\n|---|---|---|---|---|\n";
+    std::string table =
+        "| table | rows | predicted - printed pH | rms | planned - printed volume, mL |\n|---|---|---|---|---|\n";
     for (const auto& [name, s] : summaries) {
-        table += fmt::format("| {} | {} | {:+.3f} to {:+.3f} | {:.3f} | {:+.2f} to {:+.2f} |\n", name, s.rows, s.lowest, s.highest,
-                             std::sqrt(s.sum / s.rows), s.volume_lowest, s.volume_highest);
+        table += fmt::format("| {} | {} | {:+.3f} to {:+.3f} | {:.3f} | {:+.2f} to {:+.2f} |\n", name, s.rows, s.lowest,
+                             s.highest, std::sqrt(s.sum / s.rows), s.volume_lowest, s.volume_highest);
     }
     std::cout << "\n" << table << "\n";
     INFO("DEVELOPERS.md must carry this table as printed");

@@ -1,13 +1,16 @@
+#include "carboy/water.h"
+
 #include <cmath>
 
 #include "carboy/error.h"
-#include "carboy/water.h"
+
 #include "catch_shim.h"
 #include "support/csv.h"
 
 using namespace carboy;
 
-// water.csv: python3-iapws 1.5.3 (IAPWS-95 density, IAPWS R8-97 permittivity, IAPWS R11-07 ion product), made by others.
+// water.csv: python3-iapws 1.5.3 (IAPWS-95 density, IAPWS R8-97 permittivity, IAPWS R11-07 ion product), made by
+// others.
 TEST_CASE("water agrees with a library that nobody here wrote, 0 to 99 °C", "[reference][water]") {
     for (const auto& row : test::read_reference("water.csv")) {
         const double t = std::stod(row.at("t_C"));
@@ -22,12 +25,14 @@ TEST_CASE("water agrees with a library that nobody here wrote, 0 to 99 °C", "[r
 }
 
 TEST_CASE("water: check value of the release on permittivity", "[reference][water]") {
-    // IAPWS R8-97: 78.5907250 at 999.242866 kg/m3 and 298.15 K; at the density of 0.1 MPa (997.047 kg/m3) it is 78.4085.
+    // IAPWS R8-97: 78.5907250 at 999.242866 kg/m3 and 298.15 K; at the density of 0.1 MPa (997.047 kg/m3) it
+    // is 78.4085.
     CHECK(water_at(Temperature::celsius(25)).relative_permittivity == Approx(78.4085).margin(0.0005));
 }
 
 TEST_CASE("water: B of the Debye-Hückel equation", "[reference][water]") {
-    // B in kg^0.5 mol^-0.5 nm^-1 with CODATA 2018 constants and IAPWS water: 3.285 at 25 °C, 3.327 at 50 °C, 3.421 at 100 °C.
+    // B in kg^0.5 mol^-0.5 nm^-1 with CODATA 2018 constants and IAPWS water: 3.285 at 25 °C, 3.327 at 50 °C, 3.421 at
+    // 100 °C.
     CHECK(water_at(Temperature::celsius(25)).debye_huckel_B_per_nm == Approx(3.285).margin(0.001));
     CHECK(water_at(Temperature::celsius(50)).debye_huckel_B_per_nm == Approx(3.327).margin(0.002));
     CHECK(water_at(Temperature::celsius(100)).debye_huckel_B_per_nm == Approx(3.421).margin(0.003));
