@@ -57,8 +57,8 @@ enum class Role : std::uint8_t { buffer, additive };
 /// A member of a mixture that keeps its total: an acid-base system, or a species that exchanges no protons.
 enum class ComponentKind : std::uint8_t { system, spectator };
 struct ComponentId {
-    ComponentKind kind;
-    std::uint16_t index;  ///< into Table::systems or Table::spectators
+    ComponentKind kind = ComponentKind::system;
+    std::uint16_t index = 0;  ///< into Table::systems or Table::spectators
     friend constexpr auto operator<=>(const ComponentId&, const ComponentId&) = default;
 };
 
@@ -89,7 +89,7 @@ struct Spectator {
 
 struct Supply {
     ComponentId component;
-    double count;  ///< moles of the component per mole of reagent
+    double count = 0;  ///< moles of the component per mole of reagent
 };
 
 enum class State : std::uint8_t { solid, liquid, solution };

@@ -84,9 +84,9 @@ private:
     /// A component's slice of the species arrays.
     struct Part {
         ComponentId component;
-        std::size_t first;
-        std::size_t count;
-        double total;
+        std::size_t first = 0;
+        std::size_t count = 0;
+        double total = 0;
     };
     /// Where a step stands when all steps of all systems are lined up by pK.
     struct StepPlace {

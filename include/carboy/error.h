@@ -18,8 +18,8 @@ enum class ErrorKind {
 /// The one error of the project: a stable code for programs, and for people what happened, where, and what to do.
 class Error : public std::runtime_error {
 public:
-    Error(ErrorKind kind, std::string code, std::string message, std::string where = {}, std::string help = {})
-        : std::runtime_error(std::move(message)),
+    Error(ErrorKind kind, std::string code, const std::string& message, std::string where = {}, std::string help = {})
+        : std::runtime_error(message),
           kind_(kind),
           code_(std::move(code)),
           where_(std::move(where)),

@@ -16,8 +16,8 @@ constexpr double highest_log_gamma1 = 10.0;
 /// Writes g1^(z^2) and z^2 slope for every species, given the values of a singly charged ion.
 void spread_over_charges(const Composition& composition, double log_gamma1, double log_slope1, Activities& out) {
     // g(z+1) = g(z) g1^(2z+1): one exp serves all charges, and looking up by charge beats branching on it.
-    std::array<double, 2 * highest_charge + 1> gamma;
-    std::array<double, 2 * highest_charge + 1> slope;
+    std::array<double, 2 * highest_charge + 1> gamma{};
+    std::array<double, 2 * highest_charge + 1> slope{};
     double g = 1.0;
     double odd_power = std::exp(std::min(log_gamma1, highest_log_gamma1));
     const double square = odd_power * odd_power;
@@ -29,7 +29,7 @@ void spread_over_charges(const Composition& composition, double log_gamma1, doub
     }
     const std::size_t count = composition.charge.size();
     for (std::size_t i = 0; i < count; ++i) {
-        const auto place = static_cast<std::size_t>(composition.charge[i] + highest_charge);
+        const auto place = static_cast<std::size_t>(composition.charge[i]) + highest_charge;
         out.coefficient[i] = gamma[place];
         out.log_slope_kg_per_mol[i] = slope[place];
     }

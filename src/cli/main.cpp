@@ -60,7 +60,7 @@ void report(const Error& error, const SharedOptions* shared) {
 }
 
 std::string usage_of(const CLI::App& app) {
-    const std::string name = app.get_name();
+    const std::string& name = app.get_name();
     return fmt::format("'{} --help' shows how it is used", name == "carboy" ? name : "carboy " + name);
 }
 
@@ -153,6 +153,7 @@ int run(int argc, char** argv) {
 
 }  // namespace
 
-int main(int argc, char** argv) {
-    return run(argc, argv);
+int main(int argc, char** argv) try { return run(argc, argv); } catch (...) {
+    // Only telling of an error can fail here: out of memory, or standard error is gone.
+    return carboy::exit_status(ErrorKind::defect);
 }

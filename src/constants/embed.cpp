@@ -5,6 +5,7 @@
 
 #include <cmath>
 #include <cstdio>
+#include <exception>
 #include <fstream>
 #include <map>
 #include <sstream>
@@ -165,9 +166,7 @@ std::string source_code(const Table& table, std::string_view version) {
         reagents, names);
 }
 
-}  // namespace
-
-int main(int argc, char** argv) {
+int embed(int argc, char** argv) {
     if (argc < 4) {
         fmt::print(stderr, "usage: carboy_embed OUT.cpp VERSION DOCUMENT.json...\n");
         return 2;
@@ -202,4 +201,11 @@ int main(int argc, char** argv) {
     out << source_code(overlay.table, argv[2]);
     out.close();
     return out ? 0 : 3;
+}
+
+}  // namespace
+
+int main(int argc, char** argv) try { return embed(argc, argv); } catch (const std::exception& error) {
+    std::fputs(error.what(), stderr);
+    return 70;
 }

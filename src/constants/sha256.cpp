@@ -9,7 +9,7 @@
 namespace carboy {
 
 std::string sha256_hex(std::string_view bytes) {
-    sha256_ctx context;
+    sha256_ctx context{};
     sha256_init(&context);
     sha256_update(&context, bytes.size(), reinterpret_cast<const std::uint8_t*>(bytes.data()));
     std::array<std::uint8_t, SHA256_DIGEST_SIZE> digest{};

@@ -64,7 +64,7 @@ TableBuilder::Provenance TableBuilder::read_provenance(const DocumentNode& node,
     }
     if (node.has("evidence")) {
         const std::string word = node.at("evidence").text();
-        const auto known = std::find(evidence_words.begin(), evidence_words.end(), word);
+        const auto* const known = std::find(evidence_words.begin(), evidence_words.end(), word);
         if (known == evidence_words.end()) {
             node.at("evidence")
                 .fault(fmt::format("'{}' is no evidence word", word),

@@ -59,10 +59,10 @@ private:
                        Provenance inherited);
     std::span<const std::uint16_t> read_cautions_of(const DocumentNode& entry);
     Step read_step(const DocumentNode& node);
-    void read_expression(const DocumentNode& node, Step& step);
+    static void read_expression(const DocumentNode& node, Step& step);
     Ghs read_ghs(const DocumentNode& entry);
     void read_strength(const DocumentNode& entry, Reagent& reagent);
-    std::optional<Formula> formula_at(const DocumentNode& node, const std::string& text);
+    static std::optional<Formula> formula_at(const DocumentNode& node, const std::string& text);
     double molar_mass(const DocumentNode& node, const Formula& formula);
 
     void resolve_counter_ions();

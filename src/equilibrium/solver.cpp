@@ -113,7 +113,7 @@ void EquilibriumSolver::add_system(const Part& part, double inverse_activity) {
     const double z_dominant = charge_[part.first + dominant];
     double m1 = 0, m2 = 0, m3 = 0;  // moments of u = z - z_dominant, mol/kg
     double s0 = 0, s1 = 0, s2 = 0;  // moments of the slopes of ln gamma with u
-    double u = static_cast<double>(dominant);
+    auto u = static_cast<double>(dominant);
     for (std::size_t j = 0; j < part.count; ++j) {
         const double m = weight[j] * scale;
         weight[j] = m;
@@ -357,61 +357,6 @@ void EquilibriumSolver::hold_at(PH ph) {
     }
     throw Error(ErrorKind::defect, "not_converged",
                 fmt::format("the ionic strength at pH {} did not converge", ph.value()), {}, "please report this line");
-}
-
-PH EquilibriumSolver::ph() const {
-    return PH(-std::log10(activity_H_));
-}
-
-Molality EquilibriumSolver::buffer_value() const {
-    return Molality::mol_per_kg(balance_.charge_by_x * std::numbers::ln10);
-}
-
-double EquilibriumSolver::mean_charge(std::size_t part) const {
-    const Part& p = parts_[part];
-    if (p.count == 1 || p.total <= 0) {
-        return charge_[p.first];
-    }
-    double sum = 0;
-    for (std::size_t i = p.first; i < p.first + p.count; ++i) {
-        sum += charge_[i] * molality_[i];
-    }
-    return sum / p.total;
-}
-
-double EquilibriumSolver::mean_square_charge(std::size_t part) const {
-    const Part& p = parts_[part];
-    if (p.count == 1 || p.total <= 0) {
-        return charge_[p.first] * charge_[p.first];
-    }
-    double sum = 0;
-    for (std::size_t i = p.first; i < p.first + p.count; ++i) {
-        sum += charge_[i] * charge_[i] * molality_[i];
-    }
-    return sum / p.total;
-}
-
-EquilibriumSolver::SpeciesState EquilibriumSolver::species(std::size_t index) const {
-    std::size_t part = water_part;
-    if (index >= first_part) {
-        part = 0;
-        while (index >= parts_[part].first + parts_[part].count) {
-            ++part;
-        }
-    }
-    return {part, formula_[index], charge_[index], Molality::mol_per_kg(molality_[index]), gamma_[index]};
-}
-
-double EquilibriumSolver::pK(std::size_t part, std::size_t step) const {
-    return -std::log10(dissociation_[parts_[part].first + step + 1]);
-}
-
-void EquilibriumSolver::shift_pK(std::size_t part, std::size_t step, double by) {
-    dissociation_[parts_[part].first + step + 1] *= ten_to(-by);
-}
-
-void EquilibriumSolver::shift_pKw(double by) {
-    ion_product_ *= ten_to(-by);
 }
 
 }  // namespace carboy

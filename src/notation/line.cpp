@@ -65,13 +65,14 @@ Line::Line(std::string_view text, std::string_view where) : text_(text), where_(
     }
 }
 
-void Line::fail(std::string code, std::string message, std::size_t begin, std::size_t end, std::string help,
+void Line::fail(std::string code, const std::string& message, std::size_t begin, std::size_t end, std::string help,
                 ErrorKind kind) const {
     begin = std::min(begin, text_.size());
     end = std::clamp(end, begin, text_.size());
-    throw Error(kind, std::move(code), std::move(message),
-                fmt::format("{}, column {}", where_, column_of(text_, begin)), std::move(help))
-        .with_excerpt({std::string(text_), begin, std::max<std::size_t>(end - begin, 1)});
+    Error error(kind, std::move(code), message, fmt::format("{}, column {}", where_, column_of(text_, begin)),
+                std::move(help));
+    error.with_excerpt({std::string(text_), begin, std::max<std::size_t>(end - begin, 1)});
+    throw error;
 }
 
 Part trimmed(const Line& line, Part part) {

@@ -17,7 +17,7 @@ public:
     std::string_view where() const { return where_; }
 
     /// Error whose excerpt is the bytes from `begin` to `end`.
-    [[noreturn]] void fail(std::string code, std::string message, std::size_t begin, std::size_t end,
+    [[noreturn]] void fail(std::string code, const std::string& message, std::size_t begin, std::size_t end,
                            std::string help = {}, ErrorKind kind = ErrorKind::input) const;
 
 private:

@@ -20,8 +20,8 @@ using nlohmann::json;
 
 namespace {
 
-Error fault(std::string code, std::string message, std::string where, std::string help = {}) {
-    return {ErrorKind::input, std::move(code), std::move(message), std::move(where), std::move(help)};
+Error fault(std::string code, const std::string& message, std::string where, std::string help = {}) {
+    return {ErrorKind::input, std::move(code), message, std::move(where), std::move(help)};
 }
 
 /// An object being read: knows its path, and that every key must be one of those asked for.

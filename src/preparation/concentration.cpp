@@ -10,8 +10,8 @@ namespace carboy {
 
 namespace {
 
-Error unusable(std::string message, std::string help) {
-    return {ErrorKind::input, "unusable_unit", std::move(message), {}, std::move(help)};
+Error unusable(const std::string& message, std::string help) {
+    return {ErrorKind::input, "unusable_unit", message, {}, std::move(help)};
 }
 
 /// Mass fraction of the substance in the article.

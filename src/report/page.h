@@ -26,7 +26,7 @@ public:
 
     enum class Align { left, right };
     struct Column {
-        std::size_t width;
+        std::size_t width = 0;
         Align align = Align::left;
     };
     /// Cells padded to the columns; text too long for its column wraps within it.
