@@ -53,6 +53,8 @@ std::optional<NamedBuffer> read_buffer_name(std::string_view text, const Table& 
 
 /// Up to `at_most` known names nearest to what was typed, nearest first; empty when nothing is near.
 std::vector<std::string> nearest_names(std::string_view text, const Table& table, std::size_t at_most = 3);
+/// The same for a label, where a misspelt buffer may carry its counter-ion: `Trs-HCl` is near `Tris-HCl`.
+std::vector<std::string> nearest_buffer_names(std::string_view text, const Table& table, std::size_t at_most = 3);
 /// The same over a list of words.
 std::vector<std::string> nearest_words(std::string_view text, const std::vector<std::string>& words,
                                        std::size_t at_most = 1);

@@ -13,9 +13,11 @@ namespace carboy {
 
 namespace {
 
-constexpr std::array dashes{std::string_view(" "),      std::string_view("-"),      std::string_view("\u2010"),
+// What stands between a buffer and its counter-ion: a space, any dash, a slash, a middle dot.
+constexpr std::array joints{std::string_view(" "),      std::string_view("-"),      std::string_view("\u2010"),
                             std::string_view("\u2011"), std::string_view("\u2012"), std::string_view("\u2013"),
-                            std::string_view("\u2014"), std::string_view("\u2212")};
+                            std::string_view("\u2014"), std::string_view("\u2212"), std::string_view("/"),
+                            std::string_view("\u00B7")};
 
 /// A place where a name may be divided: the text before it and after it.
 struct Division {
@@ -26,9 +28,9 @@ struct Division {
 std::vector<Division> divisions(std::string_view text) {
     std::vector<Division> found;
     for (std::size_t i = 1; i < text.size(); ++i) {
-        for (const std::string_view dash : dashes) {
-            if (text.substr(i).starts_with(dash)) {
-                found.push_back({text.substr(0, i), text.substr(i + dash.size())});
+        for (const std::string_view joint : joints) {
+            if (text.substr(i).starts_with(joint)) {
+                found.push_back({text.substr(0, i), text.substr(i + joint.size())});
             }
         }
     }

@@ -1,4 +1,5 @@
 #include <algorithm>
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -45,7 +46,7 @@ public:
         : line_(text, where), table_(table) {}
 
     Label read() {
-        for (const Part item : items_of(line_)) {
+        for (const Part item : with_ph_apart(items_of(line_))) {
             const std::string_view text = text_of(line_, item);
             if (is_ph_item(text)) {
                 read_ph_item(item);
@@ -60,6 +61,46 @@ public:
     }
 
 private:
+    /// `1 M Tris pH 8.0`: benches leave out the comma before the pH.
+    std::vector<Part> with_ph_apart(const std::vector<Part>& items) const {
+        std::vector<Part> apart;
+        for (const Part item : items) {
+            Part rest = item;
+            for (std::size_t i = item.begin + 1; i + 2 < item.end; ++i) {
+                const std::string_view after = line_.text().substr(i, item.end - i);
+                const bool number_follows = number_begins(after.substr(after.size() > 3 && after[2] == ' ' ? 3 : 2));
+                if (line_.text()[i - 1] == ' ' && is_ph_item(after) && number_follows) {
+                    apart.push_back(trimmed(line_, {item.begin, i}));
+                    rest = {i, item.end};
+                    break;
+                }
+            }
+            apart.push_back(rest);
+        }
+        return apart;
+    }
+
+    /// `pH 7.5 (KOH)`, `pH 7.5 with KOH`: what to bring it to pH with, for buffers that name no counter-ion.
+    Part read_titrant(Part rest) {
+        const std::string words = lower(text_of(line_, rest));
+        const bool bracketed = words.starts_with('(');
+        if (!bracketed && !words.starts_with("with ")) {
+            return rest;
+        }
+        const std::size_t begin = rest.begin + (bracketed ? 1 : 5);
+        std::size_t end = bracketed ? line_.text().find(')', begin) : line_.text().find(' ', begin);
+        end = std::min(end, rest.end);
+        const Part name = trimmed(line_, {begin, end});
+        const Spectator* ion = find_spectator(table_, text_of(line_, name));
+        const System* system = find_system(table_, text_of(line_, name));
+        if ((ion == nullptr || ion->charge == 0) && system == nullptr) {
+            line_.fail("unknown_name", fmt::format("'{}' is no acid or base known here", text_of(line_, name)),
+                       name.begin, name.end, "name what it is brought to pH with, as in pH 7.5 (KOH)");
+        }
+        titrant_ = ion != nullptr && ion->charge != 0 ? id_of(table_, *ion) : id_of(table_, *system);
+        return trimmed(line_, {std::min(end + (bracketed ? 1 : 0), rest.end), rest.end});
+    }
+
     void read_ph_item(Part item) {
         if (label_.ph) {
             line_.fail("duplicate_item", "a second pH", item.begin, item.end, "keep one pH");
@@ -74,7 +115,7 @@ private:
             line_.fail("ph_out_of_range", fmt::format("pH {:g} is outside -2 to 16", value), start, rest.begin);
         }
         label_.ph = PH(value);
-        rest = trimmed(line_, rest);
+        rest = read_titrant(trimmed(line_, rest));
         if (rest.empty()) {
             return;
         }
@@ -86,7 +127,7 @@ private:
         rest = trimmed(line_, {rest.begin + (words.front() == '@' ? 1 : 2), rest.end});
         const ReadQuantity temperature = read_quantity(line_, rest);
         expect_kind(line_, temperature, QuantityKind::temperature, "pH 7.5 at 4 C");
-        rest = trimmed(line_, rest);
+        rest = read_titrant(trimmed(line_, rest));
         if (!rest.empty()) {
             line_.fail("trailing_text", fmt::format("'{}' does not belong to the temperature", text_of(line_, rest)),
                        rest.begin, rest.end, "put a comma before the next item");
@@ -256,7 +297,7 @@ private:
             }
         }
         if (reagent == nullptr) {
-            const auto near = nearest_names(name, table_);
+            const auto near = nearest_buffer_names(name, table_);
             line_.fail("unknown_name", fmt::format("the table knows nothing called '{}'", name), ingredient.name.begin,
                        ingredient.name.end,
                        near.empty() ? std::string("'carboy constants list' shows every name")
@@ -281,13 +322,44 @@ private:
         if (label_.buffers.empty()) {
             promote_additive();
         }
+        for (BufferItem& buffer : label_.buffers) {
+            if (titrant_ && !buffer.counter_ion && buffer.system != *titrant_) {
+                buffer.counter_ion = titrant_;
+            }
+        }
+    }
+
+    /// What a salt such as NaOAc says of a buffer: the one buffering system it supplies, and the strong ion beside it.
+    std::optional<NamedBuffer> buffer_in(const Reagent& reagent) const {
+        std::optional<NamedBuffer> found;
+        std::optional<ComponentId> ion;
+        for (const Supply& supply : reagent.supplies) {
+            const bool is_system = supply.component.kind == ComponentKind::system;
+            if (is_system && (found || table_.systems[supply.component.index].role != Role::buffer)) {
+                return std::nullopt;
+            }
+            if (is_system) {
+                found = NamedBuffer{supply.component, std::nullopt};
+            } else {
+                ion = supply.component;
+            }
+        }
+        if (found) {
+            found->counter_ion = ion;
+        }
+        return found;
+    }
+
+    std::optional<NamedBuffer> buffer_behind(std::size_t additive) const {
+        auto named = read_buffer_name(text_of(line_, additives_[additive].name), table_);
+        return named ? named : buffer_in(table_.reagents[label_.additives[additive].reagent]);
     }
 
     /// `0.5 M EDTA, pH 8.0`: the one addition that can hold a pH becomes the buffer.
     void promote_additive() {
         std::vector<std::size_t> candidates;
         for (std::size_t i = 0; i < additives_.size(); ++i) {
-            if (read_buffer_name(text_of(line_, additives_[i].name), table_)) {
+            if (buffer_behind(i)) {
                 candidates.push_back(i);
             }
         }
@@ -302,9 +374,10 @@ private:
         }
         const std::size_t index = candidates.front();
         const Ingredient ingredient = additives_[index];
+        const NamedBuffer named = *buffer_behind(index);
         label_.additives.erase(label_.additives.begin() + static_cast<std::ptrdiff_t>(index));
         additives_.erase(additives_.begin() + static_cast<std::ptrdiff_t>(index));
-        add_buffer(ingredient, *read_buffer_name(text_of(line_, ingredient.name), table_));
+        add_buffer(ingredient, named);
     }
 
     Line line_;
@@ -312,6 +385,7 @@ private:
     Label label_;
     std::vector<Ingredient> additives_;  ///< beside label_.additives
     Part first_buffer_;
+    std::optional<ComponentId> titrant_;  ///< named beside the pH
 };
 
 }  // namespace

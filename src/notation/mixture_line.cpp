@@ -125,7 +125,31 @@ private:
 
     const Reagent* known_reagent(std::string_view name) const {
         const Reagent* reagent = find_reagent(table_, name);
-        return reagent != nullptr ? reagent : find_reagent_by_cas(table_, name);
+        reagent = reagent != nullptr ? reagent : find_reagent_by_cas(table_, name);
+        if (reagent == nullptr) {
+            const auto salts = salts_named(name);
+            reagent = salts.size() == 1 ? salts.front() : nullptr;
+        }
+        return reagent;
+    }
+
+    /// `Tris-HCl` as something that was weighed: the usual article of each salt of the system with that ion.
+    std::vector<const Reagent*> salts_named(std::string_view name) const {
+        std::vector<const Reagent*> salts;
+        const auto named = read_buffer_name(name, table_);
+        if (named && named->counter_ion) {
+            for (const Reagent& reagent : table_.reagents) {
+                const bool fits =
+                    reagent.supplies.size() == 2 && reagent.usual &&
+                    std::all_of(reagent.supplies.begin(), reagent.supplies.end(), [&](const Supply& supply) {
+                        return supply.component == named->system || supply.component == *named->counter_ion;
+                    });
+                if (fits) {
+                    salts.push_back(&reagent);
+                }
+            }
+        }
+        return salts;
     }
 
     const Reagent& reagent_at(Part name) const {
@@ -144,6 +168,12 @@ private:
                 }
             }
             help = fmt::format("say which form went in: {}", fmt::join(forms, ", "));
+        } else if (const auto salts = salts_named(text); !salts.empty()) {
+            std::vector<std::string_view> names;
+            for (const Reagent* salt : salts) {
+                names.push_back(salt->name);
+            }
+            help = fmt::format("say which form went in: {}", fmt::join(names, ", "));
         } else if (const auto near = nearest_names(text, table_); !near.empty()) {
             help = fmt::format("did you mean {}?", fmt::join(near, ", "));
         } else {

@@ -117,7 +117,6 @@ void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& 
 std::vector<std::string> nearest_names(std::string_view text, const Table& table, std::size_t at_most) {
     const std::string typed = fold_name(text);
     std::vector<Near> found;
-    add_with_ion(found, text, table);
     for (const NameEntry& entry : table.names) {
         // Ions are part of a name, never an ingredient.
         if (entry.kind == EntryKind::spectator) {
@@ -129,6 +128,18 @@ std::vector<std::string> nearest_names(std::string_view text, const Table& table
         }
     }
     return best_of(std::move(found), at_most);
+}
+
+std::vector<std::string> nearest_buffer_names(std::string_view text, const Table& table, std::size_t at_most) {
+    std::vector<Near> found;
+    add_with_ion(found, text, table);
+    std::vector<std::string> names = best_of(std::move(found), at_most);
+    for (std::string& name : nearest_names(text, table, at_most)) {
+        if (names.size() < at_most && std::find(names.begin(), names.end(), name) == names.end()) {
+            names.push_back(std::move(name));
+        }
+    }
+    return names;
 }
 
 std::vector<std::string> nearest_words(std::string_view text, const std::vector<std::string>& words,

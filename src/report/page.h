@@ -30,7 +30,7 @@ public:
         Align align = Align::left;
     };
     /// Cells padded to the columns; text too long for its column wraps within it.
-    void row(const std::vector<Column>& columns, const std::vector<std::string>& cells, bool strong = false);
+    void row(const std::vector<Column>& columns, const std::vector<std::string>& cells, bool emphasised = false);
 
     const std::string& text() const { return text_; }
 

@@ -108,6 +108,26 @@ TEST_CASE("label: additives by formula, name, CAS number, with commas inside a n
     CHECK(system_of(read("50 mM 2-amino-2-methyl-1,3-propanediol, pH 8.8").buffers.at(0)) == "AMPD");
 }
 
+TEST_CASE("label: how benches shorten it", "[notation][label]") {
+    CHECK(read("1M Tris pH 8.0").ph->value() == 8.0);
+    CHECK(read("1M Tris pH8.0 at 4C").ph_at->celsius() == 4);
+    for (const char* line :
+         {"50 mM Tris/HCl, pH 7.4", "50 mM Tris·HCl, pH 7.4", "50 mM Tris, pH 7.4 (HCl)", "50 mM Tris, pH 7.4 with HCl",
+          "50 mM Tris, pH 7.4 with HCl at 25 C", "50 mM Tris, pH 7.4 at 25 C (HCl)"}) {
+        INFO(line);
+        const Label label = read(line);
+        CHECK(system_of(label.buffers.at(0)) == "Tris");
+        CHECK(ion_of(label.buffers[0]) == "Cl-");
+    }
+    // A salt of a buffer names the buffer when nothing else could hold the pH.
+    const Label acetate = read("3 M NaOAc, pH 5.2");
+    CHECK(system_of(acetate.buffers.at(0)) == "acetate");
+    CHECK(ion_of(acetate.buffers[0]) == "Na+");
+    CHECK(system_of(read("0.1 M KH2PO4, pH 7").buffers.at(0)) == "phosphate");
+    // Beside a buffer it is a salt to weigh.
+    CHECK(read("50 mM imidazole, 50 mM NaH2PO4, pH 8").additives.size() == 1);
+}
+
 TEST_CASE("label: an addition holds the pH when nothing else can", "[notation][label]") {
     const Label label = read("0.5 M EDTA, pH 8.0");
     REQUIRE(label.buffers.size() == 1);
@@ -153,6 +173,8 @@ TEST_CASE("label: what is wrong is named and pointed at", "[notation][label][bad
         {"50 mM Tris-HCl, pH 7.5 at 4 mL", "wrong_quantity", "4 mL"},
         {"50 mM Tris-HCl, pH 7.5 at 4 C today", "trailing_text", "today"},
         {"50 mM Tris-HCl, pH 7.5 room temperature", "trailing_text", "room temperature"},
+        {"50 mM Tris, pH 7.5 (XYZ)", "unknown_name", "XYZ"},
+        {"50 mM Tris, pH 7.5 with sucrose", "unknown_name", "sucrose"},
         {"50 mM Tris-HCl, pH 7.5, pH 8", "duplicate_item", "pH 8"},
         {"50 mM Tris-HCl, 20 mM Tris, pH 7.5", "duplicate_item", "20 mM Tris"},
         {"50 mM Tris-HCl, 1 mM NaCl, 2 mM NaCl, pH 7.5", "duplicate_item", "2 mM NaCl"},

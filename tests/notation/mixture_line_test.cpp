@@ -44,6 +44,8 @@ TEST_CASE("mixture: other ways of writing it", "[notation][mixture]") {
     CHECK(formula_of(read("1 g Na2HPO4·7H2O, to 1 L").portions[0]) == "Na2HPO4·7H2O");
     CHECK(formula_of(read("1 g of 7782-85-6, to 1 L").portions[0]) == "Na2HPO4·7H2O");
     CHECK(read("25 mM Tris").filled_to->L() == 1);
+    CHECK(formula_of(read("6.5 g Tris HCl, to 1 L").portions[0]) == "C4H12ClNO3");
+    CHECK(formula_of(read("50 mL of 1 M Tris-HCl, to 1 L").portions[0]) == "C4H12ClNO3");
     CHECK(read("Tris 25 mM, HCl 10 mM").portions[0].amount->mol() == Approx(0.025));
 }
 
@@ -67,33 +69,35 @@ TEST_CASE("mixture: what is wrong is named and pointed at", "[notation][mixture]
         const char* code;
         const char* at;
     };
-    for (const Case& c : std::initializer_list<Case>{{"", "empty_line", ""},
-                                                     {"to 1 L", "empty_mixture", "1 L"},
-                                                     {"6 g Tris", "missing_final_volume", "6 g"},
-                                                     {"34 mL of 1 M HCl", "missing_final_volume", "34 mL"},
-                                                     {"6 g Tris, to 1 L, 2 g NaCl", "misplaced_final_volume", "to 1 L"},
-                                                     {"6 g Tris, to 1", "missing_unit", "1"},
-                                                     {"6 g Tris, to 1 g", "wrong_quantity", "1 g"},
-                                                     {"6 g Tris, to 0 L", "trailing_text", "0 L"},
-                                                     {"6 g Tris, to 1 L at 4 C", "trailing_text", "at 4 C"},
-                                                     {"6 g Triss, to 1 L", "unknown_name", "Triss"},
-                                                     {"25 mM phosphate", "unknown_name", "phosphate"},
-                                                     {"50 mL of NaCl, to 1 L", "missing_strength", "50 mL of NaCl"},
-                                                     {"50 mL of 0.1 M, to 1 L", "missing_name", "50 mL of 0.1 M"},
-                                                     {"50 mL of 4 C HCl, to 1 L", "wrong_quantity", "4 C"},
-                                                     {"50 mL of 0.1 mol/kg HCl, to 1 L", "unusable_unit", "0.1 mol/kg"},
-                                                     {"50 mL of 1 N NaCl, to 1 L", "unusable_unit", "1 N"},
-                                                     {"50 mL of 20 % w/w NaCl, to 1 L", "unknown_density", "20 % w/w"},
-                                                     {"500 mL of 1 M HCl, 600 mL of 1 M NaOH, to 1 L", "overfull", ""},
-                                                     {"Tris", "missing_quantity", "Tris"},
-                                                     {"25 mM", "missing_name", "25 mM"},
-                                                     {"25 C Tris, to 1 L", "wrong_quantity", "25 C"},
-                                                     {"10x Tris, to 1 L", "wrong_quantity", "10x"},
-                                                     {"-1 g Tris, to 1 L", "negative_quantity", "-1"},
-                                                     {"1 g Tris,, to 1 L", "empty_item", ","},
-                                                     {"1 g Tris, to 1 L,", "empty_item", ","},
-                                                     {"5 % v/v NaCl", "unusable_unit", "5 % v/v"},
-                                                     {"2 g HCl 1 M, to 1 L", "unusable_unit", "2 g"}}) {
+    for (const Case& c :
+         std::initializer_list<Case>{{"", "empty_line", ""},
+                                     {"to 1 L", "empty_mixture", "1 L"},
+                                     {"6 g Tris", "missing_final_volume", "6 g"},
+                                     {"34 mL of 1 M HCl", "missing_final_volume", "34 mL"},
+                                     {"6 g Tris, to 1 L, 2 g NaCl", "misplaced_final_volume", "to 1 L"},
+                                     {"6 g Tris, to 1", "missing_unit", "1"},
+                                     {"6 g Tris, to 1 g", "wrong_quantity", "1 g"},
+                                     {"6 g Tris, to 0 L", "trailing_text", "0 L"},
+                                     {"6 g Tris, to 1 L at 4 C", "trailing_text", "at 4 C"},
+                                     {"6 g Triss, to 1 L", "unknown_name", "Triss"},
+                                     {"25 mM phosphate", "unknown_name", "phosphate"},
+                                     {"25 mM potassium phosphate", "unknown_name", "potassium phosphate"},
+                                     {"50 mL of NaCl, to 1 L", "missing_strength", "50 mL of NaCl"},
+                                     {"50 mL of 0.1 M, to 1 L", "missing_name", "50 mL of 0.1 M"},
+                                     {"50 mL of 4 C HCl, to 1 L", "wrong_quantity", "4 C"},
+                                     {"50 mL of 0.1 mol/kg HCl, to 1 L", "unusable_unit", "0.1 mol/kg"},
+                                     {"50 mL of 1 N NaCl, to 1 L", "unusable_unit", "1 N"},
+                                     {"50 mL of 20 % w/w NaCl, to 1 L", "unknown_density", "20 % w/w"},
+                                     {"500 mL of 1 M HCl, 600 mL of 1 M NaOH, to 1 L", "overfull", ""},
+                                     {"Tris", "missing_quantity", "Tris"},
+                                     {"25 mM", "missing_name", "25 mM"},
+                                     {"25 C Tris, to 1 L", "wrong_quantity", "25 C"},
+                                     {"10x Tris, to 1 L", "wrong_quantity", "10x"},
+                                     {"-1 g Tris, to 1 L", "negative_quantity", "-1"},
+                                     {"1 g Tris,, to 1 L", "empty_item", ","},
+                                     {"1 g Tris, to 1 L,", "empty_item", ","},
+                                     {"5 % v/v NaCl", "unusable_unit", "5 % v/v"},
+                                     {"2 g HCl 1 M, to 1 L", "unusable_unit", "2 g"}}) {
         INFO(c.line);
         try {
             read(c.line);
