@@ -60,7 +60,10 @@ std::optional<NamedBuffer> divided(const Table& table, std::string_view left, st
     const System* left_system = find_system(table, left);
     const System* right_system = find_system(table, right);
     if (left_system != nullptr && right_system != nullptr) {
-        if (left_system == right_system) {
+        // Two acids, or a buffer and an addition such as EDTA, are two items and not a buffer with its counter-ion.
+        const bool two_acids = !is_amine(*left_system) && !is_amine(*right_system);
+        const bool addition = left_system->role == Role::additive || right_system->role == Role::additive;
+        if (left_system == right_system || two_acids || addition) {
             return std::nullopt;
         }
         // `ammonium acetate` is acetate made with ammonia; `Tris-acetate` is Tris made with acetic acid.
@@ -88,6 +91,9 @@ std::optional<NamedBuffer> read_buffer_name(std::string_view text, const Table& 
         if (text.ends_with(ending)) {
             text.remove_suffix(ending.size());
         }
+    }
+    if (text.empty()) {
+        return std::nullopt;
     }
     if (const System* system = find_system(table, text)) {
         return NamedBuffer{id_of(table, *system), std::nullopt};

@@ -1,4 +1,5 @@
 #include <algorithm>
+#include <cmath>
 #include <optional>
 #include <string>
 #include <vector>
@@ -335,7 +336,9 @@ private:
         std::optional<ComponentId> ion;
         for (const Supply& supply : reagent.supplies) {
             const bool is_system = supply.component.kind == ComponentKind::system;
-            if (is_system && (found || table_.systems[supply.component.index].role != Role::buffer)) {
+            // Borax is four borates: a concentration of the salt is not one of the buffer.
+            if (is_system &&
+                (found || supply.count != 1 || table_.systems[supply.component.index].role != Role::buffer)) {
                 return std::nullopt;
             }
             if (is_system) {
@@ -352,7 +355,15 @@ private:
 
     std::optional<NamedBuffer> buffer_behind(std::size_t additive) const {
         auto named = read_buffer_name(text_of(line_, additives_[additive].name), table_);
-        return named ? named : buffer_in(table_.reagents[label_.additives[additive].reagent]);
+        named = named ? named : buffer_in(table_.reagents[label_.additives[additive].reagent]);
+        return named && can_hold(table_.systems[named->system.index]) ? named : std::nullopt;
+    }
+
+    /// Sulfate at pH 7 holds nothing: a pK must be within reach.
+    bool can_hold(const System& system) const {
+        constexpr double reach = 3.0;
+        return std::any_of(system.steps.begin(), system.steps.end(),
+                           [&](const Step& step) { return std::abs(step.pK_25C.value - label_.ph->value()) <= reach; });
     }
 
     /// `0.5 M EDTA, pH 8.0`: the one addition that can hold a pH becomes the buffer.

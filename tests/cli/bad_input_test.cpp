@@ -146,6 +146,7 @@ TEST_CASE("bad input: requests as JSON", "[cli][bad-input]") {
         {R"({"label":"50 mM Trs-HCl, pH 8","volume":"1 L"})", "Tris-HCl"},
         {R"({"label":"50 mM Tris-HCl, pH 8","volume":"1 L","route":"magic"})", "no route 'magic'"},
         {R"({"buffers":[],"target":{"pH":7},"volume":"1 L"})", "'buffers' is empty"},
+        {R"({"buffers":[{"system":"","concentration":"1 M"}],"target":{"pH":7},"volume":"1 L"})", "no system called"},
         {R"({"buffers":[{"system":"unobtainium","concentration":"1 M"}],"target":{"pH":7},"volume":"1 L"})",
          "no system called"},
         {R"({"buffers":[{"system":"Tris","concentration":"1 g/L"}],"target":{"pH":7},"volume":"1 L"})",
