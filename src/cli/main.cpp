@@ -115,13 +115,13 @@ Error usage_error(const CLI::ParseError& error, const CLI::App& app, const std::
 
 int run(int argc, char** argv) {
     SharedOptions* shared = nullptr;
+    Action action;  // owns what `shared` points to, which errors are told by
     try {
         CLI::App app{"Recipes for buffers, from the label on the bottle to the balance and the meter.", "carboy"};
         app.set_version_flag("--version",
                              fmt::format("carboy {} (constants {})", CARBOY_VERSION, carboy::bundled_table().version));
         app.footer(overview);
         app.require_subcommand(1);
-        Action action;
         // Only the command that is called declares its options: start-up time counts in scripts.
         const std::string_view called = argc > 1 ? argv[1] : "";
         for (const Command& command : commands) {
