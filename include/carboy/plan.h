@@ -76,6 +76,10 @@ struct Plan {
 /// words of the bench, or `bad_amount`, `temperature_out_of_range`, `unusable_unit` (input).
 Plan plan_recipe(const Table& table, const Request& request, const ActivityModel& model);
 
+/// True for what gives off a toxic gas with acid (GHS EUH031, EUH032: azide, fluoride, sulfite ...): it goes in after
+/// the pH is set and is in none of the readings before.
+bool goes_in_last(const Reagent& reagent, const Table& table);
+
 /// Everything the recipe uses, weighed and measured, each reagent once, in order of first use.
 std::vector<std::uint16_t> reagents_used(const Plan& plan);
 

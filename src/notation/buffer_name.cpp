@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <array>
+#include <cstdlib>
 #include <optional>
 #include <string>
 #include <string_view>
@@ -45,10 +46,11 @@ bool is_amine(const System& system) {
     return system.species.front().charge > 0;
 }
 
-/// An ion named beside a buffer: a strong one, or a system that is used as one.
+/// An ion named beside a buffer: a strong one, or a system that is used as one. Ions of higher charge are none of
+/// these: magnesium acetate is a salt to weigh, not an acetate buffer brought to pH with a magnesium base.
 std::optional<ComponentId> ion_named(const Table& table, std::string_view name) {
-    if (const Spectator* spectator = find_spectator(table, name); spectator != nullptr && spectator->charge != 0) {
-        return id_of(table, *spectator);
+    if (const Spectator* spectator = find_spectator(table, name); spectator != nullptr) {
+        return std::abs(spectator->charge) == 1 ? std::optional(id_of(table, *spectator)) : std::nullopt;
     }
     if (const System* system = find_system(table, name)) {
         return id_of(table, *system);

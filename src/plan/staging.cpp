@@ -9,6 +9,13 @@
 
 namespace carboy {
 
+bool goes_in_last(const Reagent& reagent, const Table& table) {
+    return std::any_of(reagent.ghs.statements.begin(), reagent.ghs.statements.end(), [&](std::uint16_t statement) {
+        const std::string_view code = table.hazards[statement].code;
+        return code == "EUH031" || code == "EUH032";
+    });
+}
+
 namespace {
 
 PH reading_of(const Table& table, const Preparation& preparation, const ActivityModel& model) {
@@ -44,6 +51,24 @@ void warn_of_weak_buffering(Plan& plan) {
     }
 }
 
+/// Below neutral, what gives off a toxic gas with acid does so in the finished solution.
+void warn_of_gas(Plan& plan, const Table& table) {
+    constexpr double neutral = 7.0;
+    const double lowest = std::min(plan.readings.back().ph.value(), plan.predicted.ph.value());
+    for (const std::uint16_t index : reagents_used(plan)) {
+        const Reagent& reagent = table.reagents[index];
+        if (lowest < neutral && goes_in_last(reagent, table)) {
+            plan.warnings.insert(
+                plan.warnings.begin(),
+                {"acid_liberates_gas",
+                 fmt::format(
+                     "DANGER: {} gives off toxic gas with acid, and this solution is at pH {:.2f}. Leave it out or "
+                     "choose another; otherwise only in the fume hood, under supervision.",
+                     reagent.name, lowest)});
+        }
+    }
+}
+
 void warn_of_large_titrant(Plan& plan) {
     if (plan.measure.empty() || plan.measure.back().purpose != Purpose::titrant) {
         return;
@@ -75,7 +100,7 @@ void stage(Plan& plan, const Table& table, const ActivityModel& model) {
     for (std::size_t i = 0; i < plan.preparation.portions.size(); ++i) {
         if (is_titrant(plan, i)) {
             titrated = true;
-        } else {
+        } else if (!goes_in_last(table.reagents[plan.preparation.portions[i].reagent], table)) {
             stage.portions.push_back(plan.preparation.portions[i]);
         }
     }
@@ -86,6 +111,7 @@ void stage(Plan& plan, const Table& table, const ActivityModel& model) {
         plan.readings.push_back({Stage::titrated, *stage.filled_to, reading_of(table, stage, model)});
     }
     plan.readings.push_back({Stage::filled, total, reading_of(table, plan.preparation, model)});
+    warn_of_gas(plan, table);
     if (plan.request.ph) {
         warn_of_weak_buffering(plan);
         warn_of_large_titrant(plan);

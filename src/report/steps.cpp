@@ -25,10 +25,11 @@ Volume roughly(Volume volume) {
     return Volume::millilitres(std::round(volume.mL() / digit) * digit);
 }
 
-std::vector<std::string> solids_to_dissolve(const Plan& plan, const Table& table) {
+/// The weighed solids: those that go in at the start, or those that go in after the pH is set.
+std::vector<std::string> solids_to_dissolve(const Plan& plan, const Table& table, bool last) {
     std::vector<std::string> parts;
     for (const Weighing& item : plan.weigh) {
-        if (item.purpose != Purpose::titrant) {
+        if (item.purpose != Purpose::titrant && goes_in_last(table.reagents[item.reagent], table) == last) {
             parts.push_back(fmt::format("{} of {}", mass_text(item.mass), table.reagents[item.reagent].name));
         }
     }
@@ -82,7 +83,8 @@ std::string_view stage_word(Stage stage) {
 
 std::vector<std::string> steps_of(const Plan& plan, const Table& table) {
     const std::string bench = temperature_text(plan.request.prepare_at);
-    const auto solids = solids_to_dissolve(plan, table);
+    const auto solids = solids_to_dissolve(plan, table, false);
+    const auto last_solids = solids_to_dissolve(plan, table, true);
     const auto liquids = liquids_to_add(plan, table);
     const Titrant titrant = titrant_of(plan, table);
     std::vector<std::string> steps;
@@ -105,6 +107,11 @@ std::vector<std::string> steps_of(const Plan& plan, const Table& table) {
             fmt::format("Add {}: about {} at once, then the rest in small portions until the meter reads {} "
                         "(about {} in all). Let any heat go before you read.",
                         titrant.name, titrant.most, ph_text(target), titrant.all));
+    }
+    if (!last_solids.empty()) {
+        steps.push_back(
+            fmt::format("Only now, with the pH set, add {} and stir until dissolved: with acid it gives off toxic gas.",
+                        joined(last_solids)));
     }
     steps.push_back(fmt::format("Transfer with rinsing, fill to {} at {} and mix. The meter should read {}.",
                                 vessel_text(plan.request.volume), bench, ph_text(plan.readings.back().ph)));

@@ -255,6 +255,28 @@ TEST_CASE("plan: why there is no recipe", "[plan][bad-input]") {
     CHECK(failure("1 M sodium acetate, 50 mM MES, pH 1").kind() == ErrorKind::no_recipe);
 }
 
+TEST_CASE("plan: a salt of a doubly charged ion is weighed as that salt", "[plan]") {
+    const Plan plan = planned("20 mM HEPES-KOH, 5 mM magnesium acetate, pH 7.5");
+    // 5 mmol of the tetrahydrate, 214.45 g/mol.
+    CHECK(std::any_of(plan.weigh.begin(), plan.weigh.end(), [](const Weighing& item) {
+        return item.purpose == Purpose::additive && std::abs(item.mass.g() - 1.0723) < 1e-3;
+    }));
+}
+
+TEST_CASE("plan: azide goes in after the pH is set, and a warning stands above it in acid", "[plan][safety]") {
+    const Table& table = bundled_table();
+    CHECK(goes_in_last(*find_reagent(table, "sodium azide"), table));
+    CHECK_FALSE(goes_in_last(*find_reagent(table, "NaCl"), table));
+    // No reading before filling has azide in it.
+    const Plan with = planned("50 mM Tris-HCl, 0.02 % w/v sodium azide, pH 8");
+    const Plan without = planned("50 mM Tris-HCl, pH 8");
+    CHECK(with.readings.front().ph.value() == Approx(without.readings.front().ph.value()).margin(1e-9));
+    CHECK(with.warnings.empty());
+    const Plan acid = planned("50 mM acetate, 0.02 % w/v sodium azide, pH 4.5");
+    REQUIRE_FALSE(acid.warnings.empty());
+    CHECK(acid.warnings.front().code == "acid_liberates_gas");
+}
+
 TEST_CASE("plan: salts without a pH are weighed as written", "[plan]") {
     const Plan plan = planned("150 mM NaCl, 5 mM KCl", 2.0);
     REQUIRE(plan.weigh.size() == 2);
