@@ -38,6 +38,9 @@ std::size_t distance(std::string_view a, std::string_view b, std::size_t limit) 
 
 /// A third of the word may be wrong; what begins with all that was typed is near too.
 std::size_t nearness(std::string_view typed, std::string_view known) {
+    if (typed == known) {
+        return 0;
+    }
     const std::size_t limit = std::max<std::size_t>(1, typed.size() / 3);
     if (typed.size() >= 3 && known.starts_with(typed)) {
         return 1;
