@@ -15,6 +15,9 @@ struct BufferItem {
     ComponentId system;
     Concentration concentration;             ///< mol/L or mol/kg
     std::optional<ComponentId> counter_ion;  ///< as the label names it; none: the planner takes the usual one
+    /// The reagent that the label names, where it names a stocked article: `sodium acetate`, `Na2HPO4`, `HEPES sodium
+    /// salt`, not `HEPES` or `Tris-HCl`. Index into Table::reagents.
+    std::optional<std::uint16_t> named_form = std::nullopt;
 };
 
 /// A reagent that is simply added: salt, chelator, preservative.

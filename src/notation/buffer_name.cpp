@@ -10,6 +10,7 @@
 
 #include "constants/name.h"
 #include "notation/line.h"
+#include "notation/reagent_name.h"
 
 namespace carboy {
 
@@ -43,21 +44,6 @@ std::vector<Division> divisions(std::string_view text) {
         }
     }
     return found;
-}
-
-std::string_view without_the_word_buffer(std::string_view text) {
-    constexpr std::string_view word = "buffer";
-    const std::string lowered = lower_case(text);
-    if (!lowered.ends_with(word)) {
-        return text;
-    }
-    const std::string_view before = text.substr(0, text.size() - word.size());
-    for (std::size_t i = 0; i < before.size(); ++i) {
-        if (const std::size_t space = space_length(before.substr(i)); space > 0 && i + space == before.size()) {
-            return before.substr(0, i);
-        }
-    }
-    return text;
 }
 
 /// Names of cations end in -ium: `ammonium`, `triethylammonium`.
@@ -147,10 +133,46 @@ std::optional<NamedBuffer> joined(const Table& table, std::string_view text) {
     return std::nullopt;
 }
 
+/// One side of `Na2HPO4/NaH2PO4`.
+std::optional<NamedBuffer> side_of_pair(const Table& table, std::string_view text) {
+    if (auto named = buffer_with_ion(text, table)) {
+        return named;
+    }
+    const Reagent* reagent = reagent_named(table, text);
+    const auto brought = reagent == nullptr ? std::nullopt : buffer_brought_by(table, *reagent);
+    return brought && brought->count == 1 ? std::optional(brought->buffer) : std::nullopt;
+}
+
+/// Two forms of one system, as in `K2HPO4/KH2PO4` and `acetic acid-sodium acetate`: the system with the counter-ion of
+/// either. Forms of different counter-ions are no name for a buffer.
+std::optional<NamedBuffer> conjugate_pair(const Table& table, const Division& division) {
+    const auto left = side_of_pair(table, division.left);
+    const auto right = left ? side_of_pair(table, division.right) : std::nullopt;
+    if (!right || left->system != right->system || fold_name(division.left) == fold_name(division.right) ||
+        (left->counter_ion && right->counter_ion && left->counter_ion != right->counter_ion)) {
+        return std::nullopt;
+    }
+    return NamedBuffer{left->system, left->counter_ion ? left->counter_ion : right->counter_ion};
+}
+
 }  // namespace
 
-std::optional<NamedBuffer> read_buffer_name(std::string_view text, const Table& table) {
-    text = without_the_word_buffer(text);
+std::string_view without_the_word_buffer(std::string_view text) {
+    constexpr std::string_view word = "buffer";
+    const std::string lowered = lower_case(text);
+    if (!lowered.ends_with(word)) {
+        return text;
+    }
+    const std::string_view before = text.substr(0, text.size() - word.size());
+    for (std::size_t i = 0; i < before.size(); ++i) {
+        if (const std::size_t space = space_length(before.substr(i)); space > 0 && i + space == before.size()) {
+            return before.substr(0, i);
+        }
+    }
+    return text;
+}
+
+std::optional<NamedBuffer> buffer_with_ion(std::string_view text, const Table& table) {
     if (text.empty() || text.size() > longest_name) {
         return std::nullopt;
     }
@@ -163,6 +185,22 @@ std::optional<NamedBuffer> read_buffer_name(std::string_view text, const Table& 
         }
     }
     return joined(table, text);
+}
+
+std::optional<NamedBuffer> read_buffer_name(std::string_view text, const Table& table) {
+    text = without_the_word_buffer(text);
+    if (auto named = buffer_with_ion(text, table)) {
+        return named;
+    }
+    if (text.size() > longest_name || reagent_named(table, text) != nullptr) {
+        return std::nullopt;
+    }
+    for (const Division& division : divisions(text)) {
+        if (auto named = conjugate_pair(table, division)) {
+            return named;
+        }
+    }
+    return std::nullopt;
 }
 
 std::optional<std::pair<ComponentId, ComponentId>> two_systems_named(std::string_view text, const Table& table) {

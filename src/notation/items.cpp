@@ -71,6 +71,21 @@ std::size_t locants_length(std::string_view text, std::size_t& commas) {
     return word_follows || after.starts_with(')') ? length : 0;
 }
 
+/// Bytes of the separator between items at `at`, 0 when there is none.
+std::size_t separator_length(std::string_view text, std::size_t at, bool after_space) {
+    if (text[at] == ',' || text[at] == ';') {
+        return 1;
+    }
+    for (const std::string_view word : {"+", "and"}) {
+        const std::string_view rest = text.substr(at);
+        if (after_space && lower_case(rest.substr(0, word.size())) == word && rest.size() > word.size() &&
+            space_length(rest.substr(word.size())) > 0) {
+            return word.size();
+        }
+    }
+    return 0;
+}
+
 }  // namespace
 
 std::vector<Part> items_of(const Line& line) {
@@ -78,9 +93,12 @@ std::vector<Part> items_of(const Line& line) {
     std::vector<Part> items;
     std::size_t begin = 0;
     bool word_begins = true;
+    bool after_space = false;
     for (std::size_t i = 0; i <= text.size();) {
-        if (i < text.size() && text[i] != ',') {
+        const std::size_t divider = i < text.size() ? separator_length(text, i, after_space) : 1;
+        if (divider == 0) {
             const std::string_view rest = text.substr(i);
+            after_space = space_length(rest) > 0;
             std::size_t commas = 0;
             const std::size_t locants = word_begins ? locants_length(rest, commas) : 0;
             const std::size_t separator = std::max(space_length(rest), length_of_any(hyphens, rest));
@@ -89,13 +107,19 @@ std::vector<Part> items_of(const Line& line) {
             continue;
         }
         const Part item = trimmed(line, {begin, i});
-        if (item.empty()) {
-            line.fail("empty_item", "nothing stands between the commas here", i == text.size() && i > 0 ? i - 1 : i,
-                      i + 1, "take the extra comma out");
+        // `..., and 1 mM EDTA`: the word after a comma is no second separator.
+        const bool doubled = item.empty() && divider > 1 && !items.empty();
+        if (item.empty() && !doubled) {
+            line.fail("empty_item", "an item is missing beside this separator", i == text.size() && i > 0 ? i - 1 : i,
+                      i + 1, "take the extra separator out");
         }
-        items.push_back(item);
-        begin = ++i;
+        if (!doubled) {
+            items.push_back(item);
+        }
+        i += divider;
+        begin = i;
         word_begins = true;
+        after_space = false;
     }
     return items;
 }

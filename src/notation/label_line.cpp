@@ -19,7 +19,8 @@ namespace carboy {
 namespace {
 
 constexpr std::string_view ionic_strength_words = "ionic strength";
-constexpr std::string_view ingredient_example = "50 mM Tris-HCl";
+constexpr Expected item_quantity{QuantityKind::concentration, "50 mM Tris-HCl"};
+constexpr ItemForm item_form{item_quantity.example, item_quantity};
 constexpr Expected ionic_strength_value{QuantityKind::concentration, "ionic strength 0.15 M"};
 
 bool is_molar(ConcentrationUnit unit) {
@@ -55,6 +56,7 @@ private:
         label_.ph = read.ph;
         label_.ph_at = read.at;
         titrant_ = read.titrant;
+        titrant_named_ = read.titrant_named;
         ph_item_ = item;
     }
 
@@ -75,7 +77,7 @@ private:
     }
 
     void add_ingredient(Part item) {
-        const Ingredient ingredient = read_ingredient(line_, item, table_, ingredient_example);
+        const Ingredient ingredient = read_ingredient(line_, item, table_, item_form);
         check_quantity(ingredient.quantity);
         const std::string name = lower_case(text_of(line_, ingredient.name));
         if (const auto at = name.find(" at "); at != std::string::npos) {
@@ -95,7 +97,7 @@ private:
                 quantity.whole.begin, quantity.whole.end,
                 "write out what is in it, as in 10 mM sodium phosphate, 137 mM NaCl, pH 7.4");
         }
-        expect_kind(line_, quantity, {QuantityKind::concentration, ingredient_example});
+        expect_kind(line_, quantity, item_quantity);
         if (!(quantity.value > 0)) {
             line_.fail("zero_quantity", fmt::format("'{}' is nothing: a concentration must be more than zero", typed),
                        quantity.whole.begin, quantity.whole.end, "leave the item out");
@@ -112,7 +114,7 @@ private:
         const std::string_view name = text_of(line_, ingredient.name);
         const auto named = read_buffer_name(name, table_);
         if (named && table_.systems[named->system.index].role == Role::buffer) {
-            add_buffer(ingredient, *named);
+            add_buffer(ingredient, *named, form_named(table_, name, named->system));
             return;
         }
         const Reagent* reagent = reagent_named(table_, name);
@@ -136,13 +138,13 @@ private:
             line_.fail("two_systems",
                        fmt::format("'{}' names two systems, and how much of each is not said", text_of(line_, name)),
                        name.begin, name.end,
-                       fmt::format("write two items with an amount each, one of {} and one of {}",
-                                   name_of(table_, two->first), name_of(table_, two->second)));
+                       fmt::format("write an item for each, as in 50 mM {}, 50 mM {}", name_of(table_, two->first),
+                                   name_of(table_, two->second)));
         }
         fail_unknown_name(line_, name, nearest_buffer_names(text_of(line_, name), table_));
     }
 
-    void add_buffer(const Ingredient& ingredient, const NamedBuffer& named) {
+    void add_buffer(const Ingredient& ingredient, const NamedBuffer& named, std::optional<std::uint16_t> form) {
         const ReadQuantity& quantity = ingredient.quantity;
         if (!is_molar(quantity.unit)) {
             line_.fail("unusable_unit",
@@ -159,11 +161,12 @@ private:
         if (label_.buffers.empty()) {
             first_buffer_ = ingredient.whole;
         }
-        label_.buffers.push_back({named.system, {quantity.value, quantity.unit}, named.counter_ion});
+        label_.buffers.push_back({named.system, {quantity.value, quantity.unit}, named.counter_ion, form});
     }
 
     void add_additive(const Ingredient& ingredient, const Reagent& reagent, std::optional<BroughtBuffer> as_buffer) {
         const Concentration concentration{ingredient.quantity.value, ingredient.quantity.unit};
+        expect_percent_of_solid(line_, ingredient.quantity, reagent);
         if (concentration.unit != ConcentrationUnit::mol_per_kg) {
             try {
                 amount_in(concentration, Volume::litres(1), reagent, table_);
@@ -187,17 +190,46 @@ private:
     void settle() {
         if (label_.ph && label_.buffers.empty()) {
             promote_addition();
-        } else if (!label_.ph && !label_.buffers.empty()) {
-            line_.fail("missing_ph", "the label names a buffer but no pH", first_buffer_.begin, first_buffer_.end,
-                       "add one, as in: pH 7.5 at 4 C");
         } else if (!label_.ph && label_.ionic_strength) {
             line_.fail("missing_ph", "an ionic strength is asked for without a pH", ionic_strength_item_.begin,
                        ionic_strength_item_.end, "add one, as in: pH 7.5");
+        } else if (!label_.ph) {
+            take_buffers_as_written();
         }
+        if (titrant_) {
+            take_titrant();
+        }
+    }
+
+    /// `3 M sodium acetate` without a pH is the salt dissolved; `50 mM Tris-HCl` without one could be anything.
+    void take_buffers_as_written() {
+        for (const BufferItem& buffer : label_.buffers) {
+            if (!buffer.named_form) {
+                line_.fail("missing_ph", "the label names a buffer but no pH", first_buffer_.begin, first_buffer_.end,
+                           "add one, as in: pH 7.5 at 4 C; for a salt as it dissolves, name the salt, as in 50 mM Tris "
+                           "hydrochloride");
+            }
+        }
+        for (const BufferItem& buffer : label_.buffers) {
+            label_.additives.push_back({*buffer.named_form, buffer.concentration});
+        }
+        label_.buffers.clear();
+    }
+
+    /// Buffers that name no counter-ion take what is named beside the pH; one of them must, or have it already.
+    void take_titrant() {
+        bool taken = false;
         for (BufferItem& buffer : label_.buffers) {
-            if (titrant_ && !buffer.counter_ion && buffer.system != *titrant_) {
+            if (!buffer.counter_ion && buffer.system != *titrant_) {
                 buffer.counter_ion = titrant_;
             }
+            taken = taken || buffer.counter_ion == titrant_ || buffer.system == *titrant_;
+        }
+        if (!taken) {
+            line_.fail("two_counter_ions",
+                       fmt::format("'{}' is not the counter-ion that '{}' names", text_of(line_, titrant_named_),
+                                   text_of(line_, first_buffer_)),
+                       titrant_named_.begin, titrant_named_.end, "keep one of the two");
         }
     }
 
@@ -221,10 +253,11 @@ private:
         }
         const auto index = static_cast<std::ptrdiff_t>(candidates.front());
         Addition addition = additions_[candidates.front()];
+        const std::uint16_t article = label_.additives[candidates.front()].reagent;
         addition.ingredient.quantity.value *= addition.as_buffer->count;
         label_.additives.erase(label_.additives.begin() + index);
         additions_.erase(additions_.begin() + index);
-        add_buffer(addition.ingredient, addition.as_buffer->buffer);
+        add_buffer(addition.ingredient, addition.as_buffer->buffer, article);
     }
 
     /// Additions whose system has this role and lies near the pH, by position.
@@ -253,6 +286,7 @@ private:
     Part ionic_strength_item_;
     Part first_buffer_;
     std::optional<ComponentId> titrant_;  ///< named beside the pH
+    Part titrant_named_;
 };
 
 }  // namespace

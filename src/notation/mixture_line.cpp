@@ -20,8 +20,9 @@ namespace carboy {
 
 namespace {
 
-constexpr std::string_view item_example = "25 mmol/kg KH2PO4 or 50 mL of 0.1 M NaOH";
-constexpr std::string_view solution_example = "50 mL of 0.1 M NaOH";
+constexpr ItemForm item_form{"25 mmol/kg KH2PO4 or 50 mL of 0.1 M NaOH", std::nullopt};
+constexpr Expected strength_of_solution{QuantityKind::concentration, "50 mL of 0.1 M NaOH"};
+constexpr ItemForm solution_form{strength_of_solution.example, strength_of_solution};
 constexpr Expected final_volume{QuantityKind::volume, "to 1 L"};
 
 class MixtureReader {
@@ -72,7 +73,7 @@ private:
     }
 
     void read_item(Part item) {
-        const Ingredient ingredient = read_ingredient(line_, item, table_, item_example);
+        const Ingredient ingredient = read_ingredient(line_, item, table_, item_form);
         const ReadQuantity& quantity = ingredient.quantity;
         switch (quantity.kind) {
             case QuantityKind::concentration:
@@ -89,7 +90,8 @@ private:
                 line_.fail("wrong_quantity",
                            fmt::format("'{}' is {}; an amount is expected here", text_of(line_, quantity.whole),
                                        kind_phrase(quantity.kind)),
-                           quantity.whole.begin, quantity.whole.end, fmt::format("write it like {}", item_example));
+                           quantity.whole.begin, quantity.whole.end,
+                           fmt::format("write it like {}", item_form.example));
         }
     }
 
@@ -149,6 +151,7 @@ private:
 
     void add_concentration(const ReadQuantity& quantity, Part name) {
         const Reagent& reagent = reagent_at(name);
+        expect_percent_of_solid(line_, quantity, reagent);
         if (quantity.unit == ConcentrationUnit::mol_per_kg) {
             add(reagent).molality = Molality::mol_per_kg(quantity.value);
             return;
@@ -205,14 +208,15 @@ private:
             add(*reagent).amount = Amount::mol(reagent->strength_mol_per_L.value * volume.L());
             return;
         }
-        const auto solution = find_ingredient(line_, name, table_, solution_example);
+        const auto solution = find_ingredient(line_, name, table_, solution_form);
         if (!solution) {
             reagent_at(name);  // says what is wrong with the name
             return;
         }
         const ReadQuantity& strength = solution->quantity;
-        expect_kind(line_, strength, {QuantityKind::concentration, solution_example});
+        expect_kind(line_, strength, strength_of_solution);
         const Reagent& reagent = reagent_at(solution->name);
+        expect_percent_of_solid(line_, strength, reagent);
         const bool by_mass = strength.unit == ConcentrationUnit::percent_w_w;
         const Reagent& dissolved = by_mass ? article_of_strength(strength, reagent) : reagent;
         add(dissolved).amount = amount_of(strength, volume, dissolved);
@@ -229,9 +233,10 @@ private:
         }
     }
 
-    /// The article of the same substance whose mass percent is nearest: its density turns the percent into mol/L.
+    /// The article of the same substance with this mass percent: its density turns the percent into mol/L. Between
+    /// strengths the table knows no density, and that of the concentrated acid is a tenth wrong for a dilute one.
     const Reagent& article_of_strength(const ReadQuantity& strength, const Reagent& reagent) const {
-        constexpr double near_enough_percent = 2.0;
+        constexpr double rounding_percent = 0.5;  // `37 %` is printed on bottles of 36.5 to 38 %
         const auto apart = [&](const Reagent& article) {
             const double percent =
                 article.mass_percent.known() ? article.mass_percent.value : 100 * article.assay.value;
@@ -245,10 +250,10 @@ private:
                 best = &article;
             }
         }
-        if (best == nullptr || apart(*best) > near_enough_percent) {
+        if (best == nullptr || apart(*best) > rounding_percent) {
             line_.fail("unknown_density",
-                       fmt::format("the table knows no density of {} near {:g} % w/w", reagent.name, strength.value),
-                       strength.whole.begin, strength.whole.end, "give its strength in mol/L");
+                       fmt::format("the table knows no density of {} at {:g} % w/w", reagent.name, strength.value),
+                       strength.whole.begin, strength.whole.end, "give its strength in mol/L or % w/v");
         }
         return *best;
     }

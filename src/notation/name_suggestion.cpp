@@ -1,4 +1,5 @@
 #include <algorithm>
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -91,7 +92,21 @@ std::string spelling(const Table& table, const NameEntry& entry) {
     return {};
 }
 
-/// `Trs-HCl`: where one side of a name is an ion, the other may be a misspelt system.
+/// The nearest entry of a kind to one side of a name; empty when none is near.
+std::optional<Near> nearest_of(const Table& table, EntryKind kind, std::string_view side) {
+    std::optional<Near> best;
+    const std::string typed = fold_name(side);
+    for (const NameEntry& entry : table.names) {
+        const std::size_t apart = entry.kind == kind && !typed.empty() ? nearness(typed, entry.key) : std::string::npos;
+        if (apart != std::string::npos && (!best || apart < best->apart)) {
+            // What was typed right stays as it was typed.
+            best = Near{apart, apart == 0 ? std::string(side) : spelling(table, entry)};
+        }
+    }
+    return best;
+}
+
+/// `Trs-HCl`, `soduim phosphate`: a name of two sides may be a misspelt buffer with its counter-ion.
 void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& table) {
     for (std::size_t i = 1; i + 1 < text.size(); ++i) {
         if (text[i] != ' ' && text[i] != '-') {
@@ -99,17 +114,13 @@ void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& 
         }
         const std::string_view left = text.substr(0, i);
         const std::string_view right = text.substr(i + 1);
-        const bool ion_last = find_spectator(table, right) != nullptr;
-        if (!ion_last && find_spectator(table, left) == nullptr) {
-            continue;
-        }
-        const std::string typed = fold_name(ion_last ? left : right);
-        for (const NameEntry& entry : table.names) {
-            const std::size_t apart = entry.kind == EntryKind::system ? nearness(typed, entry.key) : std::string::npos;
-            if (apart != std::string::npos) {
-                const std::string system = spelling(table, entry);
-                found.push_back(
-                    {apart, ion_last ? system + text[i] + std::string(right) : std::string(left) + text[i] + system});
+        for (const bool ion_last : {true, false}) {
+            const auto ion = nearest_of(table, EntryKind::spectator, ion_last ? right : left);
+            const auto system = ion ? nearest_of(table, EntryKind::system, ion_last ? left : right) : std::nullopt;
+            // Two sides each a little wrong are as far as one that is very wrong: then it is a guess.
+            if (system && (ion->apart == 0 || system->apart == 0)) {
+                found.push_back({ion->apart + system->apart,
+                                 ion_last ? system->name + text[i] + ion->name : ion->name + text[i] + system->name});
             }
         }
     }

@@ -12,6 +12,7 @@ namespace carboy {
 namespace {
 
 constexpr std::string_view minus_sign = "\u2212";
+constexpr const char* percent_help = "write % w/v, % v/v or % w/w";
 constexpr std::string_view any_example = "50 mM, 9 g/L, 20 mL, 5 g or 25 C";
 
 bool is_digit(char c) {
@@ -57,9 +58,6 @@ void refuse_comma(const Line& line, Part number) {
     if (typed.find_first_not_of("0123456789.") == std::string_view::npos) {
         line.fail("not_a_number", fmt::format("'{}' is not one number", text_of(line, {number.begin, token.end})),
                   number.begin, token.end, "write no space or separator inside a number, and one decimal point");
-    }
-    if (typed == "%") {
-        line.fail("unknown_unit", "'%' does not say of what", token.begin, token.end, "write % w/v, % v/v or % w/w");
     }
     line.fail("unknown_unit", fmt::format("'{}' is no unit known here", typed), token.begin, token.end,
               unit_help(typed, expected ? std::optional(expected->kind) : std::nullopt, example));
@@ -112,7 +110,8 @@ PH read_ph_number(const Line& line, Part& part) {
     return PH(value);
 }
 
-ReadQuantity read_quantity(const Line& line, Part& part, std::optional<Expected> expected) {
+ReadQuantity read_quantity(const Line& line, Part& part, std::optional<Expected> expected,
+                           std::optional<Expected> likely) {
     ReadQuantity quantity;
     const std::size_t start = part.begin;
     const double value = read_number(line, part);
@@ -121,7 +120,11 @@ ReadQuantity read_quantity(const Line& line, Part& part, std::optional<Expected>
     const Part token{part.begin, part.begin + unit_length(text_of(line, part))};
     const Unit* unit = find_unit(text_of(line, token));
     if (unit == nullptr) {
-        fail_unit(line, quantity.number, token, expected);
+        fail_unit(line, quantity.number, token, expected ? expected : likely);
+    }
+    quantity.bare_percent = text_of(line, token) == "%";
+    if (quantity.bare_percent && expected) {
+        line.fail("unknown_unit", "'%' does not say of what", token.begin, token.end, percent_help);
     }
     part.begin = token.end;
     quantity.whole = {start, token.end};
@@ -148,7 +151,7 @@ ReadQuantity read_quantity(const Line& line, Part& part, std::optional<Expected>
     return quantity;
 }
 
-std::optional<ReadQuantity> read_trailing_quantity(const Line& line, Part& part) {
+std::optional<ReadQuantity> read_trailing_quantity(const Line& line, Part& part, std::optional<Expected> likely) {
     constexpr int longest_quantity = 3;  // words: `0.9 % w/v`
     std::optional<Error> fault;
     int words = 0;
@@ -161,7 +164,7 @@ std::optional<ReadQuantity> read_trailing_quantity(const Line& line, Part& part)
         }
         Part rest{begin, part.end};
         try {
-            const ReadQuantity quantity = read_quantity(line, rest);
+            const ReadQuantity quantity = read_quantity(line, rest, std::nullopt, likely);
             if (trimmed(line, rest).empty()) {
                 part = trimmed(line, {part.begin, begin});
                 return quantity;
@@ -184,6 +187,15 @@ void expect_kind(const Line& line, const ReadQuantity& quantity, Expected expect
                   fmt::format("'{}' is {}; {} is expected here", text_of(line, quantity.whole),
                               kind_phrase(quantity.kind), kind_phrase(expected.kind)),
                   quantity.whole.begin, quantity.whole.end, fmt::format("write it like {}", expected.example));
+    }
+}
+
+void expect_percent_of_solid(const Line& line, const ReadQuantity& quantity, const Reagent& reagent) {
+    if (quantity.bare_percent && reagent.state != State::solid) {
+        line.fail("unknown_unit",
+                  fmt::format("'{}' does not say of what, and {} is a {}", text_of(line, quantity.whole), reagent.name,
+                              reagent.state == State::liquid ? "liquid" : "solution"),
+                  quantity.whole.begin, quantity.whole.end, "write % v/v or % w/v");
     }
 }
 

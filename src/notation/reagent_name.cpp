@@ -5,6 +5,8 @@
 #include <initializer_list>
 #include <string>
 
+#include "constants/name.h"
+#include "notation/buffer_name.h"
 #include "notation/line.h"
 #include "plan/articles.h"
 
@@ -90,7 +92,35 @@ std::uint16_t article_meant(const Table& table, const Reagent& reagent, std::str
     return its_hydrate || its_solution ? usual_index : index;
 }
 
+namespace {
+
+/// `ammonium bicarbonate` for NH4HCO3: the name tells the buffer from its counter-ion.
+std::optional<BroughtBuffer> buffer_of_two_systems(const Table& table, const Reagent& reagent) {
+    const auto buffer_in = [&](std::string_view name) -> std::optional<BroughtBuffer> {
+        const auto named = buffer_with_ion(name, table);
+        for (const Supply& supply : reagent.supplies) {
+            if (named && named->counter_ion && is_salt_of(reagent, *named) && supply.component == named->system) {
+                return BroughtBuffer{*named, supply.count};
+            }
+        }
+        return std::nullopt;
+    };
+    auto found = buffer_in(reagent.name);
+    for (std::size_t i = 0; i < reagent.names.size() && !found; ++i) {
+        found = buffer_in(reagent.names[i]);
+    }
+    return found;
+}
+
+}  // namespace
+
 std::optional<BroughtBuffer> buffer_brought_by(const Table& table, const Reagent& reagent) {
+    const auto systems = std::count_if(reagent.supplies.begin(), reagent.supplies.end(), [](const Supply& supply) {
+        return supply.component.kind == ComponentKind::system;
+    });
+    if (systems == 2) {
+        return buffer_of_two_systems(table, reagent);
+    }
     std::optional<Supply> system;
     std::optional<ComponentId> ion;
     for (const Supply& supply : reagent.supplies) {
@@ -105,6 +135,17 @@ std::optional<BroughtBuffer> buffer_brought_by(const Table& table, const Reagent
         }
     }
     return system ? std::optional(BroughtBuffer{{system->component, ion}, system->count}) : std::nullopt;
+}
+
+std::optional<std::uint16_t> form_named(const Table& table, std::string_view name, ComponentId system) {
+    const std::string_view plain = without_the_word_buffer(name);
+    const Reagent* reagent = reagent_named(table, plain);
+    const auto brings_it = [&](const Supply& supply) { return supply.component == system; };
+    if (reagent == nullptr || std::none_of(reagent->supplies.begin(), reagent->supplies.end(), brings_it) ||
+        (reagent->supplies.size() == 1 && (reagent->usual || fold_name(plain) == fold_name(name_of(table, system))))) {
+        return std::nullopt;
+    }
+    return article_meant(table, *reagent, plain, ConcentrationUnit::mol_per_L);
 }
 
 bool can_hold(const Table& table, ComponentId system, PH ph) {

@@ -25,6 +25,9 @@ constexpr auto molar = ConcentrationUnit::mol_per_L;
 constexpr auto molal = ConcentrationUnit::mol_per_kg;
 constexpr auto grams = ConcentrationUnit::g_per_L;
 
+// What benches write for % w/v of a solid; whoever reads it must see that it is one.
+constexpr std::string_view bare_percent = "%";
+
 // In the spelling that `canonical` gives. The usual ones come first, since suggestions keep this order.
 constexpr std::array units{
     concentration("M", 1, 1, molar),
@@ -46,6 +49,7 @@ constexpr std::array units{
     concentration("mg/mL", 1, 1, grams),
     concentration("ug/mL", 1, 1e3, grams),
     concentration("% w/v", 10, 1, grams),
+    concentration(bare_percent, 10, 1, grams),
     concentration("% v/v", 1, 1, ConcentrationUnit::percent_v_v),
     concentration("% w/w", 1, 1, ConcentrationUnit::percent_w_w),
     concentration("N", 1, 1, ConcentrationUnit::normal),
@@ -70,7 +74,8 @@ struct Spelling {
 
 // Two micro signs (U+00B5, U+03BC), degree sign (and the ordinal that looks like it), degree Celsius, times.
 constexpr std::array characters{Spelling{"\u00B5", "u"},  Spelling{"\u03BC", "u"}, Spelling{"\u00B0C", "C"},
-                                Spelling{"\u00BAC", "C"}, Spelling{"\u2103", "C"}, Spelling{"\u00D7", "x"}};
+                                Spelling{"\u00BAC", "C"}, Spelling{"\u2103", "C"}, Spelling{"\u00D7", "x"},
+                                Spelling{"degC", "C"}};
 
 // Words for units that no distance of spelling would lead to, in lower case.
 constexpr std::array words{Spelling{"litre", "L"},
@@ -79,7 +84,6 @@ constexpr std::array words{Spelling{"litre", "L"},
                            Spelling{"liters", "L"},
                            Spelling{"molar", "M"},
                            Spelling{"molal", "mol/kg"},
-                           Spelling{"degc", "C"},
                            Spelling{"deg", "C"},
                            Spelling{"celsius", "C"},
                            Spelling{"kelvin", "K"},
@@ -109,6 +113,10 @@ std::string canonical(std::string_view token) {
     }
     std::string spelled;
     while (!token.empty()) {
+        if (const std::size_t space = space_length(token)) {  // `25 ° C`
+            token.remove_prefix(space);
+            continue;
+        }
         const auto* found = std::find_if(characters.begin(), characters.end(),
                                          [&](const Spelling& s) { return token.starts_with(s.typed); });
         spelled += found == characters.end() ? token.substr(0, 1) : found->plain;
@@ -121,6 +129,23 @@ std::string canonical(std::string_view token) {
         spelled.back() = 'L';
     }
     return spelled;
+}
+
+/// Bytes of a degree, `°` or `deg`, that stands apart from its C: `25 ° C`; 0 when there is none.
+std::size_t length_of_degree_apart(std::string_view text) {
+    for (const std::string_view degree : {"\u00B0", "\u00BA", "deg"}) {
+        std::size_t next = degree.size();
+        while (text.starts_with(degree) && next < text.size() && space_length(text.substr(next)) > 0) {
+            next += space_length(text.substr(next));
+        }
+        const std::string_view rest = text.substr(std::min(next, text.size()));
+        if (next > degree.size() && rest.starts_with('C') &&
+            (rest.size() == 1 || rest[1] == ',' || rest[1] == ')' || rest[1] == ';' ||
+             space_length(rest.substr(1)) > 0)) {
+            return next + 1;
+        }
+    }
+    return 0;
 }
 
 }  // namespace
@@ -140,6 +165,9 @@ const Unit* find_unit(std::string_view token) {
 }
 
 std::size_t unit_length(std::string_view text) {
+    if (const std::size_t degree = length_of_degree_apart(text)) {
+        return degree;
+    }
     if (text.starts_with('%')) {
         std::size_t next = 1;
         while (const std::size_t space = space_length(text.substr(next))) {
@@ -154,8 +182,10 @@ std::size_t unit_length(std::string_view text) {
         return 1;
     }
     std::size_t length = 0;
+    bool bracket_open = false;  // of the token's own: a closing one of the line's ends it, as in `(4C)`
     while (length < text.size() && text[length] != ',' && text[length] != ';' &&
-           space_length(text.substr(length)) == 0) {
+           (bracket_open || text[length] != ')') && space_length(text.substr(length)) == 0) {
+        bracket_open = bracket_open || text[length] == '(';
         ++length;
     }
     return length;
@@ -169,12 +199,20 @@ std::string unit_help(std::string_view token, std::optional<QuantityKind> expect
     }
     std::vector<std::string> spellings;
     for (const Unit& unit : units) {
-        if (!expected || unit.kind == *expected) {
+        if (unit.spelling != bare_percent && (!expected || unit.kind == *expected)) {
             spellings.emplace_back(unit.spelling);
         }
     }
-    const auto near = nearest_words(canonical(token), spellings);
-    return near.empty() ? fmt::format("write it like {}", example) : fmt::format("did you mean {}?", near.front());
+    constexpr std::size_t enough = 5;
+    const std::string typed = canonical(token);
+    const auto near = nearest_words(typed, spellings, enough);
+    if (near.empty()) {
+        return fmt::format("write it like {}", example);
+    }
+    // Among units, all of them short, a wrong letter is likelier than a letter too many: `mn` was mM rather than M.
+    const auto same_length =
+        std::find_if(near.begin(), near.end(), [&](const std::string& near_one) { return near_one.size() == typed.size(); });
+    return fmt::format("did you mean {}?", same_length == near.end() ? near.front() : *same_length);
 }
 
 }  // namespace carboy

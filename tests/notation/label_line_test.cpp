@@ -107,9 +107,9 @@ TEST_CASE("label: counter-ions in every fashion", "[notation][label]") {
         CHECK(name_of(bundled_table(), named->system) == c.system);
         CHECK((named->counter_ion ? name_of(bundled_table(), *named->counter_ion) : "") == c.ion);
     }
-    for (const char* none :
-         {"magnesium acetate", "calcium acetate", "NaCl", "sucrose", "ammonium chloride", "Na2HPO4.7H2O", "disodium hydrogen phosphate", "nonsense-HCl",
-          "Tris-Tris", "citrate-phosphate", "Tris-EDTA", "NaHCO3", "names", "buffer", " buffer", "", " ", "-"}) {
+    for (const char* none : {"magnesium acetate", "calcium acetate", "NaCl", "sucrose", "ammonium chloride",
+                             "Na2HPO4.7H2O", "disodium hydrogen phosphate", "nonsense-HCl", "Tris-Tris",
+                             "citrate-phosphate", "Tris-EDTA", "NaHCO3", "names", "buffer", " buffer", "", " ", "-"}) {
         INFO(none);
         CHECK_FALSE(read_buffer_name(none, bundled_table()));
     }
