@@ -35,6 +35,7 @@ struct Command {
 constexpr std::array commands{
     Command{"recipe", "From a label to what to weigh, measure and read", carboy::cli::declare_recipe},
     Command{"predict", "The pH and the species of a mixture as made", carboy::cli::declare_predict},
+    Command{"shelf", "Check what is on the shelf, and book it off", carboy::cli::declare_shelf},
     Command{"constants", "Look into the constants, or check a file of them", carboy::cli::declare_constants}};
 
 constexpr auto overview = R"(
@@ -95,7 +96,9 @@ Error left_over_error(const CLI::App& app, const std::vector<std::string>& words
     std::string help = usage_of(app);
     const auto option = std::find_if(unexpected.begin(), unexpected.end(),
                                      [](const std::string& word) { return word.starts_with('-'); });
-    if (option == unexpected.end()) {
+    if (unexpected.size() == 1 && option == unexpected.end()) {
+        help = fmt::format("name the option that it belongs to, as in --volume 1L; {}", help);
+    } else if (option == unexpected.end()) {
         help = fmt::format("put quotes around what has spaces in it, as in \"50 mM Tris-HCl, pH 8.0\"; {}", help);
     } else if (const auto near = carboy::nearest_words(*option, options, 1); !near.empty()) {
         help = fmt::format("did you mean {}? {}", near.front(), help);

@@ -141,11 +141,13 @@ std::optional<std::uint16_t> form_named(const Table& table, std::string_view nam
     const std::string_view plain = without_the_word_buffer(name);
     const Reagent* reagent = reagent_named(table, plain);
     const auto brings_it = [&](const Supply& supply) { return supply.component == system; };
-    if (reagent == nullptr || std::none_of(reagent->supplies.begin(), reagent->supplies.end(), brings_it) ||
-        (reagent->supplies.size() == 1 && (reagent->usual || fold_name(plain) == fold_name(name_of(table, system))))) {
+    if (reagent == nullptr || std::none_of(reagent->supplies.begin(), reagent->supplies.end(), brings_it)) {
         return std::nullopt;
     }
-    return article_meant(table, *reagent, plain, ConcentrationUnit::mol_per_L);
+    const std::uint16_t article = article_meant(table, *reagent, plain, ConcentrationUnit::mol_per_L);
+    const bool bare = reagent->supplies.size() == 1;
+    const bool leaves_it_open = table.reagents[article].usual || fold_name(plain) == fold_name(name_of(table, system));
+    return bare && leaves_it_open ? std::nullopt : std::optional(article);
 }
 
 bool can_hold(const Table& table, ComponentId system, PH ph) {

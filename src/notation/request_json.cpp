@@ -9,6 +9,7 @@
 #include <fmt/ranges.h>
 #include <nlohmann/json.hpp>
 
+#include "carboy/constraint_words.h"
 #include "carboy/error.h"
 #include "carboy/notation.h"
 
@@ -198,21 +199,59 @@ void read_spelt_out(const Reader& reader, Request& request, const std::string& w
     }
 }
 
+Constraints read_constraints(const json& value, const std::string& path, const Table& table) {
+    const Reader reader(value, path, {"only", "without", "use", "avoid", "hold", "most_weighings"});
+    Constraints constraints;
+    const auto each = [&](const char* key, auto take) {
+        if (!reader.has(key)) {
+            return;
+        }
+        for (const json& name : reader.array(key)) {
+            if (!name.is_string()) {
+                throw fault("wrong_type", fmt::format("'{}' lists names in quotes", key), reader.path_to(key));
+            }
+            take(name.get<std::string>(), reader.path_to(key));
+        }
+    };
+    each("only", [&](const std::string& name, const std::string& at) {
+        allow_only(constraints, read_ion(name, table, at), table);
+    });
+    each("without", [&](const std::string& name, const std::string& at) {
+        constraints.without.push_back(read_ion(name, table, at));
+    });
+    each("use", [&](const std::string& name, const std::string& at) {
+        constraints.use.push_back(read_reagent(name, table, at));
+    });
+    each("avoid", [&](const std::string& name, const std::string& at) {
+        constraints.avoid.push_back(read_reagent(name, table, at));
+    });
+    each("hold", [&](const std::string& text, const std::string& at) {
+        constraints.totals.push_back(read_ion_total(text, table, at));
+    });
+    if (reader.has("most_weighings")) {
+        const json& most = reader.at("most_weighings");
+        if (!most.is_number_unsigned()) {
+            throw fault("wrong_type", "'most_weighings' must be a whole number", reader.path_to("most_weighings"));
+        }
+        constraints.most_weighings = most.get<std::size_t>();
+    }
+    return constraints;
+}
+
 Route read_route(const Reader& reader) {
     const std::string word = reader.text("route");
-    for (const Route route : {Route::automatic, Route::titrated, Route::salts}) {
-        if (word == route_word(route)) {
-            return route;
-        }
+    if (const auto route = route_of(word)) {
+        return *route;
     }
     throw fault("unknown_route", fmt::format("there is no route '{}'", word), reader.path_to("route"),
-                "the routes are any, titrated and salts");
+                "the routes are any, titrated, salts, stocks and dilution");
 }
 
 /// A request read from its document.
 Request request_of(const json& document, const std::string& where, const Table& table) {
     const Reader reader(document, where,
-                        {"id", "label", "buffers", "additives", "target", "volume", "prepare_at", "route"});
+                        {"id", "label", "buffers", "additives", "target", "volume", "prepare_at", "route",
+                         "constraints", "balance", "minimum_mass", "measure_with"});
     Request request;
     if (reader.has("label")) {
         for (const char* key : {"buffers", "additives", "target"}) {
@@ -234,6 +273,21 @@ Request request_of(const json& document, const std::string& where, const Table& 
     }
     if (reader.has("route")) {
         request.route = read_route(reader);
+    }
+    if (reader.has("constraints")) {
+        request.constraints = read_constraints(reader.at("constraints"), reader.path_to("constraints"), table);
+    }
+    if (reader.has("balance")) {
+        const std::string minimum = reader.has("minimum_mass") ? reader.text("minimum_mass") : std::string();
+        request.balance = read_balance(reader.text("balance"),
+                                       minimum.empty() ? std::nullopt : std::optional<std::string_view>(minimum),
+                                       reader.path_to("balance"));
+    } else if (reader.has("minimum_mass")) {
+        throw fault("missing_key", "'minimum_mass' belongs to a 'balance'", reader.path_to("minimum_mass"),
+                    "give the balance's readability, such as \"0.1 mg\"");
+    }
+    if (reader.has("measure_with")) {
+        request.measure_with = read_vessel(reader.text("measure_with"), table, reader.path_to("measure_with"));
     }
     return request;
 }

@@ -107,16 +107,19 @@ std::string canonical_percent(std::string_view token) {
     return spelled;
 }
 
-std::string canonical(std::string_view token) {
-    if (token.starts_with('%')) {
-        return canonical_percent(token);
+std::string canonical(std::string_view typed) {
+    if (typed.starts_with('%')) {
+        return canonical_percent(typed);
     }
+    std::string close;  // `25 ° C`
+    while (!typed.empty()) {
+        const std::size_t space = space_length(typed);
+        close += space > 0 ? std::string_view() : typed.substr(0, 1);
+        typed.remove_prefix(std::max<std::size_t>(space, 1));
+    }
+    std::string_view token = close;
     std::string spelled;
     while (!token.empty()) {
-        if (const std::size_t space = space_length(token)) {  // `25 ° C`
-            token.remove_prefix(space);
-            continue;
-        }
         const auto* found = std::find_if(characters.begin(), characters.end(),
                                          [&](const Spelling& s) { return token.starts_with(s.typed); });
         spelled += found == characters.end() ? token.substr(0, 1) : found->plain;
@@ -210,8 +213,8 @@ std::string unit_help(std::string_view token, std::optional<QuantityKind> expect
         return fmt::format("write it like {}", example);
     }
     // Among units, all of them short, a wrong letter is likelier than a letter too many: `mn` was mM rather than M.
-    const auto same_length =
-        std::find_if(near.begin(), near.end(), [&](const std::string& near_one) { return near_one.size() == typed.size(); });
+    const auto same_length = std::find_if(near.begin(), near.end(),
+                                          [&](const std::string& near_one) { return near_one.size() == typed.size(); });
     return fmt::format("did you mean {}?", same_length == near.end() ? near.front() : *same_length);
 }
 

@@ -172,8 +172,10 @@ TEST_CASE("label: how benches shorten it", "[notation][label]") {
     }
     CHECK(label_of("Tris-HCl 50 mM pH 7.5").buffers.size() == 1);
     CHECK(ion_of(label_of("20 mM HEPES, 150 mM NaCl pH: 7.4 (KOH) at 25 C").buffers.at(0)) == "K+");
-    // A counter-ion in the name stands.
-    CHECK(ion_of(label_of("50 mM Tris-acetate, pH 8 (HCl)").buffers.at(0)) == "acetate");
+    // A counter-ion in the name stands, and what is beside the pH may repeat it or be the buffer's own acid.
+    CHECK(ion_of(label_of("50 mM Tris-HCl, pH 8 (HCl)").buffers.at(0)) == "Cl-");
+    CHECK(ion_of(label_of("3 M sodium acetate, pH 5.2 (acetic acid)").buffers.at(0)) == "Na+");
+    CHECK(ion_of(label_of("20 mM HEPES, 5 mM sodium acetate, pH 7.4 (KOH)").buffers.at(0)) == "K+");
     // A salt of a buffer names the buffer when nothing else could hold the pH.
     const Label acetate = label_of("3 M NaOAc, pH 5.2");
     CHECK(system_of(acetate.buffers.at(0)) == "acetate");
@@ -181,6 +183,115 @@ TEST_CASE("label: how benches shorten it", "[notation][label]") {
     CHECK(system_of(label_of("0.1 M KH2PO4, pH 7").buffers.at(0)) == "phosphate");
     // Beside a buffer it is a salt to weigh.
     CHECK(label_of("50 mM imidazole, 50 mM NaH2PO4, pH 8").additives.size() == 1);
+}
+
+TEST_CASE("label: conditions of the pH in brackets, degrees in words", "[notation][label]") {
+    for (const char* line :
+         {"50 mM Tris-HCl, pH 7.5 (4C)", "50 mM Tris-HCl, pH 7.5 (at 4 C)", "50 mM Tris-HCl (pH 7.5 at 4 C)",
+          "50 mM Tris-HCl, pH 7.5 at 4 degC", "50 mM Tris-HCl, pH 7.5 at 4 ° C"}) {
+        INFO(line);
+        const Label label = label_of(line);
+        CHECK(label.ph->value() == 7.5);
+        CHECK(label.ph_at->celsius() == 4);
+        CHECK(ion_of(label.buffers.at(0)) == "Cl-");
+    }
+    const Label both = label_of("20 mM HEPES, pH 7.4 (KOH) (37 C)");
+    CHECK(both.ph_at->celsius() == 37);
+    CHECK(ion_of(both.buffers.at(0)) == "K+");
+}
+
+TEST_CASE("label: items divided by semicolon, plus and 'and'", "[notation][label]") {
+    for (const char* line :
+         {"50 mM Tris-HCl; 150 mM NaCl; 1 mM EDTA; pH 7.5", "50 mM Tris-HCl + 150 mM NaCl + 1 mM EDTA, pH 7.5",
+          "50 mM Tris-HCl, 150 mM NaCl and 1 mM EDTA, pH 7.5", "50 mM Tris-HCl, 150 mM NaCl, and 1 mM EDTA, pH 7.5",
+          "50 mM Tris-HCl AND 150 mM NaCl;1 mM EDTA pH 7.5"}) {
+        INFO(line);
+        const Label label = label_of(line);
+        REQUIRE(label.buffers.size() == 1);
+        REQUIRE(label.additives.size() == 2);
+        CHECK(reagent_of(label.additives[0]) == "NaCl");
+        CHECK(label.ph->value() == 7.5);
+    }
+}
+
+TEST_CASE("label: a percent alone of a solid is by mass and volume", "[notation][label]") {
+    // Common practice, no source.
+    const Label label = label_of("20 mM Tris-HCl, 0.1 % SDS, pH 8");
+    REQUIRE(label.additives.size() == 1);
+    CHECK(label.additives[0].concentration.unit == ConcentrationUnit::g_per_L);
+    CHECK(label.additives[0].concentration.value == Approx(1));
+}
+
+TEST_CASE("label: both forms of one buffer name it", "[notation][label]") {
+    struct Case {
+        const char* name;
+        const char* system;
+        const char* ion;
+    };
+    for (const Case& c : {Case{"K2HPO4/KH2PO4", "phosphate", "K+"},
+                          {"NaH2PO4/Na2HPO4", "phosphate", "Na+"},
+                          {"carbonate-bicarbonate", "carbonate", ""},
+                          {"Na2CO3/NaHCO3", "carbonate", "Na+"},
+                          {"acetic acid/sodium acetate", "acetate", "Na+"},
+                          {"acetic acid - sodium acetate", "acetate", "Na+"},
+                          {"Tris/Tris-HCl", "Tris", "Cl-"}}) {
+        INFO(c.name);
+        const Label label = label_of(std::string("50 mM ") + c.name + ", pH 7");
+        REQUIRE(label.buffers.size() == 1);
+        CHECK(system_of(label.buffers[0]) == c.system);
+        CHECK(ion_of(label.buffers[0]) == c.ion);
+        CHECK_FALSE(label.buffers[0].named_form);
+    }
+}
+
+TEST_CASE("label: salts of two systems are the buffer that their name says", "[notation][label]") {
+    const BufferItem bicarbonate = label_of("25 mM NH4HCO3, pH 8").buffers.at(0);
+    CHECK(system_of(bicarbonate) == "carbonate");
+    CHECK(ion_of(bicarbonate) == "ammonia");
+    const BufferItem teaa = label_of("100 mM TEAA, pH 7").buffers.at(0);
+    CHECK(system_of(teaa) == "acetate");
+    CHECK(ion_of(teaa) == "triethylamine");
+    CHECK(system_of(label_of("1 M TEAB, pH 8.5").buffers.at(0)) == "carbonate");
+}
+
+TEST_CASE("label: the article that a buffer's name is the name of", "[notation][label]") {
+    struct Case {
+        const char* line;
+        const char* form;  ///< empty: the name leaves it open
+    };
+    for (const Case& c : {Case{"3 M sodium acetate, pH 5.2", "C2H3NaO2·3H2O"},
+                          {"3 M NaAc, pH 5.2", "C2H3NaO2·3H2O"},
+                          {"50 mM sodium acetate buffer, pH 5.2", "C2H3NaO2·3H2O"},
+                          {"50 mM trisodium citrate, pH 5", "C6H5Na3O7·2H2O"},
+                          {"50 mM Na2HPO4, pH 7", "Na2HPO4"},
+                          {"50 mM Na2HPO4.7H2O, pH 7", "Na2HPO4·7H2O"},
+                          {"50 mM K2HPO4, pH 7", "K2HPO4"},
+                          {"20 mM HEPES sodium salt, pH 7.4", "C8H17N2NaO4S"},
+                          {"0.1 M ammonium acetate, pH 7", "C2H7NO2"},
+                          {"0.1 M Na2CO3, pH 10", "Na2CO3"},
+                          {"0.1 M sodium bicarbonate, pH 9", "NaHCO3"},
+                          {"25 mM borax, pH 9", "Na2B4O7·10H2O"},
+                          {"0.5 M EDTA, pH 8", "C10H14N2Na2O8·2H2O"},
+                          {"50 mM Tris hydrochloride, pH 8", "C4H12ClNO3"},
+                          {"20 mM L-lactic acid, pH 4", "C3H6O3"},
+                          {"50 mM HEPES, pH 7.4", ""},
+                          {"50 mM MES, pH 6", ""},
+                          {"50 mM Tris-HCl, pH 8", ""},
+                          {"50 mM sodium phosphate, pH 7", ""},
+                          {"50 mM citric acid, pH 4", ""},
+                          {"50 mM acetic acid, pH 4", ""}}) {
+        INFO(c.line);
+        const BufferItem item = label_of(c.line).buffers.at(0);
+        CHECK((item.named_form ? bundled_table().reagents[*item.named_form].formula : "") == c.form);
+    }
+}
+
+TEST_CASE("label: without a pH a salt is dissolved as it is", "[notation][label]") {
+    const Label label = label_of("3 M sodium acetate, 1 mM EDTA");
+    CHECK(label.buffers.empty());
+    REQUIRE(label.additives.size() == 2);
+    CHECK(label_of("25 mM borax").additives.at(0).concentration.value == Approx(0.025));
+    CHECK(label_of("50 mM Tris hydrochloride").additives.size() == 1);
 }
 
 TEST_CASE("label: an addition holds the pH when nothing else can", "[notation][label]") {
@@ -223,9 +334,9 @@ TEST_CASE("label: salts alone need no pH", "[notation][label]") {
 TEST_CASE("label: what is wrong is named and pointed at", "[notation][label][bad-input]") {
     for (const Refusal& refusal : std::initializer_list<Refusal>{
              {"", "empty_line", "", "nothing"},
-             {"50 mM Tris-HCl, pH 7.5,", "empty_item", ",", "between the commas"},
-             {"50 mM Tris-HCl,, pH 7.5", "empty_item", ",", "between the commas"},
-             {", 50 mM Tris-HCl, pH 7.5", "empty_item", ",", "between the commas"},
+             {"50 mM Tris-HCl, pH 7.5,", "empty_item", ",", "beside this separator"},
+             {"50 mM Tris-HCl,, pH 7.5", "empty_item", ",", "beside this separator"},
+             {", 50 mM Tris-HCl, pH 7.5", "empty_item", ",", "beside this separator"},
              {"50 mM Trsi-HCl, pH 7.5", "unknown_name", "Trsi-HCl", "'Trsi-HCl'"},
              {"50 mM HEPSE, pH 7.5", "unknown_name", "HEPSE", "'HEPSE'"},
              {"50 mM Tris-HCl, 150 mM NaCk, pH 7.5", "unknown_name", "NaCk", "'NaCk'"},
@@ -258,7 +369,7 @@ TEST_CASE("label: what is wrong is named and pointed at", "[notation][label][bad
              {"50 mM Tris-HCl, pH 7.5 at 4", "missing_unit", "4", "4 has no unit"},
              {"50 mM Tris-HCl, pH 7.5 at 4 mL", "wrong_quantity", "4 mL", "a volume; a temperature is expected"},
              {"50 mM Tris-HCl, pH 7.5 at 4 C today", "trailing_text", "today", "'today'"},
-             {"50 mM Tris-HCl, pH 7.5 room temperature", "trailing_text", "room temperature", "'room temperature'"},
+             {"50 mM Tris-HCl, pH 7.5 room temperature", "not_a_number", "room temperature", "'room temperature'"},
              {"50 mM Tris-HCl, pH 7.5 M", "trailing_text", "M", "'M'"},
              {"50 mM Tris-HCl, pH 7.5, pH 8", "duplicate_item", "pH 8", "a second pH"},
              {"50 mM Tris-HCl, 20 mM Tris, pH 7.5", "duplicate_item", "20 mM Tris", "Tris stands twice"},
@@ -273,16 +384,25 @@ TEST_CASE("label: what is wrong is named and pointed at", "[notation][label][bad
              {"50 mM Tris-HCl, ionic strength 4 g/L, pH 7", "unusable_unit", "4 g/L", "mol/L or mol/kg"},
              {"50 mM Tris-HCl, ionic strength 0.1 M at 4 C, pH 7", "trailing_text", "at 4 C", "'at 4 C'"},
              {"50 mM Tris-HCl at 4 C, pH 7.5", "misplaced_temperature", "at 4 C", "a temperature"},
-             {"50 mM Tris-HCl (pH 7.5)", "missing_comma", "pH 7.5)", "a pH"},
+             {"50 mM Tris-HCl (pH 7.5) cold", "missing_comma", "pH 7.5) cold", "a pH"},
              {"50 mM Tris-HCl pH 7.5, pH 8", "duplicate_item", "pH 8", "a second pH"},
              {"50 mM Tris, pH 7.5 (XYZ)", "unknown_name", "XYZ", "'XYZ'"},
              {"50 mM Tris, pH 7.5 with sucrose", "unknown_name", "sucrose", "'sucrose'"},
              {"50 mM Tris, pH 7.5 (HCl) with HNO3", "duplicate_item", "HNO3", "a second titrant"},
+             {"50 mM Tris, pH 7.5 (4 C) at 25 C", "duplicate_item", "25 C", "a second temperature"},
+             {"50 mM Tris, pH 7.5 at RT", "not_a_number", "RT", "'RT'"},
+             {"50 mM Tris, pH 7.5 (RT)", "not_a_number", "RT", "'RT'"},
+             {"50 mM Tris, pH 7.5 at room temperature", "not_a_number", "room temperature", "'room temperature'"},
+             {"50 mM Tris, pH 7.5, 4 C", "misplaced_temperature", "4 C", "a temperature stands alone"},
+             {"50 mM Tris-acetate, pH 8 (HCl)", "two_counter_ions", "HCl", "'HCl'"},
+             {"50 mM Tris-HCl, 20 mM sodium phosphate, pH 8 (KOH)", "two_counter_ions", "KOH", "'KOH'"},
              {"50 mM Tris, pH 7.5 (HCl", "trailing_text", "(HCl", "'(HCl'"},
              {"50 mM Tris, pH 7.5 with", "unknown_name", "", "no acid or base"},
              {"50 mM Tris-HCl ionic strength 0.1 M, pH 7.5", "missing_comma", "ionic strength 0.1 M",
               "an ionic strength"},
-             {"50 mM Tris-HCl; 150 mM NaCl; pH 7.5", "missing_comma", ";", "a semicolon"},
+             {"50 mM Tris-HCl;; pH 7.5", "empty_item", ";", "beside this separator"},
+             {"50 mM Tris-HCl + + 1 mM EDTA, pH 7.5", "empty_item", "+", "beside this separator"},
+             {"and 50 mM Tris-HCl, pH 7.5", "unreadable_item", "and 50 mM Tris-HCl", "cannot be read"},
              {"-50 mM Tris-HCl, pH 7.5", "negative_quantity", "-50", "'-50'"},
              {"0 mM Tris-HCl, pH 7.5", "zero_quantity", "0 mM", "'0 mM'"},
              {"1e999 M Tris-HCl, pH 7.5", "number_out_of_range", "1e999", "'1e999'"},
@@ -292,7 +412,10 @@ TEST_CASE("label: what is wrong is named and pointed at", "[notation][label][bad
              {"1 % w/v Tris-HCl, pH 7.5", "unusable_unit", "1 % w/v", "mol/L or mol/kg"},
              {"1 N Tris-HCl, pH 7.5", "unusable_unit", "1 N", "'1 N'"},
              {"50 mM Tris, 5 % v/v NaCl, pH 8", "unusable_unit", "5 % v/v", "sodium chloride"},
-             {"50 % Tris-HCl, pH 7.5", "unknown_unit", "%", "of what"},
+             {"50 % Tris-HCl, pH 7.5", "unusable_unit", "50 %", "mol/L or mol/kg"},
+             {"50 mM Tris, 10 % glycerol, pH 7.5", "unknown_unit", "10 %", "glycerol is a liquid"},
+             {"50 mM Tris, ionic strength 1 %, pH 7.5", "unknown_unit", "%", "of what"},
+             {"50 mM Na2HPO4/KH2PO4, pH 7", "unknown_name", "Na2HPO4/KH2PO4", "'Na2HPO4/KH2PO4'"},
              {"1 000 mM Tris-HCl, pH 7.5", "not_a_number", "1 000", "'1 000'"},
              {"10x phosphate-buffered saline, pH 7.4", "unknown_formula", "10x", "named formula"},
              {"0,5 M Tris-HCl, pH 7.5", "decimal_comma", "0,5", "'0,5'"},
@@ -328,6 +451,11 @@ TEST_CASE("label: the nearest known name is offered", "[notation][label]") {
     CHECK(help("50 mM Tris-HCl, 150 mM NaCk, pH 7.5").find("NaCl") != std::string::npos);
     CHECK(help("50 mM imidazol, pH 7").find("imidazole") != std::string::npos);
     CHECK(help("50 mM HEP, pH 7") == "did you mean HEPES, HEPPS, HEPPSO?");
+    CHECK(help("20 mM soduim phosphate, pH 7.4").starts_with("did you mean sodium phosphate"));
+    CHECK(help("20 mM potasium phosphate, pH 7.4").starts_with("did you mean potassium phosphate"));
+    CHECK(help("20 mM citrate-phosphate, pH 5") == "write an item for each, as in 50 mM citrate, 50 mM phosphate");
+    CHECK(help("50 mn Tris, pH 8") == "did you mean mM?");  // not the mL or mg of another kind
+    CHECK(help("50 mK Tris, pH 8") == "did you mean mM?");
     CHECK(help("50 mM xyzzyxyzzy, pH 7").find("constants list") != std::string::npos);
     CHECK(nearest_names("HEPSE", bundled_table(), 1) == std::vector<std::string>{"HEPES"});
     CHECK(nearest_names("", bundled_table()).empty());

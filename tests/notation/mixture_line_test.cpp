@@ -71,13 +71,11 @@ TEST_CASE("mixture: a liquid by volume is the table's grade; strengths by percen
     CHECK(mixture_of("10 mL of 1 N HCl, to 1 L").portions[0].amount->mol() == Approx(0.010));
     // 50 % w/w NaOH, density 1.52 g/mL: 19.0 mol/L.
     CHECK(mixture_of("1 mL of 50 % w/w NaOH, to 1 L").portions[0].amount->mol() == Approx(0.0190).epsilon(5e-3));
-    // 51 % at the density of the 50 % article, which is the nearest.
-    CHECK(mixture_of("1 mL of 51 % w/w NaOH, to 1 L").portions[0].amount->mol() ==
-          Approx(0.0190 * 51 / 50).epsilon(5e-3));
     // Grams of a solution count its mass percent: 10 x 0.37 / 36.458.
     CHECK(mixture_of("10 g HCl 37 %, to 1 L").portions[0].amount->mol() == Approx(0.10149).epsilon(1e-4));
     // 5 % w/v is 50 g/L: 10 mL hold 0.5 g of NaCl, 58.44 g/mol.
     CHECK(mixture_of("10 mL of 5 % w/v NaCl, to 1 L").portions[0].amount->mol() == Approx(0.5 / 58.44).epsilon(2e-3));
+    CHECK(mixture_of("10 mL of 5 % NaCl, to 1 L").portions[0].amount->mol() == Approx(0.5 / 58.44).epsilon(2e-3));
 }
 
 TEST_CASE("concentration: equivalents of strong acids and bases", "[notation][concentration]") {
@@ -104,7 +102,6 @@ TEST_CASE("mixture: what is wrong is named and pointed at", "[notation][mixture]
              {"6 g Tris, 1 L", "missing_final_volume", "6 g", "final volume is missing"},
              {"34 mL of 1 M HCl", "missing_final_volume", "34 mL", "final volume is missing"},
              {"6 g Tris to 1 L", "missing_comma", "to 1 L", "a final volume"},
-             {"6 g Tris; to 1 L", "missing_comma", ";", "a semicolon"},
              {"6 g Tris, to 1 L, 2 g NaCl", "misplaced_final_volume", "to 1 L", "not the last item"},
              {"6 g Tris, to 1 L, to 2 L", "misplaced_final_volume", "to 1 L", "not the last item"},
              {"6 g Tris, to", "not_a_number", "", "a number is expected"},
@@ -125,7 +122,10 @@ TEST_CASE("mixture: what is wrong is named and pointed at", "[notation][mixture]
              {"50 mL of 4 C HCl, to 1 L", "wrong_quantity", "4 C", "a temperature; a concentration is expected"},
              {"50 mL of 5 mL HCl, to 1 L", "wrong_quantity", "5 mL", "a volume; a concentration is expected"},
              {"50 mL of 0.1 mm HCl, to 1 L", "unknown_unit", "mm", "'mm'"},
-             {"50 mL of 5 % NaCl, to 1 L", "unknown_unit", "%", "of what"},
+             {"50 mL of 5 % acetic acid, to 1 L", "unknown_unit", "5 %", "acetic acid glacial is a liquid"},
+             {"5 % HCl", "unknown_unit", "5 %", "is a solution"},
+             {"50 mL of 5 % w/w HCl, to 1 L", "unknown_density", "5 % w/w", "5 % w/w"},
+             {"1 mL of 51 % w/w NaOH, to 1 L", "unknown_density", "51 % w/w", "51 % w/w"},
              {"50 mL of 0.1 mol/kg HCl, to 1 L", "unusable_unit", "0.1 mol/kg", "per kilogram of water"},
              {"50 mL of 1 N NaCl, to 1 L", "unusable_unit", "1 N", "sodium chloride"},
              {"50 mL of 20 % w/w NaCl, to 1 L", "unknown_density", "20 % w/w", "20 % w/w"},
@@ -142,10 +142,18 @@ TEST_CASE("mixture: what is wrong is named and pointed at", "[notation][mixture]
              {"5 mmol Tris, to 1 L", "unknown_unit", "mmol", "'mmol'"},
              {"-1 g Tris, to 1 L", "negative_quantity", "-1", "'-1'"},
              {"1,5 g Tris, to 1 L", "decimal_comma", "1,5", "'1,5'"},
-             {"1 g Tris,, to 1 L", "empty_item", ",", "between the commas"},
-             {"1 g Tris, to 1 L,", "empty_item", ",", "between the commas"}}) {
+             {"1 g Tris,, to 1 L", "empty_item", ",", "beside this separator"},
+             {"1 g Tris, to 1 L,", "empty_item", ",", "beside this separator"}}) {
         check_refused(refusal, "mixture", mixture_of);
     }
+}
+
+TEST_CASE("mixture: items divided by semicolon and plus, an article by its own name", "[notation][mixture]") {
+    CHECK(mixture_of("6 g Tris; to 1 L").portions.size() == 1);
+    CHECK(mixture_of("50 mL of 0.1 M KH2PO4 + 29.1 mL of 0.1 M NaOH, to 100 mL").portions.size() == 2);
+    // The L-acid is another article than the usual DL-acid, also where moles are asked for.
+    const auto portion = mixture_of("10 mM L-malic acid").portions.at(0);
+    CHECK(bundled_table().reagents[portion.reagent].name == "L-malic acid");
 }
 
 TEST_CASE("mixture: the help says what to write", "[notation][mixture]") {
@@ -210,7 +218,8 @@ TEST_CASE("lines made of any tokens are read or refused, never worse", "[notatio
                 ++read_fine;
             } catch (const Error& error) {
                 INFO(line);
-                REQUIRE(error.kind() == ErrorKind::input);
+                // `EDTA-HCl` is understood, but no article is one.
+                REQUIRE((error.kind() == ErrorKind::input || error.code() == "no_reagent"));
                 REQUIRE_FALSE(error.code().empty());
                 REQUIRE(error.excerpt().begin <= error.excerpt().text.size());
                 REQUIRE(error.excerpt().begin + error.excerpt().length <= error.excerpt().text.size() + 1);
