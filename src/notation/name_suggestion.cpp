@@ -1,5 +1,4 @@
 #include <algorithm>
-#include <optional>
 #include <string>
 #include <vector>
 
@@ -92,21 +91,23 @@ std::string spelling(const Table& table, const NameEntry& entry) {
     return {};
 }
 
-/// The nearest entry of a kind to one side of a name; empty when none is near.
-std::optional<Near> nearest_of(const Table& table, EntryKind kind, std::string_view side) {
-    std::optional<Near> best;
+/// Entries of a kind near to one side of a name; what was typed right stays as it was typed.
+std::vector<Near> near_side(const Table& table, EntryKind kind, std::string_view side) {
     const std::string typed = fold_name(side);
+    std::vector<Near> found;
     for (const NameEntry& entry : table.names) {
         const std::size_t apart = entry.kind == kind && !typed.empty() ? nearness(typed, entry.key) : std::string::npos;
-        if (apart != std::string::npos && (!best || apart < best->apart)) {
-            // What was typed right stays as it was typed.
-            best = Near{apart, apart == 0 ? std::string(side) : spelling(table, entry)};
+        if (apart == 0) {
+            return {{0, std::string(side)}};
+        }
+        if (apart != std::string::npos) {
+            found.push_back({apart, spelling(table, entry)});
         }
     }
-    return best;
+    return found;
 }
 
-/// `Trs-HCl`, `soduim phosphate`: a name of two sides may be a misspelt buffer with its counter-ion.
+/// `Trs-HCl`, `soduim phosphate`: where one side of a name is right, the other may be misspelt.
 void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& table) {
     for (std::size_t i = 1; i + 1 < text.size(); ++i) {
         if (text[i] != ' ' && text[i] != '-') {
@@ -115,12 +116,15 @@ void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& 
         const std::string_view left = text.substr(0, i);
         const std::string_view right = text.substr(i + 1);
         for (const bool ion_last : {true, false}) {
-            const auto ion = nearest_of(table, EntryKind::spectator, ion_last ? right : left);
-            const auto system = ion ? nearest_of(table, EntryKind::system, ion_last ? left : right) : std::nullopt;
-            // Two sides each a little wrong are as far as one that is very wrong: then it is a guess.
-            if (system && (ion->apart == 0 || system->apart == 0)) {
-                found.push_back({ion->apart + system->apart,
-                                 ion_last ? system->name + text[i] + ion->name : ion->name + text[i] + system->name});
+            const auto ions = near_side(table, EntryKind::spectator, ion_last ? right : left);
+            const auto systems = ions.empty() ? ions : near_side(table, EntryKind::system, ion_last ? left : right);
+            for (const Near& ion : ions) {
+                for (const Near& system : systems) {
+                    if (ion.apart == 0 || system.apart == 0) {
+                        found.push_back({ion.apart + system.apart, ion_last ? system.name + text[i] + ion.name
+                                                                            : ion.name + text[i] + system.name});
+                    }
+                }
             }
         }
     }
