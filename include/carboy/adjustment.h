@@ -15,6 +15,7 @@ struct OffBatch {
     Request request;                   ///< label, mark, and the bench temperature where the meter was read
     PH reading;                        ///< what the meter shows there
     std::optional<Volume> not_filled;  ///< present volume, when the batch is not yet filled to the mark
+    std::optional<PH> reading_before;  ///< at the bench, everything but the titrant dissolved in the sheet's volume
     double within = 0.05;              ///< how far concentrations may end up from the label, relative
 };
 
@@ -62,6 +63,7 @@ struct Mistake {
     std::optional<double> factor;            ///< amount (or volume) put in, over the planned one
     std::optional<Temperature> temperature;  ///< of a mistake about temperature
     PH reading;                              ///< what the meter should then show
+    std::optional<PH> before;                ///< and before the titrant, when that reading was given
     double reading_expanded_k2 = 0;          ///< model and meter (0.02) together
     bool consistent = false;                 ///< reading met within that
     double plausibility = 0;                 ///< 0 to 1: share among everything tried
@@ -88,8 +90,9 @@ struct Adjustment {
     Plan plan;
     Titrant at_hand;
     Volume present_volume;
-    PH expected;                      ///< what the meter should show now, at the bench
-    double expected_expanded_k2 = 0;  ///< of the model alone
+    PH expected;                        ///< what the meter should show now, at the bench
+    std::optional<PH> expected_before;  ///< before the titrant, when that reading was given
+    double expected_expanded_k2 = 0;    ///< of the model alone
     OffBy off_by = OffBy::nothing;
     Amount off;           ///< strong acid or base, consistent with the reading
     Preparation as_read;  ///< the plan with that put right: reads what the meter reads

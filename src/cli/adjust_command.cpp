@@ -36,6 +36,7 @@ struct Options {
     std::string volume;
     std::string reading;
     std::string titrant;
+    std::string reading_before;
     std::string not_filled;
     double within_percent = 5;
     SharedOptions shared;
@@ -57,6 +58,9 @@ OffBatch batch_of(const Options& options, const Table& table) {
     batch.request.volume = read_volume(options.volume, "--volume");
     batch.request.prepare_at = options.shared.bench_at().value_or(Temperature{});
     batch.reading = read_ph(options.reading, "--reading");
+    if (!options.reading_before.empty()) {
+        batch.reading_before = read_ph(options.reading_before, "--reading-before");
+    }
     if (!options.not_filled.empty()) {
         batch.not_filled = read_volume(options.not_filled, "--not-filled");
     }
@@ -89,6 +93,8 @@ Action declare_adjust(CLI::App& app, SharedOptions*& shared) {
     app.add_option("--with", options->titrant, "Acid or base at hand, such as '1 M HCl'")
         ->required()
         ->type_name("TITRANT");
+    app.add_option("--reading-before", options->reading_before, "What it showed before the titrant went in")
+        ->type_name("PH");
     app.add_option("--not-filled", options->not_filled, "Present volume, if not yet filled to the mark")
         ->type_name("V");
     app.add_option("--within", options->within_percent, "How far off concentrations may end up, in percent")

@@ -45,6 +45,10 @@ void expect(const Bench& bench, const Vessel& vessel, Adjustment& adjustment) {
                              adjustment.plan.request.prepare_at, bench.model);
     solver.solve();
     adjustment.expected = solver.ph();
+    if (adjustment.batch.reading_before) {
+        adjustment.expected_before = ph_of(bench, before_titrant(bench.table, adjustment.plan, vessel.present),
+                                           adjustment.plan.request.prepare_at);
+    }
     adjustment.expected_expanded_k2 = ph_uncertainty(solver, bench.table, bench.model).expanded_k2;
 }
 
@@ -90,14 +94,14 @@ void correct(const Bench& bench, const Vessel& as_read, Adjustment& adjustment) 
 }
 
 void weigh_suspicion(const Bench& bench, const Vessel& vessel, Adjustment& adjustment) {
-    for (Suspect& suspect : suspects(bench, adjustment.plan, vessel, adjustment.batch.reading)) {
-        Attempt tried = attempt(bench, adjustment.plan, suspect.vessel, adjustment.at_hand);
-        suspect.mistake.correction = std::move(tried.correction);
+    for (Suspect& suspect : suspects(bench, adjustment.plan, vessel, adjustment.batch)) {
+        const Titrant& titrant = adjustment.correction ? adjustment.correction->titrant : adjustment.at_hand;
+        suspect.mistake.correction = attempt(bench, adjustment.plan, suspect.vessel, titrant).correction;
         adjustment.mistakes.push_back(std::move(suspect.mistake));
     }
     if (impossible_for_titrant(bench, adjustment.plan, vessel, adjustment.batch.reading)) {
         adjustment.warnings.push_back({"impossible_reading",
-                                       "No amount of the recipe's titrant, none of it or twelve times as much, gives "
+                                       "No amount of the recipe's titrant, none of it or twenty times as much, gives "
                                        "this reading: something else "
                                        "went wrong. Find out what before correcting the pH."});
     } else if (adjustment.mistakes.empty() || !adjustment.mistakes.front().consistent) {
@@ -108,14 +112,49 @@ void weigh_suspicion(const Bench& bench, const Vessel& vessel, Adjustment& adjus
     }
 }
 
-bool wrong_reagent(const Mistake& mistake) {
-    constexpr std::array kinds{MistakeKind::other_hydrate, MistakeKind::other_form, MistakeKind::forms_swapped,
-                               MistakeKind::mass_tenfold, MistakeKind::titrant_wrong_kind};
-    return std::find(kinds.begin(), kinds.end(), mistake.kind) != kinds.end() && !mistake.to_weigh_in;
+/// What the likeliest mistake says about the advice: a wrong reagent is not mended by its pH.
+std::optional<Warning> objection(const Table& table, const Mistake& mistake) {
+    std::string alone;
+    if (mistake.correction && std::abs(mistake.correction->concentration_off) > 0.005) {
+        alone = fmt::format(" With its pH alone put right the buffer would be {:.0f} % {} than its label.",
+                            100 * std::abs(mistake.correction->concentration_off),
+                            mistake.correction->concentration_off < 0 ? "weaker" : "stronger");
+    }
+    if (mistake.to_weigh_in) {
+        return Warning{"reagent_short",
+                       fmt::format("The likeliest cause is a reagent short or missing. If so, weigh in {:.4g} g of {}: "
+                                   "the pH comes right with it.",
+                                   mistake.to_weigh_in->mass.g(), table.reagents[mistake.to_weigh_in->reagent].name) +
+                           alone};
+    }
+    switch (mistake.kind) {
+        case MistakeKind::other_hydrate:
+        case MistakeKind::other_form:
+        case MistakeKind::forms_swapped:
+        case MistakeKind::mass_tenfold:
+        case MistakeKind::titrant_wrong_kind:
+            return Warning{"wrong_reagent",
+                           "The likeliest cause is a wrong reagent or mass: with its pH put right it "
+                           "would still not be the batch of the label." +
+                               alone};
+        case MistakeKind::read_at_other_temperature:
+            return Warning{"read_again",
+                           "The likeliest cause is that nothing is wrong but the temperature at the "
+                           "meter: bring the batch to the bench temperature and read it again first."};
+        case MistakeKind::meter:
+            return Warning{"calibrate_first",
+                           "The reading is within what the prediction itself is sure of: calibrate "
+                           "the meter with two standards and read again first."};
+        case MistakeKind::wrong_volume:
+            return Warning{"wrong_volume",
+                           "The likeliest cause is a wrong volume: measure it before anything else." + alone};
+        default:
+            return std::nullopt;
+    }
 }
 
 /// Why the batch is better made again, if it is.
-void judge(Adjustment& adjustment) {
+void judge(const Table& table, Adjustment& adjustment) {
     // Common practice, no source: a salt content a tenth higher is no longer the buffer of the label.
     constexpr double most_salt = 0.10;
     constexpr double little_salt_mol_per_kg = 0.005;
@@ -142,10 +181,9 @@ void judge(Adjustment& adjustment) {
     }
     if (!adjustment.mistakes.empty()) {
         const Mistake& first = adjustment.mistakes.front();
-        if (first.consistent && first.plausibility > much_more_plausible && wrong_reagent(first)) {
-            against.push_back({"wrong_reagent",
-                               "The likeliest cause is a wrong reagent or mass: with its pH put right it would still "
-                               "not be the buffer of the label."});
+        if (const auto said = objection(table, first);
+            said && first.consistent && first.plausibility > much_more_plausible) {
+            (said->code == "wrong_reagent" ? against : adjustment.reasons).push_back(*said);
         }
     }
     if (!against.empty()) {
@@ -207,7 +245,7 @@ Adjustment adjust(const Table& table, const OffBatch& batch, const Titrant& at_h
     as_read.present = adjustment.as_read;
     correct(bench, as_read, adjustment);
     weigh_suspicion(bench, vessel, adjustment);
-    judge(adjustment);
+    judge(table, adjustment);
     return adjustment;
 }
 

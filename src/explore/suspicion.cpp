@@ -14,7 +14,7 @@ namespace carboy {
 
 namespace {
 
-constexpr double largest_factor = 12;  // concentrated acid in place of 1 mol/L
+constexpr double largest_factor = 20;  // 50 % NaOH in place of 1 mol/L
 
 /// What the meter should show of a suspect, and how sure that is. False when it is no solution at all.
 bool take_reading(const Bench& bench, Suspect& suspect) {
@@ -46,6 +46,14 @@ std::optional<double> factor_for(const Bench& bench, const Plan& plan, const Ves
         return std::nullopt;
     }
     return *amount / titrant.amount;
+}
+
+/// The wrong kind of titrant was not yet in: before it only the other reagents count.
+void take_reading_before(const Bench& bench, const Plan& plan, const Vessel& planned, Suspect& suspect) {
+    const bool of_titrant = suspect.mistake.kind == MistakeKind::titrant_wrong_kind ||
+                            suspect.mistake.kind == MistakeKind::set_before_dilution;
+    const Preparation before = before_titrant(bench.table, plan, of_titrant ? planned.present : suspect.vessel.present);
+    suspect.mistake.before = ph_of(bench, before, plan.request.prepare_at);
 }
 
 double density(double off, double standard_uncertainty) {
@@ -83,9 +91,10 @@ std::optional<Suspect> titrant_error(const Bench& bench, const Plan& plan, const
 
 }  // namespace
 
-std::vector<Suspect> suspects(const Bench& bench, const Plan& plan, const Vessel& vessel, PH reading) {
+std::vector<Suspect> suspects(const Bench& bench, const Plan& plan, const Vessel& vessel, const OffBatch& batch) {
     constexpr std::size_t most = 6;
     constexpr std::size_t nearest_when_none = 2;
+    const double reading = batch.reading.value();
     const PH expected = ph_of(bench, vessel.present, plan.request.prepare_at);
     std::vector<Suspect> tried;
     std::array<int, 32> of_kind{};
@@ -98,32 +107,42 @@ std::vector<Suspect> suspects(const Bench& bench, const Plan& plan, const Vessel
             tried.push_back(std::move(suspect));
         }
     }
-    double sum = 0;
     for (Suspect& suspect : tried) {
         Mistake& mistake = suspect.mistake;
-        const double off = reading.value() - mistake.reading.value();
+        const double off = reading - mistake.reading.value();
         mistake.consistent = std::abs(off) <= mistake.reading_expanded_k2;
         mistake.plausibility = prior(mistake.kind) / of_kind[static_cast<std::size_t>(mistake.kind)] *
                                density(off, mistake.reading_expanded_k2 / 2);
-        sum += mistake.plausibility;
     }
     double weight = 0;
-    if (auto suspect = titrant_error(bench, plan, vessel, reading, weight)) {
+    if (auto suspect = titrant_error(bench, plan, vessel, batch.reading, weight)) {
         suspect->mistake.plausibility = weight;
-        sum += weight;
         tried.push_back(std::move(*suspect));
+    }
+    double sum = 0;
+    for (Suspect& suspect : tried) {
+        Mistake& mistake = suspect.mistake;
+        if (batch.reading_before) {
+            take_reading_before(bench, plan, vessel, suspect);
+            const double off = batch.reading_before->value() - mistake.before->value();
+            mistake.consistent = mistake.consistent && std::abs(off) <= mistake.reading_expanded_k2;
+            mistake.plausibility *= density(off, mistake.reading_expanded_k2 / 2);
+        }
+        sum += mistake.plausibility;
     }
     for (Suspect& suspect : tried) {
         suspect.mistake.plausibility = sum > 0 ? suspect.mistake.plausibility / sum : 0;
     }
+    const auto distance = [&](const Mistake& mistake) {
+        const double before = batch.reading_before ? batch.reading_before->value() - mistake.before->value() : 0.0;
+        return std::hypot(reading - mistake.reading.value(), before);
+    };
     const bool any = std::any_of(tried.begin(), tried.end(), [](const Suspect& s) { return s.mistake.consistent; });
     if (any) {
         std::erase_if(tried, [](const Suspect& s) { return !s.mistake.consistent; });
     }
     std::stable_sort(tried.begin(), tried.end(), [&](const Suspect& a, const Suspect& b) {
-        return any ? a.mistake.plausibility > b.mistake.plausibility
-                   : std::abs(a.mistake.reading.value() - reading.value()) <
-                         std::abs(b.mistake.reading.value() - reading.value());
+        return any ? a.mistake.plausibility > b.mistake.plausibility : distance(a.mistake) < distance(b.mistake);
     });
     tried.resize(std::min(tried.size(), any ? most : nearest_when_none));
     return tried;

@@ -101,6 +101,21 @@ std::optional<PlannedTitrant> titrant_of(const Table& table, const Plan& plan) {
     return std::nullopt;
 }
 
+Preparation before_titrant(const Table& table, const Plan& plan, const Preparation& present) {
+    const auto titrant = titrant_of(table, plan);
+    Preparation before = present;
+    before.filled_to = plan.dissolve_in;
+    before.portions.clear();
+    for (const Portion& portion : present.portions) {
+        const bool of_titrant =
+            titrant && same_supplies(table.reagents[portion.reagent], table.reagents[titrant->titrant.reagent]);
+        if (!of_titrant && !goes_in_last(table.reagents[portion.reagent], table)) {
+            before.portions.push_back(portion);
+        }
+    }
+    return before;
+}
+
 Titrant strong_titrant(const Table& table, const Plan& plan, int sign) {
     const auto ion_of = [&](std::uint16_t index) { return ComponentId{ComponentKind::spectator, index}; };
     const auto planned = titrant_of(table, plan);

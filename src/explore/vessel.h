@@ -24,6 +24,9 @@ struct Vessel {
 /// The batch as the recipe makes it.
 Vessel planned_vessel(const Table& table, const Plan& plan, std::optional<Volume> not_filled);
 
+/// The vessel as it was before the titrant: in the volume that the recipe dissolves in, without what goes in last.
+Preparation before_titrant(const Table& table, const Plan& plan, const Preparation& present);
+
 /// The titrant of a recipe, if it has one.
 struct PlannedTitrant {
     std::size_t portion = 0;  ///< index into Plan::preparation.portions

@@ -17,6 +17,10 @@ ordered_json notes_json(const std::vector<Warning>& notes) {
     return list;
 }
 
+ordered_json or_null(const std::optional<PH>& ph) {
+    return ph ? ordered_json(ph->value()) : ordered_json(nullptr);
+}
+
 ordered_json article_json(const Reagent& reagent) {
     return {{"reagent", reagent.name},
             {"formula", reagent.formula},
@@ -67,6 +71,7 @@ ordered_json mistake_json(const Mistake& mistake, const Adjustment& adjustment, 
         {"factor", mistake.factor ? ordered_json(*mistake.factor) : ordered_json(nullptr)},
         {"temperature_C", mistake.temperature ? ordered_json(mistake.temperature->celsius()) : ordered_json(nullptr)},
         {"reading_pH", mistake.reading.value()},
+        {"reading_before_pH", or_null(mistake.before)},
         {"reading_pH_expanded_k2", mistake.reading_expanded_k2},
         {"consistent", mistake.consistent},
         {"plausibility", mistake.plausibility}};
@@ -102,6 +107,8 @@ ordered_json adjustment_json(const Adjustment& adjustment, const Table& table) {
                         {"reading_pH", adjustment.batch.reading.value()},
                         {"expected_pH", adjustment.expected.value()},
                         {"expected_pH_expanded_k2", adjustment.expected_expanded_k2},
+                        {"reading_before_pH", or_null(adjustment.batch.reading_before)},
+                        {"expected_before_pH", or_null(adjustment.expected_before)},
                         {"off",
                          {{"what", off_by_word(adjustment.off_by)},
                           {"amount_mol", adjustment.off.mol()},

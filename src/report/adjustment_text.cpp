@@ -5,6 +5,7 @@
 #include <fmt/format.h>
 
 #include "report/cautions.h"
+#include "report/explain_text.h"
 #include "report/figure_text.h"
 #include "report/page.h"
 
@@ -62,7 +63,7 @@ void what_to_do(Page& page, const Adjustment& adjustment, const Table& table) {
     } else {
         page.notice(words);
     }
-    if (correction.finished_volume > correction.volume_then) {
+    if (adjustment.batch.not_filled && correction.finished_volume > correction.volume_then) {
         page.paragraph(fmt::format("Then fill to {}, mix and read again: {}.", vessel_text(correction.finished_volume),
                                    ph_text(correction.finished_reading)));
     }
@@ -79,6 +80,12 @@ void now(Page& page, const Adjustment& adjustment) {
     page.row(figure_columns,
              {"", "it should read",
               fmt::format("pH {} ± {:.2f}", ph_text(adjustment.expected), adjustment.expected_expanded_k2)});
+    if (adjustment.expected_before) {
+        page.row(figure_columns,
+                 {"", "before the titrant",
+                  fmt::format("pH {}; it should have read {}", ph_text(*adjustment.batch.reading_before),
+                              ph_text(*adjustment.expected_before))});
+    }
     if (adjustment.off_by != OffBy::nothing && adjustment.verdict != Verdict::leave_it) {
         const double millimoles = 1e3 * adjustment.off.mol();
         page.row(figure_columns, {"", std::string(off_by_word(adjustment.off_by)),
@@ -90,12 +97,13 @@ void now(Page& page, const Adjustment& adjustment) {
 std::string volume_words(const Adjustment& adjustment, const Correction& correction) {
     const Volume mark = adjustment.plan.request.volume;
     const Volume over = correction.finished_volume - mark;
-    if (over.mL() > 1e-6 * mark.mL()) {
+    constexpr double visible = 5e-4;  // a solid moves the volume by less than a vessel shows
+    if (over > visible * mark) {
         return fmt::format("{}, {} over the mark", volume_text(correction.finished_volume), volume_text(over));
     }
     const Volume room = mark - correction.volume_then;
-    return room.mL() > 0 ? fmt::format("{}, {} of it still to fill", vessel_text(mark), volume_text(room))
-                         : vessel_text(mark);
+    return room > visible * mark ? fmt::format("{}, {} of it still to fill", vessel_text(mark), volume_text(room))
+                                 : vessel_text(mark);
 }
 
 void afterwards(Page& page, const Adjustment& adjustment, const Table& table) {
@@ -122,7 +130,7 @@ void afterwards(Page& page, const Adjustment& adjustment, const Table& table) {
 }
 
 /// What would then have to be done, short.
-std::string remedy(const Mistake& mistake, const Table& table) {
+std::string remedy(const Mistake& mistake, const Adjustment& adjustment, const Table& table) {
     if (mistake.kind == MistakeKind::read_at_other_temperature) {
         return "read it again";
     }
@@ -138,7 +146,12 @@ std::string remedy(const Mistake& mistake, const Table& table) {
     if (!mistake.correction) {
         return "not this titrant";
     }
-    return "add " + titrant_amount_text(mistake.correction->titrant, mistake.correction->amount, table);
+    const std::string add =
+        "add " + titrant_amount_text(mistake.correction->titrant, mistake.correction->amount, table);
+    const double off = mistake.correction->concentration_off;
+    return std::abs(off) > adjustment.batch.within
+               ? fmt::format("{}; buffer {:.0f} % {}", add, 100 * std::abs(off), off < 0 ? "weak" : "strong")
+               : add;
 }
 
 void causes(Page& page, const Adjustment& adjustment, const Table& table) {
@@ -146,15 +159,16 @@ void causes(Page& page, const Adjustment& adjustment, const Table& table) {
         return;
     }
     const bool fits = adjustment.mistakes.front().consistent;
-    page.heading(fits ? "WHAT MAY HAVE HAPPENED, THE AMOUNTS OF THE RECIPE TAKEN AS PUT IN"
+    page.heading(fits ? "WHAT MAY HAVE HAPPENED, IF THE RECIPE'S AMOUNTS WENT IN"
                       : "NO SINGLE MISTAKE FITS; THE NEAREST");
     page.row(cause_columns, {"", "", "", "reads", "", "share", "", "then"});
     for (const Mistake& mistake : adjustment.mistakes) {
         const std::string share = !fits                         ? ""
                                   : mistake.plausibility < 0.01 ? "< 1 %"
+                                  : mistake.plausibility > 0.95 ? "> 95 %"
                                                                 : fmt::format("{:.0f} %", 100 * mistake.plausibility);
         page.row(cause_columns, {"", mistake_text(mistake, adjustment, table), "", ph_text(mistake.reading), "", share,
-                                 "", remedy(mistake, table)});
+                                 "", remedy(mistake, adjustment, table)});
     }
     if (fits && adjustment.mistakes.size() > 1 &&
         adjustment.mistakes[1].plausibility > 0.5 * adjustment.mistakes[0].plausibility) {
@@ -214,6 +228,9 @@ std::string adjustment_text(const Adjustment& adjustment, const Table& table, co
     causes(page, adjustment, table);
     notes(page, adjustment, style);
     cautions(page, adjustment, table);
+    if (style.explain) {
+        explain_recipe(page, adjustment.plan, table);
+    }
     return page.text();
 }
 
