@@ -1,3 +1,4 @@
+#include <algorithm>
 #include <cmath>
 
 #include "warning/circumstances.h"
@@ -17,6 +18,8 @@ void observe_mixture(Prediction& prediction, const Table& table) {
             {std::string(observation.code), filled_in(observation, seen, match), observation.weight});
         unmodelled = std::hypot(unmodelled, observation.pH_standard_uncertainty);
     }
+    std::stable_sort(prediction.warnings.begin(), prediction.warnings.end(),
+                     [](const Warning& a, const Warning& b) { return a.weight > b.weight; });
     if (unmodelled > 0) {
         prediction.uncertainty.unmodelled = unmodelled;
         prediction.uncertainty.combine();

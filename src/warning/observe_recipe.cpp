@@ -128,6 +128,21 @@ void put_in_order(std::vector<Warning>& warnings, const Table& table) {
     warnings = std::move(kept);
 }
 
+/// Of a stock, what is grave in the bottle and not at working strength: what comes down there stays down.
+void add_of_bottle(Plan& plan, const Table& table) {
+    constexpr int grave = 70;
+    if (!plan.as_bottled) {
+        return;
+    }
+    for (const Warning& warning : plan.as_bottled->warnings) {
+        const bool said = std::any_of(plan.warnings.begin(), plan.warnings.end(),
+                                      [&](const Warning& other) { return other.code == warning.code; });
+        if (warning.weight >= grave && !said && rule_of(table, warning) != nullptr) {
+            plan.warnings.push_back({warning.code, "In the bottle: " + warning.message, warning.weight});
+        }
+    }
+}
+
 }  // namespace
 
 void observe_recipe(Plan& plan, const Table& table) {
@@ -145,6 +160,7 @@ void observe_recipe(Plan& plan, const Table& table) {
     for (const Warning& warning : plan.predicted.warnings) {
         plan.warnings.push_back(warning);
     }
+    add_of_bottle(plan, table);
     if (plan.warnings.size() > 1) {
         put_in_order(plan.warnings, table);
     }

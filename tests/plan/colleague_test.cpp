@@ -67,7 +67,8 @@ constexpr Case cases[] = {
     {"over_solubility", "7 M NaCl", "1 M NaCl"},
     {"crystallises_in_the_cold", "0.4 M Tris, 5 M NaCl, pH 8 at 4 C", "0.4 M Tris, 5 M NaCl, pH 8"},
     {"chelator_with_metal", "50 mM Tris, 5 mM EDTA, 5 mM MgCl2, pH 8", "50 mM Tris, 5 mM EDTA, pH 8"},
-    {"metal_binding", "50 mM histidine, 5 mM NiCl2, pH 6", "50 mM histidine, pH 6"},
+    {"metal_binding", "50 mM sodium citrate, 5 mM MgCl2, pH 6", "50 mM histidine, 5 mM MgCl2, pH 6"},
+    {"amine_binds_metal", "50 mM histidine, 5 mM NiCl2, pH 6", "50 mM histidine, pH 6"},
     {"sodium_binding", "0.1 M EDTA sodium, pH 9", "1 mM EDTA, 50 mM Tris, pH 8"},
     {"tris_borate", "89 mM Tris, 89 mM borate, pH 8.3", "89 mM Tris-HCl, pH 8.3"},
     {"borate_with_polyol", "50 mM sodium borate, 1 M glycerol, pH 8.5", "50 mM sodium borate, pH 8.5"},
@@ -106,4 +107,72 @@ TEST_CASE("colleague: every rule speaks and is silent in its place", "[colleague
         CHECK(says(planned(one.speaks).warnings, one.code));
         CHECK_FALSE(says(planned(one.silent).warnings, one.code));
     }
+}
+
+TEST_CASE("colleague: every rule of the table is tried above", "[colleague]") {
+    // Those that no label line leads to are tried by mixture below.
+    constexpr std::string_view by_mixture[] = {"gas_in_acid", "hypochlorite_with_ammonia", "much_titrant"};
+    for (const Observation& rule : bundled_table().observations) {
+        INFO(rule.code);
+        const bool tried =
+            std::any_of(std::begin(cases), std::end(cases), [&](const Case& one) { return rule.code == one.code; });
+        CHECK((tried || std::find(std::begin(by_mixture), std::end(by_mixture), rule.code) != std::end(by_mixture)));
+    }
+}
+
+TEST_CASE("colleague: mixtures alone are spoken of too", "[colleague][safety]") {
+    const Table& table = bundled_table();
+    const auto predicted = [&](std::initializer_list<std::pair<const char*, double>> totals) {
+        Mixture mixture;
+        for (const auto& [name, molality] : totals) {
+            const System* system = find_system(table, name);
+            mixture.add(system != nullptr ? id_of(table, *system) : id_of(table, *find_spectator(table, name)),
+                        Molality::mol_per_kg(molality));
+        }
+        return predict(table, mixture, Temperature{}, davies_model());
+    };
+    CHECK(says(predicted({{"azide", 0.01}, {"Na+", 0.005}}).warnings, "gas_in_acid"));
+    CHECK_FALSE(says(predicted({{"azide", 0.01}, {"Na+", 0.01}}).warnings, "gas_in_acid"));
+    CHECK(says(predicted({{"hypochlorite", 0.01}, {"Na+", 0.01}, {"ammonia", 0.01}}).warnings,
+               "hypochlorite_with_ammonia"));
+    CHECK_FALSE(says(predicted({{"hypochlorite", 0.01}, {"Na+", 0.01}}).warnings, "hypochlorite_with_ammonia"));
+    // Advice on the making-up is not for a mixture that is only calculated.
+    CHECK_FALSE(says(predicted({{"Tris", 0.05}, {"Cl-", 0.02}}).warnings, "primary_amine"));
+}
+
+TEST_CASE("colleague: few and each once, the heaviest first", "[colleague]") {
+    for (const char* label :
+         {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, 1 mM DTT, pH 8", "20 mM HEPES-KOH, 100 mM KCl, 5 mM MgCl2, pH 7.4",
+          "10 mM sodium phosphate, 150 mM NaCl, pH 7.4", "89 mM Tris, 89 mM borate, 2 mM EDTA, pH 8.3",
+          "25 mM Tris, 192 mM glycine, 3.5 mM sodium dodecyl sulfate, pH 8.3", "8 M urea, 50 mM Tris-HCl, pH 8",
+          "50 mM ammonium hydrogen carbonate, pH 8", "0.1 M sodium acetate, pH 5"}) {
+        INFO(label);
+        const Plan plan = planned(label);
+        CHECK(plan.warnings.size() <= 5);
+        for (std::size_t i = 1; i < plan.warnings.size(); ++i) {
+            CHECK(plan.warnings[i - 1].weight >= plan.warnings[i].weight);
+            CHECK(std::none_of(plan.warnings.begin(), plan.warnings.begin() + static_cast<std::ptrdiff_t>(i),
+                               [&](const Warning& other) { return other.code == plan.warnings[i].code; }));
+        }
+    }
+}
+
+TEST_CASE("colleague: what the model leaves out stands in the uncertainty", "[colleague][uncertainty]") {
+    const Prediction bare = planned("50 mM Tris, 5 mM EDTA, pH 8").predicted;
+    const Prediction with = planned("50 mM Tris, 5 mM EDTA, 5 mM MgCl2, pH 8").predicted;
+    CHECK(bare.uncertainty.unmodelled == 0);
+    CHECK(with.uncertainty.unmodelled == Approx(0.15));
+    CHECK(with.uncertainty.expanded_k2 > 0.3);
+    // No pH is better known than the scale itself: never ± 0.00.
+    for (const char* label : {"50 mM sodium phosphate, pH 7", "0.1 M sodium acetate, pH 4.76", "50 mM Tris, pH 8"}) {
+        CHECK(planned(label).predicted.uncertainty.expanded_k2 >= 0.01);
+    }
+}
+
+TEST_CASE("colleague: the vessel warms by the heat of neutralisation", "[colleague][heat]") {
+    // About 0.55 mol of HCl with Tris, 47.45 kJ/mol, in 0.8 to 0.9 kg: 7 to 8 K.
+    const Plan plan = planned("1 M Tris-HCl, pH 8", Route::titrated);
+    CHECK(plan.temperature_rise_K > 6);
+    CHECK(plan.temperature_rise_K < 9);
+    CHECK(planned("50 mM sodium phosphate, pH 7", Route::salts).temperature_rise_K == 0);
 }
