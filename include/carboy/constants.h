@@ -154,6 +154,75 @@ struct Vessel {
     Figure reads_to_mL;   ///< finest that can be set; of a one-mark vessel its capacity
 };
 
+/// Closed range of a figure; NaN leaves an end open.
+struct Range {
+    double from;
+    double to;
+
+    constexpr bool holds(double value) const { return !(value < from) && !(value > to); }
+    constexpr bool open() const { return from != from && to != to; }
+};
+
+/// One bit that stands for a component: a quick way to see that none of a set is in a mixture. Components share bits,
+/// so a common bit proves nothing.
+constexpr std::uint64_t mark_of(ComponentId id) {
+    const unsigned bit = (id.kind == ComponentKind::spectator ? 0U : 29U) + id.index;
+    return std::uint64_t{1} << (bit % 64U);
+}
+
+/// A condition on the composition: together, these components make up so much or more.
+struct Presence {
+    std::span<const ComponentId> any_of;
+    double least_mol_per_kg;
+    std::uint64_t marks;  ///< of `any_of`
+};
+
+/// A species of an ionic product, with its power.
+struct ProductFactor {
+    enum class Of : std::uint8_t { component, hydrogen_ion, hydroxide };
+    Of of;
+    ComponentId component;
+    std::uint8_t species;  ///< index into System::species; 0 for a spectator
+    std::uint8_t power;
+};
+
+/// When a solution is looked at.
+enum class Moment : std::uint8_t { dissolved = 1, titrated = 2, filled = 4, in_use = 8 };
+
+/// What a good colleague says when he sees such a solution, and when he says it. Conditions that are left out hold.
+struct Observation {
+    std::string_view code;
+    std::string_view text;  ///< with places to fill in, such as {pH}; see `observation_places`
+    std::uint8_t weight;    ///< 0 to 100: the heaviest is said first
+    std::uint16_t source;
+    Evidence evidence;
+    double pH_standard_uncertainty;                ///< added to that of the prediction; 0 where the pH is not in doubt
+    std::span<const std::string_view> instead_of;  ///< codes that need not be said beside this one
+
+    // When.
+    bool of_recipe;        ///< concerns the making-up: never said of a mixture alone
+    std::uint8_t moments;  ///< set of Moment; the pH counts at any of them
+    std::span<const Presence> with;
+    std::span<const std::uint16_t> reagents;    ///< one of them is used; none: any
+    std::span<const std::uint16_t> statements;  ///< one of these hazard statements stands on that reagent
+    std::span<const ProductFactor> product;     ///< of activities
+    double log10_product_above;
+    Range pH;
+    Range temperature_C;
+    Range ionic_strength_mol_per_kg;
+    Range buffer_value_mol_per_kg;  ///< without water's own
+    Range pK_distance;              ///< of the nearest pK
+    Range share_of_best_buffering;  ///< buffer value against the best that the concentration asked for could give
+    Range solubility_share;         ///< concentration of a reagent against its solubility in water
+    Range temperature_rise_K;       ///< by the titrant
+    Range titrant_share;            ///< of the final volume
+};
+
+/// The places that a text may have.
+constexpr std::string_view observation_places[] = {
+    "pH",      "temperature", "ionic_strength", "buffer_value", "percent", "subject",
+    "partner", "reagent",     "g_per_L",        "solubility",   "rise"};
+
 struct Element {
     std::string_view symbol;
     Figure standard_atomic_weight;
@@ -182,6 +251,7 @@ struct Table {
     std::span<const System> systems;
     std::span<const Reagent> reagents;
     std::span<const NameEntry> names;
+    std::span<const Observation> observations;
     std::shared_ptr<const void> owner;
 };
 

@@ -32,7 +32,8 @@ TableBuilder::TableBuilder(const Table& base)
       vessels_(copied(base.vessels)),
       spectators_(copied(base.spectators)),
       systems_(copied(base.systems)),
-      reagents_(copied(base.reagents)) {
+      reagents_(copied(base.reagents)),
+      observations_(copied(base.observations)) {
     arena_->base_owner = base.owner;
 }
 
@@ -268,6 +269,7 @@ Table TableBuilder::finish(std::string version, std::string sha256) {
     table.systems = keep_array(std::move(systems_));
     table.reagents = keep_array(std::move(reagents_));
     table.names = keep_array(std::move(names_));
+    table.observations = keep_array(std::move(observations_));
     table.owner = arena_;
     return table;
 }

@@ -31,6 +31,7 @@ public:
     void read_spectators(const DocumentNode& document);
     void read_systems(const DocumentNode& document);
     void read_reagents(const DocumentNode& document);
+    void read_observations(const DocumentNode& document);
 
     /// Resolves what is left and checks the whole; faults of untouched entries carry the entry's name as path.
     Table finish(std::string version, std::string sha256);
@@ -59,6 +60,10 @@ private:
     Figure read_figure(const DocumentNode& parent, const char* key, double lowest, double highest,
                        Provenance inherited);
     std::span<const std::uint16_t> read_cautions_of(const DocumentNode& entry);
+    Presence read_presence(const DocumentNode& node);
+    void read_product(const DocumentNode& node, Observation& observation);
+    std::optional<ProductFactor> product_factor(const DocumentNode& at, const std::string& name) const;
+    void read_when(const DocumentNode& node, Observation& observation);
     Step read_step(const DocumentNode& node);
     static void read_expression(const DocumentNode& node, Step& step);
     Ghs read_ghs(const DocumentNode& entry);
@@ -84,6 +89,7 @@ private:
     std::vector<Spectator> spectators_;
     std::vector<System> systems_;
     std::vector<Reagent> reagents_;
+    std::vector<Observation> observations_;
     std::vector<NameEntry> names_;
     std::map<std::size_t, std::vector<std::string>> counter_ion_names_;  ///< by system, still to be resolved
     std::map<std::string, std::string> paths_;                           ///< kind and name -> JSON path, of new entries
