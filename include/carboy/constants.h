@@ -2,6 +2,7 @@
 
 #include <cstdint>
 #include <memory>
+#include <optional>
 #include <span>
 #include <string_view>
 
@@ -140,6 +141,42 @@ struct Caution {
     Evidence evidence;
 };
 
+/// What a buffer does to an experiment, apart from holding its pH.
+enum class Trait : std::uint8_t {
+    phosphate,
+    carboxylate,
+    amine,           ///< primary or secondary: reacts with aldehydes, isothiocyanates and active esters
+    tertiary_amine,  ///< no N-H to react
+    zwitterion,
+    metal_binding,
+    uv_cutoff,  ///< absorbs below a wavelength
+    volatile_salt,
+    toxic,
+    controlled,
+    cell_use,  ///< customary in cell culture or on living cells
+    radicals_in_light,
+    diol_binding,
+    gas_exchange,
+    short_lived  ///< hydrolyses or oxidises on the shelf
+};
+/// The words used in the data files and on the command line: `phosphate`, `metal-binding`, `uv-cutoff` ...
+std::string_view trait_word(Trait trait);
+/// Empty when there is no such word.
+std::optional<Trait> trait_of(std::string_view word);
+/// All the words, in order.
+std::span<const std::string_view> trait_words();
+
+/// A trait of a system, with its provenance.
+struct Fact {
+    Trait trait;
+    std::uint16_t system;  ///< index into Table::systems
+    bool holds;            ///< false: it is known not to have it
+    double wavelength_nm;  ///< of a UV cut-off, below which it absorbs; NaN for the others
+    std::string_view text;
+    std::uint16_t source;
+    Evidence evidence;
+};
+
 struct Element {
     std::string_view symbol;
     Figure standard_atomic_weight;
@@ -166,6 +203,7 @@ struct Table {
     std::span<const Spectator> spectators;
     std::span<const System> systems;
     std::span<const Reagent> reagents;
+    std::span<const Fact> facts;
     std::span<const NameEntry> names;
     std::shared_ptr<const void> owner;
 };
@@ -179,6 +217,9 @@ const Spectator* find_spectator(const Table& table, std::string_view name);
 const Reagent* find_reagent(const Table& table, std::string_view name);
 /// First reagent with that CAS number whose entry is marked usual, else the first with it; nullptr when there is none.
 const Reagent* find_reagent_by_cas(const Table& table, std::string_view cas);
+
+/// What the table knows of a trait of a system; nullptr when it says nothing.
+const Fact* find_fact(const Table& table, std::uint16_t system, Trait trait);
 
 ComponentId id_of(const Table& table, const System& system);
 ComponentId id_of(const Table& table, const Spectator& spectator);

@@ -31,7 +31,8 @@ TableBuilder::TableBuilder(const Table& base)
       cautions_(copied(base.cautions)),
       spectators_(copied(base.spectators)),
       systems_(copied(base.systems)),
-      reagents_(copied(base.reagents)) {
+      reagents_(copied(base.reagents)),
+      facts_(copied(base.facts)) {
     arena_->base_owner = base.owner;
 }
 
@@ -265,6 +266,7 @@ Table TableBuilder::finish(std::string version, std::string sha256) {
     table.spectators = keep_array(std::move(spectators_));
     table.systems = keep_array(std::move(systems_));
     table.reagents = keep_array(std::move(reagents_));
+    table.facts = keep_array(std::move(facts_));
     table.names = keep_array(std::move(names_));
     table.owner = arena_;
     return table;

@@ -80,6 +80,15 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
         add("constants.schema.json",
             json::parse(carboy::test::project_file("data/constants/" + file.path().filename().string())));
     }
+    for (const std::vector<std::string>& demands :
+         {std::vector<std::string>{"--ph", "7.4", "--at", "37C"},
+          {"--ph", "8", "--range", "4C:37C", "--acid", "5mM", "--hold", "0.3", "--avoid", "amine", "--clear-at", "230"},
+          {"--ph", "8", "--want", "volatile", "--ionic-strength", "100mM", "--concentration", "20 mmol/kg"},
+          {"--ph", "5:9"}}) {
+        std::vector<std::string> words{"select"};
+        words.insert(words.end(), demands.begin(), demands.end());
+        add("selection.schema.json", output_of(words));
+    }
     const auto run = run_program(python, {here + "validate.py", std::string(CARBOY_DATA_DIR) + "/schema"}, lines);
     if (missing(run.status, "python3-jsonschema")) {
         return;
