@@ -9,6 +9,7 @@ namespace carboy::cli {
 Action declare_recipe(CLI::App& app, SharedOptions*& shared);
 Action declare_predict(CLI::App& app, SharedOptions*& shared);
 Action declare_select(CLI::App& app, SharedOptions*& shared);
+Action declare_fit(CLI::App& app, SharedOptions*& shared);
 Action declare_constants(CLI::App& app, SharedOptions*& shared);
 
 }  // namespace carboy::cli

@@ -34,6 +34,7 @@ constexpr std::array commands{
     Command{"recipe", "From a label to what to weigh, measure and read", carboy::cli::declare_recipe},
     Command{"predict", "The pH and the species of a mixture as made", carboy::cli::declare_predict},
     Command{"select", "Rank the buffers for a job, with the reasons", carboy::cli::declare_select},
+    Command{"fit", "Constants and strengths from your own readings", carboy::cli::declare_fit},
     Command{"constants", "Look into the constants, or check a file of them", carboy::cli::declare_constants}};
 
 constexpr auto overview = R"(

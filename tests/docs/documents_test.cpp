@@ -71,7 +71,7 @@ std::string help_of(const std::string& command) {
 }
 
 const std::vector<std::string> commands{
-    "", "recipe", "predict", "select", "constants", "constants list", "constants show", "constants check", "constants sources"};
+    "", "recipe", "predict", "select", "fit", "constants", "constants list", "constants show", "constants check", "constants sources"};
 
 }  // namespace
 
