@@ -69,7 +69,8 @@ void found(Page& page, const Fit& fit, const Table& table) {
                   "Standard errors are those of the scatter seen; intervals by Student's t ({:.3f}) with {} "
                   "degrees of freedom. The {} model adds an uncertainty of {:.3f} pH that no number of readings "
                   "removes.",
-                  fit.t_quantile, fit.degrees_of_freedom, fit.activity_model, fit.model_uncertainty)
+                  fit.t_quantile, fit.degrees_of_freedom, fit.degrees_of_freedom == 1 ? "" : "s", fit.activity_model,
+                  fit.model_uncertainty)
             : fmt::format("Nothing is left over to judge scatter by: standard errors are those of the stated "
                           "uncertainties. The {} model adds an uncertainty of {:.3f} pH.",
                           fit.activity_model, fit.model_uncertainty),
@@ -84,7 +85,8 @@ void quality(Page& page, const Fit& fit) {
     const std::vector<Page::Column> columns{{2}, {26}, {52}};
     const double reduced = fit.chi_square / static_cast<double>(fit.degrees_of_freedom);
     page.row(columns, {"", "chi-square",
-                       fmt::format("{:.2f} with {} degrees of freedom", fit.chi_square, fit.degrees_of_freedom)});
+                       fmt::format("{:.2f} with {} degree{} of freedom", fit.chi_square, fit.degrees_of_freedom,
+                                   fit.degrees_of_freedom == 1 ? "" : "s")});
     page.row(columns, {"", "scatter seen",
                        fmt::format("{:.2f} times the uncertainty stated for the readings", std::sqrt(reduced))});
 }
