@@ -67,7 +67,7 @@ void found(Page& page, const Fit& fit, const Table& table) {
         fit.scaled_by_scatter
             ? fmt::format(
                   "Standard errors are those of the scatter seen; intervals by Student's t ({:.3f}) with {} "
-                  "degrees of freedom. The {} model adds an uncertainty of {:.3f} pH that no number of readings "
+                  "degree{} of freedom. The {} model adds an uncertainty of {:.3f} pH that no number of readings "
                   "removes.",
                   fit.t_quantile, fit.degrees_of_freedom, fit.degrees_of_freedom == 1 ? "" : "s", fit.activity_model,
                   fit.model_uncertainty)
