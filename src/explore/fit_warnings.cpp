@@ -67,7 +67,7 @@ void warn_of_values(Fit& fit) {
 }  // namespace
 
 double chi_square_score(const Fit& fit) {
-    const double nu = static_cast<double>(fit.degrees_of_freedom);
+    const auto nu = static_cast<double>(fit.degrees_of_freedom);
     const double spread = 2 / (9 * nu);
     return (std::cbrt(fit.chi_square / nu) - (1 - spread)) / std::sqrt(spread);
 }

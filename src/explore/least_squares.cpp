@@ -133,7 +133,7 @@ void add_covariance(LeastSquaresAnswer& answer, const Normal& normal) {
 
 /// P(|t| < q). Abramowitz and Stegun 26.7.3 (odd) and 26.7.4 (even).
 double student_coverage(double q, std::size_t freedom) {
-    const double nu = static_cast<double>(freedom);
+    const auto nu = static_cast<double>(freedom);
     const double theta = std::atan(q / std::sqrt(nu));
     const double cosine = std::cos(theta);
     if (freedom == 1) {
@@ -142,7 +142,7 @@ double student_coverage(double q, std::size_t freedom) {
     double term = freedom % 2 == 1 ? cosine : 1.0;
     double sum = term;
     for (std::size_t k = freedom % 2 == 1 ? 3 : 2; k + 1 < freedom; k += 2) {
-        const double n = static_cast<double>(k);
+        const auto n = static_cast<double>(k);
         term *= cosine * cosine * (n - 1) / n;
         sum += term;
     }

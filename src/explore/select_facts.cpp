@@ -100,7 +100,7 @@ void add_facts(Standing& standing, const Table& table, const Job& job) {
             fmt::format("whether it is clear at {:g} nm is not in the table", *job.clear_from_nm));
     }
     if (drift_is_unknown(standing, table, job)) {
-        standing.doubts.push_back(
+        standing.doubts.emplace_back(
             "how its pK moves with temperature is not in the table: the drift shown is no more "
             "than that of water and activities");
     }
@@ -120,11 +120,11 @@ void add_reason(Standing& standing, const Job& job) {
         "moves {:.2f} pH in all, most by {} ({:.2f}); its pK here is {:.2f}, {:.2f} from pH {:g}", standing.moves,
         most->words, most->moves, standing.working_pK, std::abs(standing.working_pK - job.ph.value()), job.ph.value());
     if (!standing.doubts.empty()) {
-        standing.reason += fmt::format("; after those that are sure: {}", fmt::join(standing.doubts, "; "));
+        standing.reason += fmt::format("; it stands after those without a doubt: {}", fmt::join(standing.doubts, "; "));
     }
     if (!standing.drawbacks.empty()) {
         standing.reason +=
-            fmt::format("; after those with nothing against them: {}", fmt::join(standing.drawbacks, "; "));
+            fmt::format("; it stands after those with nothing against them: {}", fmt::join(standing.drawbacks, "; "));
     }
 }
 

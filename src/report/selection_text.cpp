@@ -139,7 +139,7 @@ std::string demands(const Selection& selection) {
         parts.push_back(fmt::format("no {}", trait_word(trait)));
     }
     for (const Trait trait : job.want) {
-        parts.push_back(std::string(trait_word(trait)));
+        parts.emplace_back(trait_word(trait));
     }
     if (job.clear_from_nm) {
         parts.push_back(fmt::format("clear at {:g} nm", *job.clear_from_nm));
