@@ -2,6 +2,7 @@
 
 #include <cstdint>
 #include <memory>
+#include <optional>
 #include <span>
 #include <string_view>
 
@@ -223,6 +224,42 @@ constexpr std::string_view observation_places[] = {
     "pH",      "temperature", "ionic_strength", "buffer_value", "percent", "subject",
     "partner", "reagent",     "g_per_L",        "solubility",   "rise"};
 
+/// What a buffer does to an experiment, apart from holding its pH.
+enum class Trait : std::uint8_t {
+    phosphate,
+    carboxylate,
+    amine,           ///< primary or secondary: reacts with aldehydes, isothiocyanates and active esters
+    tertiary_amine,  ///< no N-H to react
+    zwitterion,
+    metal_binding,
+    uv_cutoff,  ///< absorbs below a wavelength
+    volatile_salt,
+    toxic,
+    controlled,
+    cell_use,  ///< customary in cell culture or on living cells
+    radicals_in_light,
+    diol_binding,
+    gas_exchange,
+    short_lived  ///< hydrolyses or oxidises on the shelf
+};
+/// The words used in the data files and on the command line: `phosphate`, `metal-binding`, `uv-cutoff` ...
+std::string_view trait_word(Trait trait);
+/// Empty when there is no such word.
+std::optional<Trait> trait_of(std::string_view word);
+/// All the words, in order.
+std::span<const std::string_view> trait_words();
+
+/// A trait of a system, with its provenance.
+struct Fact {
+    Trait trait;
+    std::uint16_t system;  ///< index into Table::systems
+    bool holds;            ///< false: it is known not to have it
+    double wavelength_nm;  ///< of a UV cut-off, below which it absorbs; NaN for the others
+    std::string_view text;
+    std::uint16_t source;
+    Evidence evidence;
+};
+
 struct Element {
     std::string_view symbol;
     Figure standard_atomic_weight;
@@ -250,6 +287,7 @@ struct Table {
     std::span<const Spectator> spectators;
     std::span<const System> systems;
     std::span<const Reagent> reagents;
+    std::span<const Fact> facts;
     std::span<const NameEntry> names;
     std::span<const Observation> observations;
     std::shared_ptr<const void> owner;
@@ -267,6 +305,8 @@ const Reagent* find_reagent_by_cas(const Table& table, std::string_view cas);
 
 /// nullptr when no vessel is called so.
 const Vessel* find_vessel(const Table& table, std::string_view name);
+/// What the table knows of a trait of a system; nullptr when it says nothing.
+const Fact* find_fact(const Table& table, std::uint16_t system, Trait trait);
 
 ComponentId id_of(const Table& table, const System& system);
 ComponentId id_of(const Table& table, const Spectator& spectator);

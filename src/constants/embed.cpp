@@ -182,6 +182,10 @@ std::string source_code(const Table& table, std::string_view version) {
     const std::string systems = arrays.of("System", table.systems, [&](const System& s) { return system(arrays, s); });
     const std::string reagents =
         arrays.of("Reagent", table.reagents, [&](const Reagent& r) { return reagent(arrays, r); });
+    const std::string facts = arrays.of("Fact", table.facts, [](const Fact& f) {
+        return fmt::format("{{Trait{{{}}}, {}, {}, {}, {}, {}, Evidence{{{}}}}}", static_cast<int>(f.trait), f.system,
+                           f.holds, number(f.wavelength_nm), quoted(f.text), f.source, static_cast<int>(f.evidence));
+    });
     const std::string names = arrays.of("NameEntry", table.names, [](const NameEntry& n) {
         return fmt::format("{{{}, EntryKind{{{}}}, {}}}", quoted(n.key), static_cast<int>(n.kind), n.index);
     });
@@ -193,10 +197,10 @@ std::string source_code(const Table& table, std::string_view version) {
         "namespace carboy {{\nnamespace {{\nusing namespace std::literals;\n"
         "constexpr double none = std::numeric_limits<double>::quiet_NaN();\n{}}}  // namespace\n\n"
         "const Table& bundled_table() {{\n"
-        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
+        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
         "    return table;\n}}\n\n}}  // namespace carboy\n",
         arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, vessels, spectators,
-        systems, reagents, names, observations);
+        systems, reagents, facts, names, observations);
 }
 
 int embed(int argc, char** argv) {

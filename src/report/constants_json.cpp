@@ -38,6 +38,22 @@ ordered_json cautions_json(std::span<const std::uint16_t> cautions, const Table&
     return list;
 }
 
+ordered_json traits_json(const System& system, const Table& table) {
+    const std::uint16_t index = id_of(table, system).index;
+    ordered_json list = ordered_json::array();
+    for (const Fact& fact : table.facts) {
+        if (fact.system == index) {
+            list.push_back({{"trait", trait_word(fact.trait)},
+                            {"holds", fact.holds},
+                            {"wavelength_nm", number_or_null(fact.wavelength_nm)},
+                            {"text", fact.text},
+                            {"source", table.sources[fact.source].key},
+                            {"evidence", evidence_word(fact.evidence)}});
+        }
+    }
+    return list;
+}
+
 ordered_json step_json(const System& system, std::size_t index, const Table& table) {
     const Step& step = system.steps[index];
     ordered_json record{{"step", index + 1},
@@ -77,6 +93,7 @@ ordered_json system_json(const System& system, const Table& table) {
             {"apparent_molar_volume_cm3_per_mol", figure_json(system.apparent_molar_volume_cm3_per_mol, table)},
             {"steps", std::move(steps)},
             {"cautions", cautions_json(system.cautions, table)},
+            {"traits", traits_json(system, table)},
             {"note", system.note}};
 }
 

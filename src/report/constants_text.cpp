@@ -77,6 +77,17 @@ void cautions_text(Page& page, std::span<const std::uint16_t> cautions, const Ta
     }
 }
 
+void traits_text(Page& page, const System& system, const Table& table) {
+    const std::uint16_t index = id_of(table, system).index;
+    for (const Fact& one : table.facts) {
+        if (one.system == index) {
+            fact(page, trait_word(one.trait),
+                 fmt::format("{}{}  {} ({})", one.holds ? "" : "not so: ", one.text, table.sources[one.source].key,
+                             evidence_word(one.evidence)));
+        }
+    }
+}
+
 void system_text(Page& page, const System& system, const Table& table) {
     page.heading(fmt::format("SYSTEM {}", system.name));
     fact(page, "also called", joined(system.names));
@@ -91,6 +102,7 @@ void system_text(Page& page, const System& system, const Table& table) {
     figure_fact(page, "molar volume", system.apparent_molar_volume_cm3_per_mol, "cm³/mol", table);
     fact(page, "note", system.note);
     cautions_text(page, system.cautions, table);
+    traits_text(page, system, table);
     for (std::size_t step = 0; step < system.steps.size(); ++step) {
         step_text(page, system, step, table);
     }

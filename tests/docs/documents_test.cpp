@@ -80,7 +80,7 @@ std::string help_of(const std::string& command) {
 }
 
 const std::vector<std::string> commands{
-    "",          "recipe",     "predict",   "adjust",         "series",         "shelf",           "shelf check",
+    "",          "recipe",     "predict",   "adjust",         "series", "select", "fit",         "shelf",           "shelf check",
     "shelf use", "shelf undo", "constants", "constants list", "constants show", "constants check", "constants sources"};
 
 }  // namespace
