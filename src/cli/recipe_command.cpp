@@ -13,6 +13,7 @@
 #include "cli/file.h"
 #include "report/json.h"
 #include "report/recipe_text.h"
+#include "report/sheet_html.h"
 
 namespace carboy::cli {
 
@@ -123,6 +124,21 @@ Request request_of(const Options& options, const Table& table) {
     return request;
 }
 
+/// The recipe in the format asked for.
+std::string written(const Plan& plan, const Table& table, const Options& options) {
+    const std::string& format = options.shared.format;
+    const bool bench_temperature_assumed = options.shared.prepare_at.empty() && options.request_file.empty();
+    if (format == "json") {
+        return recipe_json(plan, table).dump() + "\n";
+    }
+    if (format == "html") {
+        SheetOptions sheet;
+        sheet.bench_temperature_assumed = bench_temperature_assumed;
+        return sheet_html(sheet_of(plan, table, sheet));
+    }
+    return recipe_text(plan, table, {options.shared.colour(), options.shared.explain, bench_temperature_assumed});
+}
+
 int run(const Options& options) {
     const Table table = table_for(options.shared);
     const ActivityModel& model = options.shared.activity_model();
@@ -131,12 +147,7 @@ int run(const Options& options) {
     const auto shelf = shelf_for(options.shelf, table, model);
     const Plan plan = shelf ? plan_recipe(*shelf, request, model) : plan_recipe(table, request, model);
     const Table& used = shelf ? shelf->table() : table;
-    if (options.shared.json()) {
-        write_result(recipe_json(plan, used).dump() + "\n", options.shared.output_file);
-    } else {
-        const TextStyle style{options.shared.colour(), options.shared.explain, options.shared.prepare_at.empty()};
-        write_result(recipe_text(plan, used, style), options.shared.output_file);
-    }
+    write_result(written(plan, used, options), options.shared.output_file);
     return 0;
 }
 
@@ -168,7 +179,7 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
     app.add_option("--measure-with", options->measure_with, "Vessel to round volumes to")->type_name("VESSEL");
     add_computing_options(app, options->shared);
     app.add_option("--request", options->request_file, "Read a JSON request from FILE, or from -")->type_name("FILE");
-    add_output_options(app, options->shared);
+    add_output_options(app, options->shared, {"text", "json", "html"});
     return [options] { return run(*options); };
 }
 
