@@ -12,8 +12,11 @@
 #include "cli/commands.h"
 #include "cli/file.h"
 #include "report/json.h"
+#include "report/recipe_csv.h"
 #include "report/recipe_text.h"
 #include "report/sheet_html.h"
+#include "report/sheet_markdown.h"
+#include "report/sheet_text.h"
 
 namespace carboy::cli {
 
@@ -131,12 +134,16 @@ std::string written(const Plan& plan, const Table& table, const Options& options
     if (format == "json") {
         return recipe_json(plan, table).dump() + "\n";
     }
-    if (format == "html") {
-        SheetOptions sheet;
-        sheet.bench_temperature_assumed = bench_temperature_assumed;
-        return sheet_html(sheet_of(plan, table, sheet));
+    if (format == "csv") {
+        return recipe_csv(plan, table);
     }
-    return recipe_text(plan, table, {options.shared.colour(), options.shared.explain, bench_temperature_assumed});
+    if (format == "text") {
+        return recipe_text(plan, table, {options.shared.colour(), options.shared.explain, bench_temperature_assumed});
+    }
+    SheetOptions sheet_options;
+    sheet_options.bench_temperature_assumed = bench_temperature_assumed;
+    const Sheet sheet = sheet_of(plan, table, sheet_options);
+    return format == "html" ? sheet_html(sheet) : format == "markdown" ? sheet_markdown(sheet) : sheet_text(sheet);
 }
 
 int run(const Options& options) {
@@ -179,7 +186,7 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
     app.add_option("--measure-with", options->measure_with, "Vessel to round volumes to")->type_name("VESSEL");
     add_computing_options(app, options->shared);
     app.add_option("--request", options->request_file, "Read a JSON request from FILE, or from -")->type_name("FILE");
-    add_output_options(app, options->shared, {"text", "json", "html"});
+    add_output_options(app, options->shared, {"text", "sheet", "markdown", "html", "csv", "json"});
     return [options] { return run(*options); };
 }
 

@@ -82,8 +82,8 @@ Sheet::Portion stock_to_make(const Stock& stock, const Table& table, double tole
     portion.target = portion.weighed ? mass_text(stock.mass) : volume_text(stock.liquid);
     portion.range =
         portion.weighed ? mass_range_text(stock.mass, tolerance) : volume_range_text(stock.liquid, tolerance);
-    portion.detail = fmt::format("fill to {} with purified water: {}", vessel_text(stock.volume),
-                                 strength_text(stock.strength));
+    portion.detail =
+        fmt::format("fill to {} with purified water: {}", vessel_text(stock.volume), strength_text(stock.strength));
     if (stock.bottle != nullptr) {
         portion.detail += ", " + detail_of(Purpose::buffer, stock.bottle);
     }
@@ -113,17 +113,18 @@ void add_result(Sheet& sheet, const Plan& plan, const Table& table) {
                                  ? std::string()
                                  : fmt::format(", diluted {} times", number_text(plan.request.strength));
     sheet.in_use = fmt::format("{} at {}", ph_with_uncertainty(predicted), temperature_text(predicted.temperature));
-    sheet.result.push_back({fmt::format("pH at {}{}", temperature_text(predicted.temperature), when),
-                            fmt::format("{} ± {}", ph_text(predicted.ph), ph_text(PH(predicted.uncertainty.expanded_k2)))});
+    sheet.result.push_back(
+        {fmt::format("pH at {}{}", temperature_text(predicted.temperature), when),
+         fmt::format("{} ± {}", ph_text(predicted.ph), ph_text(PH(predicted.uncertainty.expanded_k2)))});
     if (plan.as_bottled) {
         sheet.result.push_back({"as bottled", ph_with_uncertainty(*plan.as_bottled)});
     }
     sheet.result.push_back({"ionic strength", molality_text(predicted.ionic_strength)});
     sheet.result.push_back({"buffer value", molality_text(predicted.buffer_value) + " per pH"});
     for (const CounterIonChoice& choice : plan.counter_ions) {
-        sheet.result.push_back({fmt::format("counter-ion of {}", name_of(table, choice.system)),
-                                fmt::format("{}{}", name_of(table, choice.counter_ion),
-                                            choice.named_by_label ? "" : ", the usual one")});
+        sheet.result.push_back(
+            {fmt::format("counter-ion of {}", name_of(table, choice.system)),
+             fmt::format("{}{}", name_of(table, choice.counter_ion), choice.named_by_label ? "" : ", the usual one")});
     }
 }
 
@@ -134,8 +135,9 @@ void add_notes(Sheet& sheet, const Plan& plan, const SheetOptions& options) {
         }
     }
     if (options.bench_temperature_assumed) {
-        sheet.notes.push_back(fmt::format(
-            "The bench temperature was not given; {} is assumed for the volumes and the meter.", sheet.bench_temperature));
+        sheet.notes.push_back(
+            fmt::format("The bench temperature was not given; {} is assumed for the volumes and the meter.",
+                        sheet.bench_temperature));
     }
 }
 
@@ -173,7 +175,8 @@ std::string label_line_of(const Request& request, const Table& table) {
         }
     }
     for (const AdditiveItem& item : request.additives) {
-        items.push_back(fmt::format("{} {}", concentration_text(item.concentration), table.reagents[item.reagent].name));
+        items.push_back(
+            fmt::format("{} {}", concentration_text(item.concentration), table.reagents[item.reagent].name));
     }
     if (request.ph) {
         items.push_back(fmt::format("pH {} at {}", ph_text(*request.ph), temperature_text(request.use_at)));

@@ -49,14 +49,14 @@ struct Sheet {
         std::vector<Line> statements;
     };
 
-    std::string title;      ///< what is to stand on the bottle
+    std::string title;       ///< what is to stand on the bottle
     std::string request_id;  ///< the caller's own; may be empty
     std::string recipe_id;
     std::string volume;
     std::string bench_temperature;
-    std::string stop_at;  ///< pH where the titrant stops; empty without one
-    std::string in_use;   ///< `pH 7.50 ± 0.04 at 4 °C`
-    std::string tolerance;  ///< `1 %`
+    std::string stop_at;          ///< pH where the titrant stops; empty without one
+    std::string in_use;           ///< `pH 7.50 ± 0.04 at 4 °C`
+    std::string tolerance;        ///< `1 %`
     std::vector<Portion> stocks;  ///< to make first
     std::vector<Portion> portions;
     std::vector<Reading> readings;

@@ -137,12 +137,10 @@ void ingredients(Markup& page, const Sheet& sheet) {
     }
     open_section(page, "weigh", "Weigh and measure");
     portions(page, sheet.portions, "What to weigh and measure, with blanks for what was weighed, lot and initials");
-    page.element("p", fmt::format("Purified water to {} at {}. Allowed: within {} of the target.", sheet.volume,
-                                  sheet.bench_temperature, sheet.tolerance),
+    page.element("p",
+                 fmt::format("Purified water to {} at {}. Allowed: within {} of the target.", sheet.volume,
+                             sheet.bench_temperature, sheet.tolerance),
                  {{"class", "small"}});
-    page.open("div", {{"class", "fields"}});
-    field(page, "balance", "Balance");
-    page.close();
     page.close();
 }
 
@@ -244,6 +242,7 @@ void cautions(Markup& page, const Sheet& sheet) {
 void record(Markup& page, const Sheet& sheet) {
     open_section(page, "record", "Record", "record");
     page.open("div", {{"class", "fields"}});
+    field(page, "balance", "Balance");
     field(page, "made-by", "Made by");
     field(page, "made-on", "Made on", sheet.made);
     field(page, "checked-by", "Checked by");
@@ -272,7 +271,7 @@ std::string_view length_class(const Sheet& sheet) {
         }
     }
     letters += 150 * (sheet.portions.size() + sheet.stocks.size() + sheet.readings.size());
-    return letters < 3600 ? "" : letters < 5600 ? "long" : "longest";
+    return letters < 3000 ? "" : letters < 4500 ? "long" : letters < 6000 ? "longer" : "longest";
 }
 
 }  // namespace

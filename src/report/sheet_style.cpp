@@ -31,6 +31,7 @@ section { margin-top: 1.15rem; min-width: 0; }
 .key { display: grid; grid-template-columns: repeat(auto-fit, minmax(9rem, 1fr)); gap: .5rem 1.5rem; }
 .key dt, .result dt, .field label { font: .75rem/1.3 var(--sans); color: var(--soft); }
 .key dd { font-size: 1.3rem; line-height: 1.25; font-weight: 600; }
+.key .act { padding-left: .7rem; border-left: 3px solid var(--mark); }
 .key .act dd, .act .ph { color: var(--mark); }
 table { width: 100%; border-collapse: collapse; }
 caption { position: absolute; width: 1px; height: 1px; overflow: hidden; clip-path: inset(50%); }
@@ -40,12 +41,13 @@ tbody th b { font-weight: 600; }
 tbody th span { display: block; font-size: .8rem; color: var(--soft); line-height: 1.3; }
 th.figure, td.figure { text-align: right; padding-right: 1rem; white-space: nowrap; }
 td.target { font-size: 1.2rem; font-weight: 600; line-height: 1.2; }
-td.range { font-size: .85rem; color: var(--soft); }
+td.range { font-size: .85rem; color: var(--soft); white-space: nowrap; }
 td.ph { font-size: 1.15rem; font-weight: 600; line-height: 1.2; }
 td.blank { width: 13%; } td.blank.short { width: 8%; } td.blank:last-child { padding-right: 0; }
-.act { background: var(--wash); }
+tr.act { background: var(--wash); }
+sub { font-size: .75em; line-height: 0; }
 input { font: inherit; color: inherit; }
-input[type=text], input[type=date] { width: 100%; min-width: 2rem; height: 1.7em; padding: 0 .2rem; background: var(--field);
+input[type=text] { width: 100%; min-width: 2rem; height: 1.7em; padding: 0 .2rem; background: var(--field);
   border: 0; border-bottom: 1px solid var(--soft); border-radius: 0; }
 input:focus-visible { outline: 2px solid var(--mark); outline-offset: 1px; }
 input[type=checkbox] { appearance: none; flex: none; width: 1.05em; height: 1.05em; margin: .2em .6em 0 0; border: 1.3px solid var(--ink);
@@ -75,10 +77,13 @@ footer { margin-top: 1.4rem; padding-top: .45rem; border-top: 1px solid var(--li
   .columns { display: block; }
   .cautions { columns: 1; }
   .portions thead { position: absolute; width: 1px; height: 1px; overflow: hidden; clip-path: inset(50%); }
-  .portions tr { display: grid; grid-template-columns: 1fr 1fr; gap: 0 1rem; padding: .5rem 0; border-top: 1px solid var(--line); }
+  .key { grid-template-columns: 1fr 1fr; }
+  .key div:last-child { grid-column: 1 / -1; }
+  .portions tr { display: grid; grid-template-columns: 3fr 3fr 2fr; gap: 0 1rem; padding: .5rem 0; border-top: 1px solid var(--line); }
   .portions tbody th, .portions td { border: 0; padding: .1rem 0; width: auto; }
   .portions tbody th { grid-column: 1 / -1; }
-  .portions td.figure { text-align: left; white-space: normal; align-self: end; }
+  .portions td.figure { text-align: left; }
+  .portions td.range { grid-column: 2 / -1; align-self: end; }
   .portions td.blank { width: auto; display: grid; }
   .portions td.blank::before { content: attr(data-name); font: .72rem/1.3 var(--sans); color: var(--soft); }
 }
@@ -86,18 +91,23 @@ footer { margin-top: 1.4rem; padding-top: .45rem; border-top: 1px solid var(--li
 @media print {
   :root { color-scheme: light; --paper: #fff; --ink: #000; --soft: #47433d; --line: #bdb6a9; --rule: #000; --wash: #f3efe6;
     --mark: #8c2f1b; --field: transparent; }
-  html { font-size: 9.6pt; line-height: 1.32; print-color-adjust: exact; -webkit-print-color-adjust: exact; }
-  html.long { font-size: 8.3pt; }
-  html.longest { font-size: 7.3pt; }
+  html { font-size: 9.2pt; line-height: 1.3; print-color-adjust: exact; -webkit-print-color-adjust: exact; }
+  html.long { font-size: 8.4pt; }
+  html.longer { font-size: 7.6pt; }
+  html.longest { font-size: 6.9pt; }
   body { max-width: none; padding: 0; }
-  section { margin-top: .8rem; }
+  h1 { margin: .2rem 0 .5rem; }
+  section { margin-top: .75rem; }
+  h2 { padding-top: .3rem; margin-bottom: .2rem; }
+  tbody th, td { padding-top: .2rem; padding-bottom: .2rem; }
   tr, .steps li, .notes li, .field, .record { break-inside: avoid; }
-  .notes, .cautions { line-height: 1.3; }
+  .steps li { padding: .12rem 0; }
+  .notes, .cautions { line-height: 1.28; }
   .cautions { font-size: .82rem; columns: 2; }
-  .fields { grid-template-columns: repeat(6, 1fr); gap: .3rem 1rem; }
+  input[type=text] { height: 1.5em; }
+  .fields { grid-template-columns: repeat(5, 1fr); gap: .3rem 1rem; margin-top: .25rem; }
   .columns .fields { grid-template-columns: repeat(2, 1fr); }
-  input[type=date]::-webkit-calendar-picker-indicator { display: none; }
-  footer { margin-top: .8rem; }
+  footer { margin-top: .7rem; padding-top: .3rem; }
 }
 )css";
 
