@@ -271,7 +271,7 @@ std::string_view length_class(const Sheet& sheet) {
         }
     }
     letters += 150 * (sheet.portions.size() + sheet.stocks.size() + sheet.readings.size());
-    return letters < 3000 ? "" : letters < 4500 ? "long" : letters < 6000 ? "longer" : "longest";
+    return letters < 2700 ? "" : letters < 3600 ? "long" : letters < 4800 ? "longer" : "longest";
 }
 
 }  // namespace

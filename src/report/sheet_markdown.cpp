@@ -93,7 +93,7 @@ std::string readings(const Sheet& sheet) {
 std::string blanks(const std::vector<std::pair<std::string, std::string>>& fields) {
     std::vector<Row> rows;
     for (const auto& [name, value] : fields) {
-        rows.push_back({name, value});
+        rows.push_back({name, plain(value)});
     }
     return table_of({"Record", "                                "}, rows, {});
 }
@@ -120,10 +120,10 @@ std::string sheet_markdown(const Sheet& sheet) {
     std::string text = fmt::format("# {}\n\n", plain(sheet.title));
     text += fmt::format("Make **{} at {}**", sheet.volume, sheet.bench_temperature);
     if (!sheet.stop_at.empty()) {
-        text += fmt::format(" · stop the titrant at **pH {}**", sheet.stop_at);
+        text += fmt::format(" · stop the titrant at **pH {}**", plain(sheet.stop_at));
     }
     text += fmt::format(" · in use **{}**\n\n", sheet.in_use);
-    text += fmt::format("Recipe {}{}\n", short_recipe_id(sheet.recipe_id),
+    text += fmt::format("Recipe {}{}\n", plain(short_recipe_id(sheet.recipe_id)),
                         sheet.request_id.empty() ? "" : fmt::format(" · {}", plain(sheet.request_id)));
     if (!sheet.stocks.empty()) {
         text += "\n## Make first\n\n" + portions(sheet.stocks);
@@ -162,7 +162,7 @@ std::string sheet_markdown(const Sheet& sheet) {
                     {"Store at", ""},
                     {"Container", ""},
                     {"Use by", sheet.expires}});
-    return text + fmt::format("\nRecipe id {}. {}.\n", sheet.recipe_id, sheet.program);
+    return text + fmt::format("\nRecipe id {}. {}.\n", plain(sheet.recipe_id), plain(sheet.program));
 }
 
 }  // namespace carboy

@@ -87,14 +87,14 @@ footer { margin-top: 1.4rem; padding-top: .45rem; border-top: 1px solid var(--li
   .portions td.blank { width: auto; display: grid; }
   .portions td.blank::before { content: attr(data-name); font: .72rem/1.3 var(--sans); color: var(--soft); }
 }
-@page { margin: 11mm 13mm; }
+@page { margin: 9mm 12mm; }
 @media print {
   :root { color-scheme: light; --paper: #fff; --ink: #000; --soft: #47433d; --line: #bdb6a9; --rule: #000; --wash: #f3efe6;
     --mark: #8c2f1b; --field: transparent; }
-  html { font-size: 9.2pt; line-height: 1.3; print-color-adjust: exact; -webkit-print-color-adjust: exact; }
-  html.long { font-size: 8.4pt; }
-  html.longer { font-size: 7.6pt; }
-  html.longest { font-size: 6.9pt; }
+  html { font-size: 9.4pt; line-height: 1.3; print-color-adjust: exact; -webkit-print-color-adjust: exact; }
+  html.long { font-size: 8.8pt; }
+  html.longer { font-size: 8.1pt; }
+  html.longest { font-size: 7.2pt; }
   body { max-width: none; padding: 0; }
   h1 { margin: .2rem 0 .5rem; }
   section { margin-top: .75rem; }
@@ -103,7 +103,7 @@ footer { margin-top: 1.4rem; padding-top: .45rem; border-top: 1px solid var(--li
   tr, .steps li, .notes li, .field, .record { break-inside: avoid; }
   .steps li { padding: .12rem 0; }
   .notes, .cautions { line-height: 1.28; }
-  .cautions { font-size: .82rem; columns: 2; }
+  .cautions { font-size: .84rem; columns: 2; }
   input[type=text] { height: 1.5em; }
   .fields { grid-template-columns: repeat(5, 1fr); gap: .3rem 1rem; margin-top: .25rem; }
   .columns .fields { grid-template-columns: repeat(2, 1fr); }
