@@ -12,7 +12,11 @@
 #include "cli/commands.h"
 #include "cli/file.h"
 #include "report/json.h"
+#include "report/recipe_csv.h"
 #include "report/recipe_text.h"
+#include "report/sheet_html.h"
+#include "report/sheet_markdown.h"
+#include "report/sheet_text.h"
 
 namespace carboy::cli {
 
@@ -26,6 +30,7 @@ Examples:
       --volume 500mL --prepare-at 22C
   carboy recipe "50 mM acetic acid, pH 5" --volume 1L --format json | jq .weigh
   carboy recipe --request request.json --format json -o recipe.json
+  carboy recipe "50 mM Tris-HCl, pH 8" --volume 1L --format html -o tris.html
 
 Masses carry the assay of the table; the meter readings are for the bench
 temperature, the last figure is for the temperature of use.
@@ -124,6 +129,25 @@ Request request_of(const Options& options, const Table& table) {
     return request;
 }
 
+/// The recipe in the format asked for.
+std::string written(const Plan& plan, const Table& table, const Options& options) {
+    const std::string& format = options.shared.format;
+    const bool bench_temperature_assumed = options.shared.prepare_at.empty() && options.request_file.empty();
+    if (format == "json") {
+        return recipe_json(plan, table).dump() + "\n";
+    }
+    if (format == "csv") {
+        return recipe_csv(plan, table);
+    }
+    if (format == "text") {
+        return recipe_text(plan, table, {options.shared.colour(), options.shared.explain, bench_temperature_assumed});
+    }
+    SheetOptions sheet_options;
+    sheet_options.bench_temperature_assumed = bench_temperature_assumed;
+    const Sheet sheet = sheet_of(plan, table, sheet_options);
+    return format == "html" ? sheet_html(sheet) : format == "markdown" ? sheet_markdown(sheet) : sheet_text(sheet);
+}
+
 /// An error of the planner carries the request's own id, as one of its reader does.
 template <class Shelf>
 Plan planned(const Shelf& shelf, const Table& table, const Request& request, const ActivityModel& model) {
@@ -143,12 +167,7 @@ int run(const Options& options) {
     const auto shelf = shelf_for(options.shelf, table, model);
     const Plan plan = planned(shelf, table, request, model);
     const Table& used = shelf ? shelf->table() : table;
-    if (options.shared.json()) {
-        write_result(recipe_json(plan, used).dump() + "\n", options.shared.output_file);
-    } else {
-        const TextStyle style{options.shared.colour(), options.shared.explain, options.shared.prepare_at.empty()};
-        write_result(recipe_text(plan, used, style), options.shared.output_file);
-    }
+    write_result(written(plan, used, options), options.shared.output_file);
     return 0;
 }
 
@@ -180,7 +199,7 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
     app.add_option("--measure-with", options->measure_with, "Vessel to round volumes to")->type_name("VESSEL");
     add_computing_options(app, options->shared);
     app.add_option("--request", options->request_file, "Read a JSON request from FILE, or from -")->type_name("FILE");
-    add_output_options(app, options->shared);
+    add_output_options(app, options->shared, {"text", "sheet", "markdown", "html", "csv", "json"});
     return [options] { return run(*options); };
 }
 

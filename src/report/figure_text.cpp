@@ -9,46 +9,81 @@ namespace carboy {
 
 namespace {
 
-/// Fixed-point with so many significant digits and at least `least` decimals.
-std::string fixed(double value, int significant, int least = 0) {
+/// Decimals that show so many significant digits, at least `least` of them.
+int decimals_of(double value, int significant, int least = 0) {
     if (value == 0) {
-        return "0";
+        return 0;
     }
     const int magnitude = static_cast<int>(std::floor(std::log10(std::abs(value))));
-    const int decimals = std::max(significant - 1 - magnitude, least);
-    return fmt::format("{:.{}f}", value, std::min(decimals, 12));
+    return std::min(std::max(significant - 1 - magnitude, least), 12);
+}
+
+/// Fixed-point with so many significant digits and at least `least` decimals.
+std::string fixed(double value, int significant, int least = 0) {
+    return fmt::format("{:.{}f}", value, decimals_of(value, significant, least));
+}
+
+/// The unit and the decimals that a quantity is written with.
+struct Form {
+    double per_base_unit;
+    std::string_view unit;
+    int decimals;
+};
+
+Form form_of(Mass mass) {
+    const double grams = mass.g();
+    if (grams >= 1.0) {
+        return {1, "g", decimals_of(grams, 4, grams < 100 ? 3 : 2)};
+    }
+    return grams >= 1e-3 ? Form{1e3, "mg", decimals_of(grams * 1e3, 4, 1)}
+                         : Form{1e6, "µg", decimals_of(grams * 1e6, 4)};
+}
+
+/// As `weighed_text` writes it.
+Form form_of(Mass mass, Mass readability) {
+    const int decimals = std::clamp(static_cast<int>(std::ceil(-std::log10(readability.g()) - 1e-9)), 0, 9);
+    return mass.g() >= 1.0 || decimals < 3 ? Form{1, "g", decimals} : Form{1e3, "mg", decimals - 3};
+}
+
+Form form_of(Volume volume) {
+    const double millilitres = volume.mL();
+    if (millilitres >= 1000.0) {
+        return {1e-3, "L", decimals_of(volume.L(), 4)};
+    }
+    return millilitres >= 1.0 ? Form{1, "mL", decimals_of(millilitres, 3, millilitres < 100 ? 1 : 0)}
+                              : Form{1e3, "µL", decimals_of(millilitres * 1e3, 3)};
+}
+
+std::string written(double value, const Form& form) {
+    return fmt::format("{:.{}f} {}", value * form.per_base_unit, form.decimals, form.unit);
+}
+
+std::string range_written(double value, double relative, const Form& form) {
+    const double target = value * form.per_base_unit;
+    return fmt::format("{:.{}f} to {:.{}f} {}", target * (1 - relative), form.decimals, target * (1 + relative),
+                       form.decimals, form.unit);
 }
 
 }  // namespace
 
 std::string mass_text(Mass mass) {
-    const double grams = mass.g();
-    if (grams >= 1.0) {
-        return fmt::format("{} g", fixed(grams, 4, grams < 100 ? 3 : 2));
-    }
-    if (grams >= 1e-3) {
-        return fmt::format("{} mg", fixed(grams * 1e3, 4, 1));
-    }
-    return fmt::format("{} µg", fixed(grams * 1e6, 4));
+    return written(mass.g(), form_of(mass));
+}
+
+std::string mass_range_text(Mass mass, double relative, std::optional<Mass> readability) {
+    return range_written(mass.g(), relative, readability ? form_of(mass, *readability) : form_of(mass));
 }
 
 std::string weighed_text(Mass mass, Mass readability) {
-    const int decimals = std::clamp(static_cast<int>(std::ceil(-std::log10(readability.g()) - 1e-9)), 0, 9);
-    if (mass.g() >= 1.0 || decimals < 3) {
-        return fmt::format("{:.{}f} g", mass.g(), decimals);
-    }
-    return fmt::format("{:.{}f} mg", mass.g() * 1e3, decimals - 3);
+    return written(mass.g(), form_of(mass, readability));
 }
 
 std::string volume_text(Volume volume) {
-    const double millilitres = volume.mL();
-    if (millilitres >= 1000.0) {
-        return fmt::format("{} L", fixed(volume.L(), 4));
-    }
-    if (millilitres >= 1.0) {
-        return fmt::format("{} mL", fixed(millilitres, 3, millilitres < 100 ? 1 : 0));
-    }
-    return fmt::format("{} µL", fixed(millilitres * 1e3, 3));
+    return written(volume.mL(), form_of(volume));
+}
+
+std::string volume_range_text(Volume volume, double relative) {
+    return range_written(volume.mL(), relative, form_of(volume));
 }
 
 std::string vessel_text(Volume volume) {
@@ -64,6 +99,10 @@ std::string ph_text(PH ph) {
 
 std::string temperature_text(Temperature temperature) {
     return fmt::format("{:g} °C", temperature.celsius());
+}
+
+std::string number_text(double value) {
+    return fmt::format("{:.4g}", value);
 }
 
 std::string plain_number(double value, int significant) {

@@ -1,5 +1,6 @@
 #pragma once
 
+#include <optional>
 #include <string>
 #include <string_view>
 
@@ -14,8 +15,13 @@ namespace carboy {
 std::string mass_text(Mass mass);
 /// A mass as the balance shows it: to its readability.
 std::string weighed_text(Mass mass, Mass readability);
+/// `11.993 to 12.235 g`: what is within `relative` (0.01 is 1 %) of a target, in the unit and with the decimals that
+/// the target itself is written with, to the readability of the balance when there is one.
+std::string mass_range_text(Mass mass, double relative, std::optional<Mass> readability = std::nullopt);
 /// `34.5 mL`, `250 µL`, `1.200 L`: three to four significant digits.
 std::string volume_text(Volume volume);
+/// `9.9 to 10.1 mL`, as `mass_range_text`.
+std::string volume_range_text(Volume volume, double relative);
 /// A nominal volume as a vessel is marked: `1 L`, `500 mL`.
 std::string vessel_text(Volume volume);
 /// `7.50`: two decimals, as a meter shows.
@@ -30,6 +36,8 @@ std::string strength_text(Molarity strength);
 std::string concentration_text(const Concentration& concentration);
 /// `0.29 osmol/kg`: moles of particles, two to three significant digits.
 std::string osmolality_text(Molality particles);
+/// `10`, `0.5`: a number as a person would write it, up to four significant digits.
+std::string number_text(double value);
 /// Four significant digits without an exponent where that is readable.
 std::string plain_number(double value, int significant = 4);
 

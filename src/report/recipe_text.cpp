@@ -100,22 +100,6 @@ void ingredients(Page& page, const Plan& plan, const Table& table) {
              true);
 }
 
-std::string_view reading_words(Stage stage, bool titrated) {
-    switch (stage) {
-        case Stage::dissolved:
-            return titrated ? "all but the titrant dissolved" : "dissolved";
-        case Stage::nearly:
-            return "nine tenths of the titrant: slow down";
-        case Stage::titrated:
-            return "titrant added: stop here";
-        case Stage::filled:
-            return "filled to the mark";
-        case Stage::diluted:
-            return "diluted to working strength";
-    }
-    return {};
-}
-
 void readings(Page& page, const Plan& plan) {
     page.heading(fmt::format("THE METER, AT {}", temperature_text(plan.request.prepare_at)));
     const bool titrated = std::any_of(plan.readings.begin(), plan.readings.end(),

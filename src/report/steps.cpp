@@ -111,6 +111,22 @@ std::string_view stage_word(Stage stage) {
     return {};
 }
 
+std::string_view reading_words(Stage stage, bool titrated) {
+    switch (stage) {
+        case Stage::dissolved:
+            return titrated ? "all but the titrant dissolved" : "dissolved";
+        case Stage::nearly:
+            return "nine tenths of the titrant: slow down";
+        case Stage::titrated:
+            return "titrant added: stop here";
+        case Stage::filled:
+            return "filled to the mark";
+        case Stage::diluted:
+            return "diluted to working strength";
+    }
+    return {};
+}
+
 std::vector<std::string> steps_of(const Plan& plan, const Table& table) {
     const std::string bench = temperature_text(plan.request.prepare_at);
     const auto solids = solids_to_dissolve(plan, table, false);
