@@ -136,6 +136,16 @@ std::string vessel(Arrays& arrays, const Vessel& v) {
                        figure(v.reads_to_mL));
 }
 
+std::string formula(Arrays& arrays, const NamedFormula& f) {
+    const std::string items = arrays.of("FormulaItem", f.items, [](const FormulaItem& item) {
+        return fmt::format("{{{}, FormulaPart{{{}}}, {}, ConcentrationUnit{{{}}}, {}, {}}}", item.reagent,
+                           static_cast<int>(item.part), number(item.concentration), static_cast<int>(item.unit),
+                           item.has_counter_ion, component(item.counter_ion));
+    });
+    return fmt::format("{{{}, {}, {}, {}, {}, Evidence{{{}}}, {}}}", quoted(f.name), words(arrays, f.names), items,
+                       figure(f.ph), f.source, static_cast<int>(f.evidence), quoted(f.note));
+}
+
 std::string source_code(const Table& table, std::string_view version) {
     Arrays arrays;
     const auto noted = [](const auto& item, std::string_view first, std::string_view second) {
@@ -158,6 +168,8 @@ std::string source_code(const Table& table, std::string_view version) {
     const std::string systems = arrays.of("System", table.systems, [&](const System& s) { return system(arrays, s); });
     const std::string reagents =
         arrays.of("Reagent", table.reagents, [&](const Reagent& r) { return reagent(arrays, r); });
+    const std::string formulas =
+        arrays.of("NamedFormula", table.formulas, [&](const NamedFormula& f) { return formula(arrays, f); });
     const std::string names = arrays.of("NameEntry", table.names, [](const NameEntry& n) {
         return fmt::format("{{{}, EntryKind{{{}}}, {}}}", quoted(n.key), static_cast<int>(n.kind), n.index);
     });
@@ -167,10 +179,10 @@ std::string source_code(const Table& table, std::string_view version) {
         "namespace carboy {{\nnamespace {{\nusing namespace std::literals;\n"
         "constexpr double none = std::numeric_limits<double>::quiet_NaN();\n{}}}  // namespace\n\n"
         "const Table& bundled_table() {{\n"
-        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
+        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
         "    return table;\n}}\n\n}}  // namespace carboy\n",
         arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, vessels, spectators,
-        systems, reagents, names);
+        systems, reagents, formulas, names);
 }
 
 int embed(int argc, char** argv) {

@@ -32,7 +32,8 @@ TableBuilder::TableBuilder(const Table& base)
       vessels_(copied(base.vessels)),
       spectators_(copied(base.spectators)),
       systems_(copied(base.systems)),
-      reagents_(copied(base.reagents)) {
+      reagents_(copied(base.reagents)),
+      formulas_(copied(base.formulas)) {
     arena_->base_owner = base.owner;
 }
 
@@ -267,6 +268,7 @@ Table TableBuilder::finish(std::string version, std::string sha256) {
     table.spectators = keep_array(std::move(spectators_));
     table.systems = keep_array(std::move(systems_));
     table.reagents = keep_array(std::move(reagents_));
+    table.formulas = keep_array(std::move(formulas_));
     table.names = keep_array(std::move(names_));
     table.owner = arena_;
     return table;

@@ -31,6 +31,7 @@ public:
     void read_spectators(const DocumentNode& document);
     void read_systems(const DocumentNode& document);
     void read_reagents(const DocumentNode& document);
+    void read_formulas(const DocumentNode& document);
 
     /// Resolves what is left and checks the whole; faults of untouched entries carry the entry's name as path.
     Table finish(std::string version, std::string sha256);
@@ -63,6 +64,8 @@ private:
     static void read_expression(const DocumentNode& node, Step& step);
     Ghs read_ghs(const DocumentNode& entry);
     void read_strength(const DocumentNode& entry, Reagent& reagent);
+    std::optional<FormulaItem> read_formula_item(const DocumentNode& node);
+    void check_formula_names(const DocumentNode& node, const NamedFormula& formula);
     static std::optional<Formula> formula_at(const DocumentNode& node, const std::string& text);
     double molar_mass(const DocumentNode& node, const Formula& formula);
 
@@ -84,6 +87,7 @@ private:
     std::vector<Spectator> spectators_;
     std::vector<System> systems_;
     std::vector<Reagent> reagents_;
+    std::vector<NamedFormula> formulas_;
     std::vector<NameEntry> names_;
     std::map<std::size_t, std::vector<std::string>> counter_ion_names_;  ///< by system, still to be resolved
     std::map<std::string, std::string> paths_;                           ///< kind and name -> JSON path, of new entries
