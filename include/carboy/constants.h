@@ -260,6 +260,37 @@ struct Fact {
     Evidence evidence;
 };
 
+/// What an item of a formula is there for. Without a pH all of them are put together as written.
+enum class FormulaPart : std::uint8_t {
+    added,   ///< goes in as written, whatever the pH
+    buffer,  ///< holds the pH: with a pH, its system in the form that the pH asks for
+    titrant  ///< sets the pH of the formula as written: with a pH it is left out, and its amount follows from the pH
+};
+
+enum class ConcentrationUnit : std::uint8_t;  // concentration.h
+
+/// One reagent of a formula, with its concentration at strength 1.
+struct FormulaItem {
+    std::uint16_t reagent;  ///< index into Table::reagents
+    FormulaPart part;
+    double concentration;    ///< in mol/L, g/L or % v/v
+    ConcentrationUnit unit;  ///< mol_per_L, g_per_L or percent_v_v
+    /// Of a buffer: what it is brought to pH with.
+    bool has_counter_ion;
+    ComponentId counter_ion;
+};
+
+/// A mixture that the trade knows by name, such as phosphate-buffered saline, at its working strength.
+struct NamedFormula {
+    std::string_view name;
+    std::span<const std::string_view> names;
+    std::span<const FormulaItem> items;
+    Figure ph;  ///< at working strength and 25 °C, taken when the label gives none; unknown: as written
+    std::uint16_t source;
+    Evidence evidence;
+    std::string_view note;
+};
+
 struct Element {
     std::string_view symbol;
     Figure standard_atomic_weight;
@@ -288,6 +319,7 @@ struct Table {
     std::span<const System> systems;
     std::span<const Reagent> reagents;
     std::span<const Fact> facts;
+    std::span<const NamedFormula> formulas;
     std::span<const NameEntry> names;
     std::span<const Observation> observations;
     std::shared_ptr<const void> owner;
@@ -295,6 +327,9 @@ struct Table {
 
 /// The table that is part of the program.
 const Table& bundled_table();
+
+/// Finds a formula by any of its names: `PBS`, `phosphate-buffered saline`; nullptr when there is none.
+const NamedFormula* find_named_formula(const Table& table, std::string_view name);
 
 /// Finds an entry of one kind by any of its names; spelling is folded first. nullptr when there is none.
 const System* find_system(const Table& table, std::string_view name);

@@ -160,6 +160,16 @@ std::string observation(Arrays& arrays, const Observation& o) {
         range(o.titrant_share));
 }
 
+std::string formula(Arrays& arrays, const NamedFormula& f) {
+    const std::string items = arrays.of("FormulaItem", f.items, [](const FormulaItem& item) {
+        return fmt::format("{{{}, FormulaPart{{{}}}, {}, ConcentrationUnit{{{}}}, {}, {}}}", item.reagent,
+                           static_cast<int>(item.part), number(item.concentration), static_cast<int>(item.unit),
+                           item.has_counter_ion, component(item.counter_ion));
+    });
+    return fmt::format("{{{}, {}, {}, {}, {}, Evidence{{{}}}, {}}}", quoted(f.name), words(arrays, f.names), items,
+                       figure(f.ph), f.source, static_cast<int>(f.evidence), quoted(f.note));
+}
+
 std::string source_code(const Table& table, std::string_view version) {
     Arrays arrays;
     const auto noted = [](const auto& item, std::string_view first, std::string_view second) {
@@ -186,6 +196,8 @@ std::string source_code(const Table& table, std::string_view version) {
         return fmt::format("{{Trait{{{}}}, {}, {}, {}, {}, {}, Evidence{{{}}}}}", static_cast<int>(f.trait), f.system,
                            f.holds, number(f.wavelength_nm), quoted(f.text), f.source, static_cast<int>(f.evidence));
     });
+    const std::string formulas =
+        arrays.of("NamedFormula", table.formulas, [&](const NamedFormula& f) { return formula(arrays, f); });
     const std::string names = arrays.of("NameEntry", table.names, [](const NameEntry& n) {
         return fmt::format("{{{}, EntryKind{{{}}}, {}}}", quoted(n.key), static_cast<int>(n.kind), n.index);
     });
@@ -197,10 +209,10 @@ std::string source_code(const Table& table, std::string_view version) {
         "namespace carboy {{\nnamespace {{\nusing namespace std::literals;\n"
         "constexpr double none = std::numeric_limits<double>::quiet_NaN();\n{}}}  // namespace\n\n"
         "const Table& bundled_table() {{\n"
-        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
+        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
         "    return table;\n}}\n\n}}  // namespace carboy\n",
         arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, vessels, spectators,
-        systems, reagents, facts, names, observations);
+        systems, reagents, facts, formulas, names, observations);
 }
 
 int embed(int argc, char** argv) {

@@ -33,6 +33,7 @@ TableBuilder::TableBuilder(const Table& base)
       spectators_(copied(base.spectators)),
       systems_(copied(base.systems)),
       reagents_(copied(base.reagents)),
+      formulas_(copied(base.formulas)),
       facts_(copied(base.facts)),
       observations_(copied(base.observations)) {
     arena_->base_owner = base.owner;
@@ -270,6 +271,7 @@ Table TableBuilder::finish(std::string version, std::string sha256) {
     table.systems = keep_array(std::move(systems_));
     table.reagents = keep_array(std::move(reagents_));
     table.facts = keep_array(std::move(facts_));
+    table.formulas = keep_array(std::move(formulas_));
     table.names = keep_array(std::move(names_));
     table.observations = keep_array(std::move(observations_));
     table.owner = arena_;

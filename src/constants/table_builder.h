@@ -33,6 +33,7 @@ public:
     void read_reagents(const DocumentNode& document);
     void read_observations(const DocumentNode& document);
     void read_traits(const DocumentNode& document);
+    void read_formulas(const DocumentNode& document);
 
     /// Resolves what is left and checks the whole; faults of untouched entries carry the entry's name as path.
     Table finish(std::string version, std::string sha256);
@@ -70,6 +71,8 @@ private:
     Ghs read_ghs(const DocumentNode& entry);
     void place_fact(const Fact& fact);
     void read_strength(const DocumentNode& entry, Reagent& reagent);
+    std::optional<FormulaItem> read_formula_item(const DocumentNode& node);
+    void check_formula_names(const DocumentNode& node, const NamedFormula& formula);
     static std::optional<Formula> formula_at(const DocumentNode& node, const std::string& text);
     double molar_mass(const DocumentNode& node, const Formula& formula);
 
@@ -93,6 +96,7 @@ private:
     std::vector<Reagent> reagents_;
     std::vector<Observation> observations_;
     std::vector<Fact> facts_;
+    std::vector<NamedFormula> formulas_;
     std::vector<NameEntry> names_;
     std::map<std::size_t, std::vector<std::string>> counter_ion_names_;  ///< by system, still to be resolved
     std::map<std::string, std::string> paths_;                           ///< kind and name -> JSON path, of new entries
