@@ -7,6 +7,7 @@
 
 #include <CLI/CLI.hpp>
 #include <fmt/format.h>
+#include <fmt/ranges.h>
 
 #include "carboy/constants_file.h"
 #include "carboy/error.h"
@@ -39,9 +40,9 @@ const ActivityModel& SharedOptions::activity_model() const {
     return *find_activity_model(activity);
 }
 
-void add_output_options(CLI::App& app, SharedOptions& options) {
-    app.add_option("--format", options.format, "text for people, json for programs")
-        ->check(CLI::IsMember({"text", "json"}))
+void add_output_options(CLI::App& app, SharedOptions& options, const std::vector<std::string>& formats) {
+    app.add_option("--format", options.format, fmt::format("{}", fmt::join(formats, ", ")))
+        ->check(CLI::IsMember(formats))
         ->type_name("FORMAT")
         ->capture_default_str();
     app.add_option("-o,--output", options.output_file, "Write to FILE, whole or not at all")->type_name("FILE");

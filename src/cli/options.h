@@ -37,7 +37,8 @@ struct SharedOptions {
 };
 
 /// -o, --format, --color, --quiet, --constants: every command.
-void add_output_options(CLI::App& app, SharedOptions& options);
+void add_output_options(CLI::App& app, SharedOptions& options,
+                        const std::vector<std::string>& formats = {"text", "json"});
 /// --at, --prepare-at, --activity, --explain: commands that compute.
 void add_computing_options(CLI::App& app, SharedOptions& options);
 

@@ -107,7 +107,8 @@ Request request_of(const Options& options, const Table& table) {
                         "--request holds the whole request: no label, --volume, --at or --prepare-at beside it",
                         "command line", "write them into the request");
         }
-        return read_request(read_file(options.request_file), table, options.request_file);
+        return read_request(read_file(options.request_file), table,
+                            options.request_file == "-" ? "request" : options.request_file);
     }
     if (options.label.empty() || options.volume.empty()) {
         throw Error(ErrorKind::input, "usage", options.label.empty() ? "a label is missing" : "--volume is missing",
@@ -123,13 +124,24 @@ Request request_of(const Options& options, const Table& table) {
     return request;
 }
 
+/// An error of the planner carries the request's own id, as one of its reader does.
+template <class Shelf>
+Plan planned(const Shelf& shelf, const Table& table, const Request& request, const ActivityModel& model) {
+    try {
+        return shelf ? plan_recipe(*shelf, request, model) : plan_recipe(table, request, model);
+    } catch (Error& error) {
+        error.with_id(request.id);
+        throw;
+    }
+}
+
 int run(const Options& options) {
     const Table table = table_for(options.shared);
     const ActivityModel& model = options.shared.activity_model();
     Request request = request_of(options, table);
     narrow(request, options, table);
     const auto shelf = shelf_for(options.shelf, table, model);
-    const Plan plan = shelf ? plan_recipe(*shelf, request, model) : plan_recipe(table, request, model);
+    const Plan plan = planned(shelf, table, request, model);
     const Table& used = shelf ? shelf->table() : table;
     if (options.shared.json()) {
         write_result(recipe_json(plan, used).dump() + "\n", options.shared.output_file);

@@ -22,7 +22,7 @@ constexpr auto examples = R"(
 Examples:
   carboy shelf check shelf.json
   carboy shelf check shelf.json --on 2026-12-01
-  carboy recipe "50 mM Tris-HCl, pH 8" --volume 1L --shelf shelf.json \\
+  carboy recipe "50 mM Tris-HCl, pH 8" --volume 1L --shelf shelf.json \
       --format json -o recipe.json
   carboy shelf use shelf.json recipe.json
   carboy shelf undo shelf.json

@@ -25,8 +25,8 @@ struct Stated {
 };
 
 std::string written(const Stated& quantity) {
-    // A millionth of a gram is less than any balance reads; rounding there keeps sums from growing digits.
-    return fmt::format("{} {}", std::round(quantity.value * 1e6) / 1e6, quantity.liquid ? "mL" : "g");
+    // A hundredth of a milligram is what the finest usual balance reads; rounding there keeps sums from growing digits.
+    return fmt::format("{} {}", std::round(quantity.value * 1e5) / 1e5, quantity.liquid ? "mL" : "g");
 }
 
 Stated read_quantity(const std::string& text, bool liquid, std::string_view where) {
@@ -154,7 +154,7 @@ Booked book(std::string_view shelf_json, std::string_view recipes_json, std::opt
         Taking taking{id, written(quantity), {}};
         if (bottle.contains("left")) {
             Stated left = read_quantity(bottle.at("left").get<std::string>(), quantity.liquid, "shelf, " + id);
-            if (left.value < quantity.value - 1e-6) {
+            if (left.value < quantity.value - 1e-5) {
                 missing += fmt::format("{}{}: {} needed, {} left", missing.empty() ? "" : "; ", id, written(quantity),
                                        written(left));
                 continue;

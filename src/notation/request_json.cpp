@@ -14,6 +14,7 @@
 #include "carboy/notation.h"
 
 #include "json/strict_json.h"
+#include "notation/reagent_name.h"
 
 namespace carboy {
 
@@ -45,7 +46,7 @@ public:
     }
 
     bool has(const char* key) const { return object_.contains(key); }
-    std::string path_to(const char* key) const { return path_ + "/" + key; }
+    std::string path_to(const char* key) const { return path_ + ", " + key; }
 
     std::string text(const char* key) const {
         const json& value = at(key);
@@ -97,20 +98,35 @@ ComponentId counter_ion(const Reader& reader, const char* key, const Table& tabl
                 near.empty() ? "" : fmt::format("did you mean {}?", near.front()));
 }
 
-BufferItem read_buffer(const json& value, const std::string& path, const Table& table) {
-    const Reader reader(value, path, {"system", "concentration", "cation", "anion"});
+/// What `system` holds: a system with or without its counter-ion, or the article to make it from.
+BufferItem named_buffer(const Reader& reader, const Table& table) {
     const std::string name = reader.text("system");
-    const auto named = read_buffer_name(name, table);
-    if (!named) {
-        const auto near = nearest_names(name, table, 1);
+    BufferItem item;
+    item.concentration = read_concentration(reader.text("concentration"), reader.path_to("concentration"));
+    if (const auto named = read_buffer_name(name, table)) {
+        item.system = named->system;
+        item.counter_ion = named->counter_ion;
+        item.named_form = form_named(table, name, named->system);
+        return item;
+    }
+    const Reagent* reagent = reagent_named(table, name);
+    const auto brought = reagent == nullptr ? std::nullopt : buffer_brought_by(table, *reagent);
+    if (!brought) {
+        const auto near = nearest_buffer_names(name, table, 1);
         throw fault("unknown_name", fmt::format("the table has no system called '{}'", name), reader.path_to("system"),
                     near.empty() ? "'carboy constants list' shows every system"
                                  : fmt::format("did you mean {}?", near.front()));
     }
-    BufferItem item;
-    item.system = named->system;
-    item.counter_ion = named->counter_ion;
-    item.concentration = read_concentration(reader.text("concentration"), reader.path_to("concentration"));
+    item.system = brought->buffer.system;
+    item.counter_ion = brought->buffer.counter_ion;
+    item.named_form = article_meant(table, *reagent, name, item.concentration.unit);
+    item.concentration.value *= brought->count;
+    return item;
+}
+
+BufferItem read_buffer(const json& value, const std::string& path, const Table& table) {
+    const Reader reader(value, path, {"system", "concentration", "cation", "anion"});
+    BufferItem item = named_buffer(reader, table);
     if (item.concentration.unit != ConcentrationUnit::mol_per_L &&
         item.concentration.unit != ConcentrationUnit::mol_per_kg) {
         throw fault("unusable_unit", "a buffer's concentration is given in mol/L or mol/kg",
@@ -118,7 +134,10 @@ BufferItem read_buffer(const json& value, const std::string& path, const Table& 
     }
     for (const char* key : {"cation", "anion"}) {
         if (reader.has(key)) {
-            item.counter_ion = counter_ion(reader, key, table);
+            const ComponentId ion = counter_ion(reader, key, table);
+            // The salt that the name is of holds as long as its ion does.
+            item.named_form = ion == item.counter_ion ? item.named_form : std::nullopt;
+            item.counter_ion = ion;
         }
     }
     return item;
@@ -155,25 +174,25 @@ IonicStrengthTarget read_ionic_strength(const Reader& target) {
 void read_spelt_out(const Reader& reader, Request& request, const std::string& where, const Table& table) {
     std::size_t index = 0;
     for (const json& value : reader.array("buffers")) {
-        request.buffers.push_back(read_buffer(value, fmt::format("{}/buffers/{}", where, index++), table));
+        request.buffers.push_back(read_buffer(value, fmt::format("{}, buffers[{}]", where, index++), table));
     }
     if (request.buffers.empty()) {
-        throw fault("missing_buffer", "'buffers' is empty", where + "/buffers", "name at least one system");
+        throw fault("missing_buffer", "'buffers' is empty", where + ", buffers", "name at least one system");
     }
     index = 0;
     if (reader.has("additives")) {
         for (const json& value : reader.array("additives")) {
-            request.additives.push_back(read_additive(value, fmt::format("{}/additives/{}", where, index++), table));
+            request.additives.push_back(read_additive(value, fmt::format("{}, additives[{}]", where, index++), table));
         }
     }
-    const Reader target(reader.at("target"), where + "/target", {"pH", "temperature", "ionic_strength"});
+    const Reader target(reader.at("target"), where + ", target", {"pH", "temperature", "ionic_strength"});
     const double ph = target.number("pH");
     if (!(ph >= -2 && ph <= 16)) {
-        throw fault("ph_out_of_range", fmt::format("pH {:g} is outside -2 to 16", ph), where + "/target/pH");
+        throw fault("ph_out_of_range", fmt::format("pH {:g} is outside -2 to 16", ph), where + ", target, pH");
     }
     request.ph = PH(ph);
     if (target.has("temperature")) {
-        request.use_at = read_temperature(target.text("temperature"), where + "/target/temperature");
+        request.use_at = read_temperature(target.text("temperature"), where + ", target, temperature");
     }
     if (target.has("ionic_strength")) {
         request.ionic_strength = read_ionic_strength(target);
@@ -228,24 +247,9 @@ Route read_route(const Reader& reader) {
                 "the routes are any, titrated, salts, stocks and dilution");
 }
 
-}  // namespace
-
-Request request_from_label(std::string_view label, const Table& table, std::string_view where) {
-    Label read = read_label(label, table, where);
-    Request request;
-    request.label = std::string(label);
-    request.buffers = std::move(read.buffers);
-    request.additives = std::move(read.additives);
-    request.ph = read.ph;
-    request.use_at = read.ph_at.value_or(Temperature{});
-    request.ionic_strength = read.ionic_strength;
-    return request;
-}
-
-Request read_request(std::string_view json_text, const Table& table, std::string_view where) {
-    const json document = parse_strictly(json_text, where);
-    const std::string path(where);
-    const Reader reader(document, path,
+/// A request read from its document.
+Request request_of(const json& document, const std::string& where, const Table& table) {
+    const Reader reader(document, where,
                         {"id", "label", "buffers", "additives", "target", "volume", "prepare_at", "route",
                          "constraints", "balance", "minimum_mass", "measure_with"});
     Request request;
@@ -258,7 +262,7 @@ Request read_request(std::string_view json_text, const Table& table, std::string
         }
         request = request_from_label(reader.text("label"), table, reader.path_to("label"));
     } else {
-        read_spelt_out(reader, request, path, table);
+        read_spelt_out(reader, request, where, table);
     }
     if (reader.has("id")) {
         request.id = reader.text("id");
@@ -286,6 +290,33 @@ Request read_request(std::string_view json_text, const Table& table, std::string
         request.measure_with = read_vessel(reader.text("measure_with"), table, reader.path_to("measure_with"));
     }
     return request;
+}
+
+}  // namespace
+
+Request request_from_label(std::string_view label, const Table& table, std::string_view where) {
+    Label read = read_label(label, table, where);
+    Request request;
+    request.label = std::string(label);
+    request.buffers = std::move(read.buffers);
+    request.additives = std::move(read.additives);
+    request.ph = read.ph;
+    request.use_at = read.ph_at.value_or(Temperature{});
+    request.ionic_strength = read.ionic_strength;
+    return request;
+}
+
+Request read_request(std::string_view json_text, const Table& table, std::string_view where) {
+    const json document = parse_strictly(json_text, where);
+    try {
+        return request_of(document, std::string(where), table);
+    } catch (Error& error) {
+        // Whoever reads many answers must know which request went wrong.
+        if (document.is_object() && document.contains("id") && document.at("id").is_string()) {
+            error.with_id(document.at("id").get<std::string>());
+        }
+        throw;
+    }
 }
 
 }  // namespace carboy

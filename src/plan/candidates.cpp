@@ -40,17 +40,25 @@ void add_unique(std::vector<ComponentId>& ions, ComponentId ion) {
 
 /// Ions to titrate with, most usual first. Named ones exclude all others.
 std::vector<ComponentId> titrant_ions(const Table& table, const Request& request) {
-    std::vector<ComponentId> ions;
+    // The buffer that there is most of decides.
+    std::vector<const BufferItem*> buffers;
     for (const BufferItem& buffer : request.buffers) {
-        if (buffer.counter_ion) {
-            add_unique(ions, *buffer.counter_ion);
+        buffers.push_back(&buffer);
+    }
+    std::stable_sort(buffers.begin(), buffers.end(), [](const BufferItem* a, const BufferItem* b) {
+        return a->concentration.value > b->concentration.value;
+    });
+    std::vector<ComponentId> ions;
+    for (const BufferItem* buffer : buffers) {
+        if (buffer->counter_ion) {
+            add_unique(ions, *buffer->counter_ion);
         }
     }
     if (!ions.empty()) {
         return ions;
     }
-    for (const BufferItem& buffer : request.buffers) {
-        const System& system = table.systems[buffer.system.index];
+    for (const BufferItem* buffer : buffers) {
+        const System& system = table.systems[buffer->system.index];
         const auto usual = std::find_if(system.counter_ions.begin(), system.counter_ions.end(),
                                         [&](ComponentId ion) { return !ruled_out(request, ion); });
         if (usual != system.counter_ions.end()) {

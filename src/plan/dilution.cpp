@@ -112,7 +112,7 @@ std::vector<Draft> dilutions(const Stockroom& stockroom, const Request& request,
             Draft draft;
             draft.route = Route::dilution;
             draft.set = set;
-            draft.counter_ions = sets[set].choices;
+            draft.counter_ions = sets[std::min(set, sets.size() - 1)].choices;
             draft.ingredients.push_back({bottle.reagent, Purpose::buffer, stock});
             draft.ingredients.insert(draft.ingredients.end(), additives->begin(), additives->end());
             if (trim != nullptr) {
@@ -136,14 +136,24 @@ std::vector<Draft> dilutions(const Stockroom& stockroom, const Request& request,
         }
         const BufferItem& first = request.buffers.front();
         const LinearProblem::Total total{first.system, first.concentration.value * request.volume.L()};
+        const std::size_t before = found.size();
+        const auto trim_with = [&](const Chemistry& titrant, std::size_t s) {
+            LinearProblem problem(table, rest, {total}, {bottle.reagent, titrant.articles.front()}, *request.ph,
+                                  request.use_at, model);
+            const auto answer = problem.solve({bottle.reagent, titrant.articles.front()}, 1e-13);
+            if (answer && answer->settled && answer->amounts_mol[0] >= 0 && answer->amounts_mol[1] >= 0) {
+                add(Amount::mol(answer->amounts_mol[0]), &titrant, Amount::mol(answer->amounts_mol[1]), s);
+            }
+        };
         for (std::size_t s = 0; s < sets.size(); ++s) {
             for (const Chemistry& titrant : sets[s].titrants) {
-                LinearProblem problem(table, rest, {total}, {bottle.reagent, titrant.articles.front()}, *request.ph,
-                                      request.use_at, model);
-                const auto answer = problem.solve({bottle.reagent, titrant.articles.front()}, 1e-13);
-                if (answer && answer->settled && answer->amounts_mol[0] >= 0 && answer->amounts_mol[1] >= 0) {
-                    add(Amount::mol(answer->amounts_mol[0]), &titrant, Amount::mol(answer->amounts_mol[1]), s);
-                }
+                trim_with(titrant, s);
+            }
+        }
+        // A trim needs little: where the label's own ions lie on the wrong side, the usual acid and base will do.
+        for (std::size_t i = 0; i < table.spectators.size() && found.size() == before; ++i) {
+            if (const auto titrant = stockroom.alone(id_of(table, table.spectators[i]))) {
+                trim_with(*titrant, sets.size());
             }
         }
     }

@@ -34,7 +34,7 @@ std::vector<Share> taken_by(const std::vector<Ingredient>& ingredients) {
 
 bool better(const Draft& a, const Draft& b) {
     const auto key = [](const Draft& d) {
-        return std::tie(d.set, d.rare, d.strangers, d.expired, d.work, d.titrant_mol, d.total_mol);
+        return std::tie(d.set, d.rare, d.strangers, d.expired, d.work, d.harsh, d.titrant_mol, d.total_mol);
     };
     return key(a) < key(b);
 }
@@ -52,6 +52,7 @@ void weigh_up(Draft& draft, const Stockroom& stockroom) {
         const Reagent& article = table.reagents[item.reagent];
         draft.expired += bottle != nullptr && stockroom.shelf()->expired(*bottle) ? 1 : 0;
         draft.rare += article.rarely_stocked ? 1 : 0;
+        draft.harsh += article.ghs.signal_word == "Danger" ? 1 : 0;
         draft.total_mol += item.amount.mol();
         if (item.make_stock) {
             draft.work += to_make;

@@ -29,6 +29,7 @@ struct Draft {
     int strangers = 0;    ///< buffers not made from the article that the label names
     int expired = 0;      ///< bottles past their date
     int work = 0;         ///< handling, see draft.cpp
+    int harsh = 0;        ///< articles whose label says Danger
     double titrant_mol = 0;
     double total_mol = 0;
 

@@ -329,6 +329,11 @@ void plan_to_ph(Plan& plan, const Stockroom& stockroom, const Preparation& fixed
 /// A recipe without a pH target: everything is weighed as the label says.
 void plan_as_written(Plan& plan, const Stockroom& stockroom, const Preparation& fixed, const ActivityModel& model) {
     const auto moles = moles_of(fixed, compose(stockroom.table(), fixed).water);
+    if (!plan.request.constraints.totals.empty()) {
+        throw Error(ErrorKind::input, "missing_ph",
+                    "an ion's total is held beside a buffer at its pH, and the label has none", "constraints",
+                    "write the salt's amount on the label");
+    }
     auto additives = additive_ingredients(stockroom, plan.request, moles);
     if (!additives) {
         throw Shortfall(stockroom, plan.request, fixed, {}, model).explain(true);

@@ -172,10 +172,12 @@ std::string_view purpose_code(Purpose purpose) {
 }
 
 ordered_json article_json(const Reagent& reagent) {
+    // A solution of several reagents has neither formula nor molar mass.
+    const bool substance = reagent.molar_mass_g_per_mol > 0;
     return {{"reagent", reagent.name},
-            {"formula", reagent.formula},
+            {"formula", substance ? ordered_json(reagent.formula) : ordered_json(nullptr)},
             {"cas", reagent.cas.empty() ? ordered_json(nullptr) : ordered_json(reagent.cas)},
-            {"molar_mass_g_per_mol", reagent.molar_mass_g_per_mol}};
+            {"molar_mass_g_per_mol", substance ? ordered_json(reagent.molar_mass_g_per_mol) : ordered_json(nullptr)}};
 }
 
 ordered_json text_or_null(const std::string& text) {

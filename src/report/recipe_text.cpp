@@ -132,6 +132,13 @@ std::string with_uncertainty(const Prediction& predicted) {
     return fmt::format("pH {} ± {:.2f}", ph_text(predicted.ph), predicted.uncertainty.expanded_k2);
 }
 
+std::string rounding_words(const Rounding& rounding, const Table& table) {
+    const std::string ph =
+        std::abs(rounding.ph) < 0.0005 ? std::string("pH unchanged") : fmt::format("pH {:+.3f}", rounding.ph);
+    return fmt::format("{}; {} {:+.2f} % at most", ph, table.reagents[rounding.largest_reagent].name,
+                       100 * rounding.largest_relative);
+}
+
 void result(Page& page, const Plan& plan, const Table& table) {
     const Prediction& predicted = plan.predicted;
     page.heading(plan.request.strength != 1 ? fmt::format("IN USE, DILUTED {:g} TIMES, AT {}", plan.request.strength,
@@ -143,10 +150,7 @@ void result(Page& page, const Plan& plan, const Table& table) {
     page.row(result_columns, {"", "buffer value", molality_text(predicted.buffer_value) + " per pH"});
     page.row(result_columns, {"", "osmolality, sum of particles", osmolality_text(predicted.particles)});
     if (plan.rounding) {
-        page.row(result_columns, {"", "rounding",
-                                  fmt::format("pH {:+.3f}; {:+.2f} % of {} at most", plan.rounding->ph,
-                                              100 * plan.rounding->largest_relative,
-                                              table.reagents[plan.rounding->largest_reagent].name)});
+        page.row(result_columns, {"", "rounding to balance and glassware", rounding_words(*plan.rounding, table)});
     }
     for (const CounterIonChoice& choice : plan.counter_ions) {
         page.row(result_columns, {"", fmt::format("counter-ion of {}", name_of(table, choice.system)),
