@@ -90,7 +90,7 @@ constexpr Case cases[] = {
     {"electrode_tris", "50 mM Tris, pH 8", "50 mM HEPES, pH 7.4"},
     {"electrode_low_ionic_strength", "1 mM sodium phosphate, pH 7", "50 mM sodium phosphate, pH 7"},
     {"warms_up", "1 M Tris-HCl, pH 8", "50 mM Tris-HCl, pH 8"},
-    {"warms_up_much", "3 M sodium acetate, pH 5.2", "0.3 M sodium acetate, pH 5.2"},
+    {"warms_up_much", "2 M Tris-HCl, pH 7.5", "50 mM Tris-HCl, pH 8"},
     {"add_last_reductant", "50 mM Tris, 1 mM DTT, pH 8", "50 mM Tris, pH 8"},
     {"tcep_with_phosphate", "50 mM sodium phosphate, 1 mM TCEP hydrochloride, pH 7",
      "50 mM HEPES, 1 mM TCEP hydrochloride, pH 7"},
