@@ -3,10 +3,12 @@
 #include <functional>
 #include <optional>
 #include <string>
+#include <vector>
 
 #include "carboy/activity.h"
 #include "carboy/constants.h"
 #include "carboy/quantity.h"
+#include "carboy/shelf.h"
 
 namespace CLI {
 class App;
@@ -35,13 +37,25 @@ struct SharedOptions {
 };
 
 /// -o, --format, --color, --quiet, --constants: every command.
-void add_output_options(CLI::App& app, SharedOptions& options);
+void add_output_options(CLI::App& app, SharedOptions& options,
+                        const std::vector<std::string>& formats = {"text", "json"});
 /// --at, --prepare-at, --activity, --explain: commands that compute.
 void add_computing_options(CLI::App& app, SharedOptions& options);
 
 /// The bundled table, with the user's file laid over it when one is given; what it changed is told on standard error
 /// unless quiet. Throws Error (file or data).
 Table table_for(const SharedOptions& options);
+
+/// What is on the shelf, as typed.
+struct ShelfOptions {
+    std::string shelf_file;
+    std::vector<std::string> stocks;
+    std::string today;
+};
+/// --shelf, --stock, --on.
+void add_shelf_options(CLI::App& app, ShelfOptions& options);
+/// The shelf asked for; none when no option names one. Throws Error (file, data or input).
+std::optional<Shelf> shelf_for(const ShelfOptions& options, const Table& table, const ActivityModel& model);
 
 /// One command: its options are declared on a CLI::App, and it runs later.
 using Action = std::function<int()>;

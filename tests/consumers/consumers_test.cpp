@@ -85,6 +85,21 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
         const auto run = run_carboy({"recipe", label, "--volume", "1L", "--format", "json"});
         add("error.schema.json", json::parse(run.err));
     }
+    const std::string shelf = std::string(CARBOY_SOURCE_DIR) + "/examples/saltmarsh/shelf.json";
+    add("shelf.schema.json", json::parse(carboy::test::project_file("examples/saltmarsh/shelf.json")));
+    for (const std::vector<std::string>& more : {std::vector<std::string>{"--shelf", shelf},
+                                                 {"--balance", "1 mg"},
+                                                 {"--balance", "0.1 g", "--shelf", shelf},
+                                                 {"--route", "stocks"},
+                                                 {"--stock", "1 M Tris-HCl, pH 8"},
+                                                 {"--hold", "Na+ = 0.2 M"}}) {
+        std::vector<std::string> arguments{"recipe", "50 mM Tris-HCl, 0.2 mM EDTA, pH 8", "--volume", "200 mL"};
+        arguments.insert(arguments.end(), more.begin(), more.end());
+        add("recipe.schema.json", output_of(arguments));
+    }
+    add("series.schema.json", output_of({"series", "50 mM sodium phosphate, 5 mM EDTA", "--ph", "6:8:0.5"}));
+    add("series.schema.json",
+        output_of({"series", "20 mM HEPES-KOH, ionic strength 0.1 mol/kg", "--ph", "7:8", "--at", "4 C"}));
     add("request.schema.json", json::parse(carboy::test::project_file("examples/saltmarsh/request.json")));
     add("constants.schema.json", json::parse(carboy::test::project_file("examples/saltmarsh/own-constants.json")));
     for (const auto& file : std::filesystem::directory_iterator(std::string(CARBOY_DATA_DIR) + "/constants")) {
