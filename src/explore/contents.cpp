@@ -1,8 +1,4 @@
-<<<<<<<< HEAD:src/explore/vessel_content.cpp
-#include "explore/vessel_content.h"
-========
 #include "explore/contents.h"
->>>>>>>> adjust:src/explore/contents.cpp
 
 #include <algorithm>
 #include <cmath>
@@ -41,34 +37,20 @@ std::optional<Titrant> bringing(const Table& table, ComponentId ion) {
 
 }  // namespace
 
-<<<<<<<< HEAD:src/explore/vessel_content.cpp
-Preparation VesselContent::with(const Table& table, const Titrant& titrant, Amount amount) const {
-========
 Preparation Contents::with(const Table& table, const Titrant& titrant, Amount amount) const {
->>>>>>>> adjust:src/explore/contents.cpp
     Preparation then = present;
     then.filled_to = *present.filled_to + volume_added(table, titrant, amount);
     then.portions.push_back({titrant.reagent, amount, std::nullopt});
     return then;
 }
 
-<<<<<<<< HEAD:src/explore/vessel_content.cpp
-Preparation VesselContent::finished(const Table& table, const Titrant& titrant, Amount amount) const {
-========
 Preparation Contents::finished(const Table& table, const Titrant& titrant, Amount amount) const {
->>>>>>>> adjust:src/explore/contents.cpp
     Preparation then = with(table, titrant, amount);
     then.filled_to = std::max(*then.filled_to, mark);
     then.portions.insert(then.portions.end(), to_come.begin(), to_come.end());
     return then;
 }
 
-<<<<<<<< HEAD:src/explore/vessel_content.cpp
-VesselContent planned_vessel(const Table& table, const Plan& plan, std::optional<Volume> not_filled) {
-    VesselContent vessel;
-    vessel.mark = plan.request.volume;
-    vessel.present = plan.preparation;
-========
 Preparation Contents::in_use(const Table& table, const Titrant& titrant, Amount amount) const {
     Preparation then = finished(table, titrant, amount);
     then.filled_to = strength * *then.filled_to;
@@ -80,7 +62,6 @@ Contents planned_contents(const Table& table, const Plan& plan, std::optional<Vo
     contents.mark = plan.request.volume;
     contents.strength = plan.request.strength;
     contents.present = plan.preparation;
->>>>>>>> adjust:src/explore/contents.cpp
     if (not_filled) {
         contents.present.filled_to = not_filled;
         contents.present.portions.clear();

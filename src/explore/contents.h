@@ -10,11 +10,7 @@
 namespace carboy {
 
 /// What stands on the bench: what is in it now, what is still to go in, and the mark it is filled to in the end.
-<<<<<<<< HEAD:src/explore/vessel_content.h
-struct VesselContent {
-========
 struct Contents {
->>>>>>>> adjust:src/explore/contents.h
     Preparation present;           ///< at the bench temperature, in its present volume
     std::vector<Portion> to_come;  ///< goes in after the pH is set (azide and its like)
     Volume mark;
@@ -29,11 +25,7 @@ struct Contents {
 };
 
 /// The batch as the recipe makes it.
-<<<<<<<< HEAD:src/explore/vessel_content.h
-VesselContent planned_vessel(const Table& table, const Plan& plan, std::optional<Volume> not_filled);
-========
 Contents planned_contents(const Table& table, const Plan& plan, std::optional<Volume> not_filled);
->>>>>>>> adjust:src/explore/contents.h
 
 /// The contents as they were before the titrant: in the volume that the recipe dissolves in, without what goes in last.
 Preparation before_titrant(const Table& table, const Plan& plan, const Preparation& present);
