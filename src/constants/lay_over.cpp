@@ -54,7 +54,8 @@ ConstantsOverlay lay_over(const Table& base, const std::vector<ConstantsDocument
     for (const auto section :
          {&TableBuilder::read_sources, &TableBuilder::read_elements, &TableBuilder::read_hazards,
           &TableBuilder::read_cautions, &TableBuilder::read_vessels, &TableBuilder::read_spectators,
-          &TableBuilder::read_systems, &TableBuilder::read_reagents, &TableBuilder::read_formulas, &TableBuilder::read_traits, &TableBuilder::read_observations}) {
+          &TableBuilder::read_systems, &TableBuilder::read_reagents, &TableBuilder::read_formulas,
+          &TableBuilder::read_traits, &TableBuilder::read_observations}) {
         for (const DocumentNode& node : nodes) {
             (builder.*section)(node);
         }
