@@ -4,6 +4,7 @@
 #include <memory>
 #include <span>
 #include <string_view>
+#include <vector>
 
 #include "carboy/quantity.h"
 
@@ -154,6 +155,27 @@ struct Vessel {
     Figure reads_to_mL;   ///< finest that can be set; of a one-mark vessel its capacity
 };
 
+/// When an article carries a GHS pictogram. Codes are compared letter by letter.
+struct PictogramRule {
+    std::string_view key;
+    std::string_view code;                         ///< `GHS05`
+    std::string_view name;                         ///< `corrosion`
+    std::span<const std::string_view> statements;  ///< codes of hazard statements, any of which calls for it
+    /// Pictograms and statements of the same article beside which the rule falls away (`GHS06`, `H334`).
+    std::span<const std::string_view> unless;
+    std::uint16_t source;
+    Evidence evidence;
+};
+
+/// A label to print on.
+struct LabelStock {
+    std::string_view name;  ///< `70x36`
+    double width_mm;
+    double height_mm;
+    std::uint16_t source;
+    Evidence evidence;
+};
+
 struct Element {
     std::string_view symbol;
     Figure standard_atomic_weight;
@@ -177,6 +199,8 @@ struct Table {
     std::span<const Element> elements;
     std::span<const HazardStatement> hazards;
     std::span<const Caution> cautions;
+    std::span<const PictogramRule> pictograms;
+    std::span<const LabelStock> label_stock;  ///< the usual one first
     std::span<const Vessel> vessels;
     std::span<const Spectator> spectators;
     std::span<const System> systems;
@@ -197,6 +221,9 @@ const Reagent* find_reagent_by_cas(const Table& table, std::string_view cas);
 
 /// nullptr when no vessel is called so.
 const Vessel* find_vessel(const Table& table, std::string_view name);
+
+/// The pictograms that an article as supplied carries, each code once, in the order of the table.
+std::vector<const PictogramRule*> pictograms_of(const Reagent& reagent, const Table& table);
 
 ComponentId id_of(const Table& table, const System& system);
 ComponentId id_of(const Table& table, const Spectator& spectator);
