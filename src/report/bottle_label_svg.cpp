@@ -116,9 +116,11 @@ void hazards(Markup& svg, const BottleLabel& label, Box box) {
         set(svg, block, {box.x, box.y + box.height - block.height(), box.width, box.height}, false);
         return;
     }
-    const double side = std::clamp(box.height, 7.0, 13.0);
+    // The diamonds leave at least half of the width to the words.
+    const double most = 0.48 * box.width / std::max<double>(1, static_cast<double>(label.pictograms.size()));
+    const double side = std::min({box.height, most, 13.0});
     for (const BottleLabel::Pictogram& sign : label.pictograms) {
-        pictogram(svg, sign, box.x, box.y + box.height - side, side);
+        pictogram(svg, sign, box.x, box.y, side);
         box.x += side + 0.4;
         box.width -= side + 0.4;
     }
@@ -168,9 +170,9 @@ void draw(Markup& svg, const BottleLabel& label, const LabelStock& stock) {
     box = set(svg, fitted(label.ph, beside, 0.13 * stock.height_mm, name.size, 2, true), box, true);
     box.y += 0.4;
     const std::string record =
-        fmt::format("{}   {}   {}", label.volume, dated("Made", label.made), dated("Use by", label.expires));
+        fmt::format("{} · {} · {}", label.volume, dated("Made", label.made), dated("Use by", label.expires));
     box = set(svg, fitted(record, beside, 0.14 * stock.height_mm, 2.6, 1.9, false), box, false);
-    box = set(svg, fitted("Initials ________   Lot ______________", beside, 3, 2.6, 1.9, false), box, false);
+    box = set(svg, fitted("Initials ________ · Lot ______________", beside, 3, 2.6, 1.9, false), box, false);
     const double top = std::max(box.y + 0.8, margin + side + quiet + small * line_height);
     svg.empty("path", {{"d", fmt::format("M{} {}H{}", mm(margin), mm(top), mm(stock.width_mm - margin))},
                        {"stroke", "#000"},

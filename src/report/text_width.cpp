@@ -18,6 +18,12 @@ constexpr std::array<int, 95> widths{278,  278, 355, 556, 556, 889, 667, 191, 33
 constexpr double other_width = 0.6;
 constexpr double bold_factor = 1.07;
 
+/// True for a word that no line should end with: a number before its unit, `pH` and `at` before their number.
+bool leans_on_next(std::string_view word) {
+    return word == "pH" || word == "at" || word == "%" || word == "±" ||
+           word.find_first_not_of("0123456789.") == std::string_view::npos;
+}
+
 }  // namespace
 
 double text_width(std::string_view text, bool bold) {
@@ -35,11 +41,16 @@ double text_width(std::string_view text, bool bold) {
 
 std::vector<std::string> broken_to(std::string_view text, double width, bool bold) {
     std::vector<std::string> lines;
+    std::string word;
     while (!text.empty()) {
         const std::size_t end = std::min(text.find(' '), text.size());
-        const std::string word(text.substr(0, end));
+        word += text.substr(0, end);
+        const bool leans = !word.empty() && leans_on_next(text.substr(0, end)) && end < text.size();
         text.remove_prefix(std::min(end + 1, text.size()));
-        if (word.empty()) {
+        if (leans) {
+            word += ' ';
+        }
+        if (word.empty() || leans) {
             continue;
         }
         if (lines.empty() || text_width(lines.back() + " " + word, bold) > width) {
@@ -47,6 +58,7 @@ std::vector<std::string> broken_to(std::string_view text, double width, bool bol
         } else {
             lines.back() += " " + word;
         }
+        word.clear();
     }
     return lines;
 }
