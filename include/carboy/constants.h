@@ -2,6 +2,7 @@
 
 #include <cstdint>
 #include <memory>
+#include <optional>
 #include <span>
 #include <string_view>
 #include <vector>
@@ -155,6 +156,142 @@ struct Vessel {
     Figure reads_to_mL;   ///< finest that can be set; of a one-mark vessel its capacity
 };
 
+/// Closed range of a figure; NaN leaves an end open.
+struct Range {
+    double from;
+    double to;
+
+    constexpr bool holds(double value) const { return !(value < from) && !(value > to); }
+    constexpr bool open() const { return from != from && to != to; }
+};
+
+/// One bit that stands for a component: a quick way to see that none of a set is in a mixture. Components share bits,
+/// so a common bit proves nothing.
+constexpr std::uint64_t mark_of(ComponentId id) {
+    const unsigned bit = (id.kind == ComponentKind::spectator ? 0U : 29U) + id.index;
+    return std::uint64_t{1} << (bit % 64U);
+}
+
+/// A condition on the composition: together, these components make up so much or more.
+struct Presence {
+    std::span<const ComponentId> any_of;
+    double least_mol_per_kg;
+    std::uint64_t marks;  ///< of `any_of`
+};
+
+/// A species of an ionic product, with its power.
+struct ProductFactor {
+    enum class Of : std::uint8_t { component, hydrogen_ion, hydroxide };
+    Of of;
+    ComponentId component;
+    std::uint8_t species;  ///< index into System::species; 0 for a spectator
+    std::uint8_t power;
+};
+
+/// When a solution is looked at.
+enum class Moment : std::uint8_t { dissolved = 1, titrated = 2, filled = 4, in_use = 8 };
+
+/// What a good colleague says when he sees such a solution, and when he says it. Conditions that are left out hold.
+struct Observation {
+    std::string_view code;
+    std::string_view text;  ///< with places to fill in, such as {pH}; see `observation_places`
+    std::uint8_t weight;    ///< 0 to 100: the heaviest is said first
+    std::uint16_t source;
+    Evidence evidence;
+    double pH_standard_uncertainty;                ///< added to that of the prediction; 0 where the pH is not in doubt
+    std::span<const std::string_view> instead_of;  ///< codes that need not be said beside this one
+
+    // When.
+    bool of_recipe;        ///< concerns the making-up: never said of a mixture alone
+    std::uint8_t moments;  ///< set of Moment; the pH counts at any of them
+    std::span<const Presence> with;
+    std::span<const std::uint16_t> reagents;    ///< one of them is used; none: any
+    std::span<const std::uint16_t> statements;  ///< one of these hazard statements stands on that reagent
+    std::span<const ProductFactor> product;     ///< of activities
+    double log10_product_above;
+    Range pH;
+    Range temperature_C;
+    Range ionic_strength_mol_per_kg;
+    Range buffer_value_mol_per_kg;  ///< without water's own
+    Range pK_distance;              ///< of the nearest pK
+    Range share_of_best_buffering;  ///< buffer value against the best that the concentration asked for could give
+    Range solubility_share;         ///< concentration of a reagent against its solubility in water
+    Range temperature_rise_K;       ///< by the titrant
+    Range titrant_share;            ///< of the final volume
+};
+
+/// The places that a text may have.
+constexpr std::string_view observation_places[] = {
+    "pH",      "temperature", "ionic_strength", "buffer_value", "percent", "subject",
+    "partner", "reagent",     "g_per_L",        "solubility",   "rise"};
+
+/// What a buffer does to an experiment, apart from holding its pH.
+enum class Trait : std::uint8_t {
+    phosphate,
+    carboxylate,
+    amine,           ///< primary or secondary: reacts with aldehydes, isothiocyanates and active esters
+    tertiary_amine,  ///< no N-H to react
+    zwitterion,
+    metal_binding,
+    uv_cutoff,  ///< absorbs below a wavelength
+    volatile_salt,
+    toxic,
+    controlled,
+    cell_use,  ///< customary in cell culture or on living cells
+    radicals_in_light,
+    diol_binding,
+    gas_exchange,
+    short_lived  ///< hydrolyses or oxidises on the shelf
+};
+/// The words used in the data files and on the command line: `phosphate`, `metal-binding`, `uv-cutoff` ...
+std::string_view trait_word(Trait trait);
+/// Empty when there is no such word.
+std::optional<Trait> trait_of(std::string_view word);
+/// All the words, in order.
+std::span<const std::string_view> trait_words();
+
+/// A trait of a system, with its provenance.
+struct Fact {
+    Trait trait;
+    std::uint16_t system;  ///< index into Table::systems
+    bool holds;            ///< false: it is known not to have it
+    double wavelength_nm;  ///< of a UV cut-off, below which it absorbs; NaN for the others
+    std::string_view text;
+    std::uint16_t source;
+    Evidence evidence;
+};
+
+/// What an item of a formula is there for. Without a pH all of them are put together as written.
+enum class FormulaPart : std::uint8_t {
+    added,   ///< goes in as written, whatever the pH
+    buffer,  ///< holds the pH: with a pH, its system in the form that the pH asks for
+    titrant  ///< sets the pH of the formula as written: with a pH it is left out, and its amount follows from the pH
+};
+
+enum class ConcentrationUnit : std::uint8_t;  // concentration.h
+
+/// One reagent of a formula, with its concentration at strength 1.
+struct FormulaItem {
+    std::uint16_t reagent;  ///< index into Table::reagents
+    FormulaPart part;
+    double concentration;    ///< in mol/L, g/L or % v/v
+    ConcentrationUnit unit;  ///< mol_per_L, g_per_L or percent_v_v
+    /// Of a buffer: what it is brought to pH with.
+    bool has_counter_ion;
+    ComponentId counter_ion;
+};
+
+/// A mixture that the trade knows by name, such as phosphate-buffered saline, at its working strength.
+struct NamedFormula {
+    std::string_view name;
+    std::span<const std::string_view> names;
+    std::span<const FormulaItem> items;
+    Figure ph;  ///< at working strength and 25 °C, taken when the label gives none; unknown: as written
+    std::uint16_t source;
+    Evidence evidence;
+    std::string_view note;
+};
+
 /// When an article carries a GHS pictogram. Codes are compared letter by letter.
 struct PictogramRule {
     std::string_view key;
@@ -205,12 +342,18 @@ struct Table {
     std::span<const Spectator> spectators;
     std::span<const System> systems;
     std::span<const Reagent> reagents;
+    std::span<const Fact> facts;
+    std::span<const NamedFormula> formulas;
     std::span<const NameEntry> names;
+    std::span<const Observation> observations;
     std::shared_ptr<const void> owner;
 };
 
 /// The table that is part of the program.
 const Table& bundled_table();
+
+/// Finds a formula by any of its names: `PBS`, `phosphate-buffered saline`; nullptr when there is none.
+const NamedFormula* find_named_formula(const Table& table, std::string_view name);
 
 /// Finds an entry of one kind by any of its names; spelling is folded first. nullptr when there is none.
 const System* find_system(const Table& table, std::string_view name);
@@ -221,8 +364,10 @@ const Reagent* find_reagent_by_cas(const Table& table, std::string_view cas);
 
 /// nullptr when no vessel is called so.
 const Vessel* find_vessel(const Table& table, std::string_view name);
+/// What the table knows of a trait of a system; nullptr when it says nothing.
+const Fact* find_fact(const Table& table, std::uint16_t system, Trait trait);
 
-/// The pictograms that an article as supplied carries, each code once, in the order of the table.
+/// The pictograms that an article as supplied carries, each code once, in the order of the codes.
 std::vector<const PictogramRule*> pictograms_of(const Reagent& reagent, const Table& table);
 
 ComponentId id_of(const Table& table, const System& system);

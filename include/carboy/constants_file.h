@@ -17,7 +17,7 @@ struct ConstantsFault {
 
 /// One entry that a document adds or replaces.
 struct ConstantsChange {
-    std::string kind;  ///< `system`, `reagent`, `spectator`, `source`, `element`, `hazard`, `caution`
+    std::string kind;  ///< `system`, `reagent`, `spectator`, `source`, `element`, `hazard`, `caution`, `trait`
     std::string name;
     bool replaced = false;
 };

@@ -35,6 +35,9 @@ struct Label {
     std::optional<PH> ph;
     std::optional<Temperature> ph_at;
     std::optional<IonicStrengthTarget> ionic_strength;
+    /// How many times the working strength the bottle is, by its formula (`10x PBS`); never below 1, since what is made
+    /// weaker than the formula is used as it is.
+    double strength = 1;
 };
 Label read_label(std::string_view line, const Table& table, std::string_view where = "label");
 
@@ -55,6 +58,8 @@ std::optional<NamedBuffer> read_buffer_name(std::string_view text, const Table& 
 std::vector<std::string> nearest_names(std::string_view text, const Table& table, std::size_t at_most = 3);
 /// The same for a label, where a misspelt buffer may carry its counter-ion: `Trs-HCl` is near `Tris-HCl`.
 std::vector<std::string> nearest_buffer_names(std::string_view text, const Table& table, std::size_t at_most = 3);
+/// The same among the names of formulas.
+std::vector<std::string> nearest_formulas(std::string_view text, const Table& table, std::size_t at_most = 3);
 /// The same over a list of words.
 std::vector<std::string> nearest_words(std::string_view text, const std::vector<std::string>& words,
                                        std::size_t at_most = 1);

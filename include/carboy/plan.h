@@ -98,6 +98,7 @@ struct Plan {
     std::vector<Measurement> measure;  ///< the titrant last
     Volume start_with;                 ///< water to begin with
     Volume dissolve_in;                ///< volume after everything but the titrant
+    double temperature_rise_K = 0;     ///< of the vessel, if the titrant went in at once; 0 without a titrant
     std::vector<Reading> readings;     ///< in order of the work, all at `Request::prepare_at`
     Preparation preparation;           ///< the same amounts, as the forward calculation takes them
     std::vector<ComponentId> volume_neglected;
@@ -107,7 +108,7 @@ struct Plan {
     std::optional<Rounding> rounding;
     std::vector<Way> ways;          ///< the routes ranked, the chosen one first; empty when a route was asked for
     std::string shelf_sha256;       ///< of the shelf it was made from; empty without one
-    std::vector<Warning> warnings;  ///< of the recipe as a whole; `predicted` has its own
+    std::vector<Warning> warnings;  ///< of the making-up and those of `predicted`, each once, the heaviest first
 };
 
 /// Finds the best recipe. Every route is the same small linear problem (see DEVELOPERS.md) with other columns allowed.

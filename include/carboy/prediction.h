@@ -33,6 +33,7 @@ struct UsedConstant {
 
 /// All that is said of a mixture at one temperature.
 struct Prediction {
+    Mixture mixture;  ///< what it is a prediction of
     Temperature temperature;
     PH ph;
     Molality ionic_strength;

@@ -10,6 +10,9 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared);
 Action declare_predict(CLI::App& app, SharedOptions*& shared);
 Action declare_series(CLI::App& app, SharedOptions*& shared);
 Action declare_shelf(CLI::App& app, SharedOptions*& shared);
+Action declare_adjust(CLI::App& app, SharedOptions*& shared);
+Action declare_select(CLI::App& app, SharedOptions*& shared);
+Action declare_fit(CLI::App& app, SharedOptions*& shared);
 Action declare_constants(CLI::App& app, SharedOptions*& shared);
 
 }  // namespace carboy::cli

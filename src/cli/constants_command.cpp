@@ -22,6 +22,8 @@ Examples:
   carboy constants list
   carboy constants list reagents
   carboy constants show HEPES
+  carboy constants list formulas
+  carboy constants show PBS
   carboy constants show 7782-85-6 --format json
   carboy constants check own-constants.json
   carboy constants sources
@@ -43,9 +45,10 @@ void write(const Options& options, const nlohmann::ordered_json& record, const s
 
 int list(const Options& options) {
     const Table table = table_for(options.shared);
-    const Listing listing = options.listing == "reagents" ? Listing::reagents
-                            : options.listing == "ions"   ? Listing::ions
-                                                          : Listing::systems;
+    const Listing listing = options.listing == "reagents"   ? Listing::reagents
+                            : options.listing == "ions"     ? Listing::ions
+                            : options.listing == "formulas" ? Listing::formulas
+                                                            : Listing::systems;
     if (options.shared.json()) {
         write(options, constants_list_json(table, listing), {});
     } else {
@@ -58,7 +61,10 @@ int show(const Options& options) {
     const Table table = table_for(options.shared);
     const std::string text = constants_entry_text(table, options.name, options.shared.colour());
     if (text.empty()) {
-        const auto near = nearest_names(options.name, table, 3);
+        auto near = nearest_names(options.name, table, 3);
+        for (const std::string& formula : nearest_formulas(options.name, table, 1)) {
+            near.push_back(formula);
+        }
         std::string help = "'carboy constants list' and 'carboy constants list reagents' show every name";
         if (!near.empty()) {
             help = fmt::format("did you mean {}? {}", fmt::join(near, ", "), help);
@@ -131,12 +137,12 @@ Action declare_constants(CLI::App& app, SharedOptions*& shared) {
         sub->callback([action, run] { *action = run; });
         return sub;
     };
-    declare("list", "List systems, reagents or ions", list)
-        ->add_option("what", options->listing, "systems, reagents or ions")
-        ->check(CLI::IsMember({"systems", "reagents", "ions"}))
+    declare("list", "List systems, reagents, ions or formulas", list)
+        ->add_option("what", options->listing, "systems, reagents, ions or formulas")
+        ->check(CLI::IsMember({"systems", "reagents", "ions", "formulas"}))
         ->capture_default_str();
     declare("show", "Show all that is held under a name", show)
-        ->add_option("name", options->name, "System, ion or reagent")
+        ->add_option("name", options->name, "System, ion, reagent or formula")
         ->required()
         ->type_name("NAME");
     declare("check", "Check a file to lay over: every fault", check)

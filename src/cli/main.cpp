@@ -37,6 +37,9 @@ constexpr std::array commands{
     Command{"predict", "The pH and the species of a mixture as made", carboy::cli::declare_predict},
     Command{"series", "A set of buffers across pH, from the same stocks", carboy::cli::declare_series},
     Command{"shelf", "Check what is on the shelf, and book it off", carboy::cli::declare_shelf},
+    Command{"adjust", "What to do with a batch whose pH is off", carboy::cli::declare_adjust},
+    Command{"select", "Rank the buffers for a job, with the reasons", carboy::cli::declare_select},
+    Command{"fit", "Constants and strengths from your own readings", carboy::cli::declare_fit},
     Command{"constants", "Look into the constants, or check a file of them", carboy::cli::declare_constants}};
 
 constexpr auto overview = R"(

@@ -41,7 +41,9 @@ const ActivityModel& SharedOptions::activity_model() const {
 }
 
 void add_output_options(CLI::App& app, SharedOptions& options, const std::vector<std::string>& formats) {
-    app.add_option("--format", options.format, fmt::format("{}", fmt::join(formats, ", ")))
+    const bool two = formats.size() == 2;
+    app.add_option("--format", options.format,
+                   two ? "text for people, json for programs" : fmt::format("{}", fmt::join(formats, ", ")))
         ->check(CLI::IsMember(formats))
         ->type_name("FORMAT")
         ->capture_default_str();

@@ -36,7 +36,7 @@ struct SharedOptions {
     const ActivityModel& activity_model() const;
 };
 
-/// -o, --format, --color, --quiet, --constants: every command.
+/// -o, --format, --color, --quiet, --constants: every command. `formats` are those the command can write.
 void add_output_options(CLI::App& app, SharedOptions& options,
                         const std::vector<std::string>& formats = {"text", "json"});
 /// --at, --prepare-at, --activity, --explain: commands that compute.

@@ -136,6 +136,40 @@ std::string vessel(Arrays& arrays, const Vessel& v) {
                        figure(v.reads_to_mL));
 }
 
+std::string range(const Range& r) {
+    return fmt::format("{{{}, {}}}", number(r.from), number(r.to));
+}
+
+std::string observation(Arrays& arrays, const Observation& o) {
+    const std::string with = arrays.of("Presence", o.with, [&](const Presence& p) {
+        return fmt::format("{{{}, {}, {}U}}", arrays.of("ComponentId", p.any_of, component), number(p.least_mol_per_kg),
+                           p.marks);
+    });
+    const std::string product = arrays.of("ProductFactor", o.product, [](const ProductFactor& f) {
+        return fmt::format("{{ProductFactor::Of{{{}}}, {}, {}, {}}}", static_cast<int>(f.of), component(f.component),
+                           f.species, f.power);
+    });
+    return fmt::format(
+        "{{{}, {}, {}, {}, Evidence{{{}}}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, "
+        "{}, {}}}",
+        quoted(o.code), quoted(o.text), o.weight, o.source, static_cast<int>(o.evidence),
+        number(o.pH_standard_uncertainty), words(arrays, o.instead_of), o.of_recipe, o.moments, with,
+        indices(arrays, o.reagents), indices(arrays, o.statements), product, number(o.log10_product_above), range(o.pH),
+        range(o.temperature_C), range(o.ionic_strength_mol_per_kg), range(o.buffer_value_mol_per_kg),
+        range(o.pK_distance), range(o.share_of_best_buffering), range(o.solubility_share), range(o.temperature_rise_K),
+        range(o.titrant_share));
+}
+
+std::string formula(Arrays& arrays, const NamedFormula& f) {
+    const std::string items = arrays.of("FormulaItem", f.items, [](const FormulaItem& item) {
+        return fmt::format("{{{}, FormulaPart{{{}}}, {}, ConcentrationUnit{{{}}}, {}, {}}}", item.reagent,
+                           static_cast<int>(item.part), number(item.concentration), static_cast<int>(item.unit),
+                           item.has_counter_ion, component(item.counter_ion));
+    });
+    return fmt::format("{{{}, {}, {}, {}, {}, Evidence{{{}}}, {}}}", quoted(f.name), words(arrays, f.names), items,
+                       figure(f.ph), f.source, static_cast<int>(f.evidence), quoted(f.note));
+}
+
 std::string source_code(const Table& table, std::string_view version) {
     Arrays arrays;
     const auto noted = [](const auto& item, std::string_view first, std::string_view second) {
@@ -167,19 +201,28 @@ std::string source_code(const Table& table, std::string_view version) {
     const std::string systems = arrays.of("System", table.systems, [&](const System& s) { return system(arrays, s); });
     const std::string reagents =
         arrays.of("Reagent", table.reagents, [&](const Reagent& r) { return reagent(arrays, r); });
+    const std::string facts = arrays.of("Fact", table.facts, [](const Fact& f) {
+        return fmt::format("{{Trait{{{}}}, {}, {}, {}, {}, {}, Evidence{{{}}}}}", static_cast<int>(f.trait), f.system,
+                           f.holds, number(f.wavelength_nm), quoted(f.text), f.source, static_cast<int>(f.evidence));
+    });
+    const std::string formulas =
+        arrays.of("NamedFormula", table.formulas, [&](const NamedFormula& f) { return formula(arrays, f); });
     const std::string names = arrays.of("NameEntry", table.names, [](const NameEntry& n) {
         return fmt::format("{{{}, EntryKind{{{}}}, {}}}", quoted(n.key), static_cast<int>(n.kind), n.index);
     });
+    const std::string observations =
+        arrays.of("Observation", table.observations, [&](const Observation& o) { return observation(arrays, o); });
     return fmt::format(
         "// Made from data/constants by carboy_embed; do not edit.\n"
         "#include <limits>\n\n#include \"carboy/constants.h\"\n\n"
         "namespace carboy {{\nnamespace {{\nusing namespace std::literals;\n"
         "constexpr double none = std::numeric_limits<double>::quiet_NaN();\n{}}}  // namespace\n\n"
         "const Table& bundled_table() {{\n"
-        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
+        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, "
+        "nullptr}};\n"
         "    return table;\n}}\n\n}}  // namespace carboy\n",
         arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, pictograms,
-        label_stock, vessels, spectators, systems, reagents, names);
+        label_stock, vessels, spectators, systems, reagents, facts, formulas, names, observations);
 }
 
 int embed(int argc, char** argv) {

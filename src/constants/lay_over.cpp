@@ -16,7 +16,8 @@ constexpr auto format_word = "carboy-constants/1";
 
 bool head_is_sound(const DocumentNode& node) {
     if (!node.is_object_with({"schema", "sources", "elements", "hazards", "cautions", "pictograms", "label_stock",
-                              "vessels", "spectators", "systems", "reagents", "note"})) {
+                              "vessels", "spectators", "systems", "reagents", "formulas", "traits", "observations",
+                              "note"})) {
         return false;
     }
     if (!node.has("schema")) {
@@ -55,7 +56,8 @@ ConstantsOverlay lay_over(const Table& base, const std::vector<ConstantsDocument
          {&TableBuilder::read_sources, &TableBuilder::read_elements, &TableBuilder::read_hazards,
           &TableBuilder::read_cautions, &TableBuilder::read_pictograms, &TableBuilder::read_label_stock,
           &TableBuilder::read_vessels, &TableBuilder::read_spectators, &TableBuilder::read_systems,
-          &TableBuilder::read_reagents}) {
+          &TableBuilder::read_reagents, &TableBuilder::read_formulas, &TableBuilder::read_traits,
+          &TableBuilder::read_observations}) {
         for (const DocumentNode& node : nodes) {
             (builder.*section)(node);
         }

@@ -71,6 +71,17 @@ const Vessel* find_vessel(const Table& table, std::string_view name) {
     return nullptr;
 }
 
+const NamedFormula* find_named_formula(const Table& table, std::string_view name) {
+    const std::string folded = fold_name(name);
+    const auto has_name = [&](const NamedFormula& formula) {
+        return fold_name(formula.name) == folded ||
+               std::any_of(formula.names.begin(), formula.names.end(),
+                           [&](std::string_view other) { return fold_name(other) == folded; });
+    };
+    const auto found = std::find_if(table.formulas.begin(), table.formulas.end(), has_name);
+    return found == table.formulas.end() ? nullptr : &*found;
+}
+
 ComponentId id_of(const Table& table, const System& system) {
     return {ComponentKind::system, static_cast<std::uint16_t>(&system - table.systems.data())};
 }

@@ -34,7 +34,10 @@ TableBuilder::TableBuilder(const Table& base)
       vessels_(copied(base.vessels)),
       spectators_(copied(base.spectators)),
       systems_(copied(base.systems)),
-      reagents_(copied(base.reagents)) {
+      reagents_(copied(base.reagents)),
+      formulas_(copied(base.formulas)),
+      facts_(copied(base.facts)),
+      observations_(copied(base.observations)) {
     arena_->base_owner = base.owner;
 }
 
@@ -271,7 +274,10 @@ Table TableBuilder::finish(std::string version, std::string sha256) {
     table.spectators = keep_array(std::move(spectators_));
     table.systems = keep_array(std::move(systems_));
     table.reagents = keep_array(std::move(reagents_));
+    table.facts = keep_array(std::move(facts_));
+    table.formulas = keep_array(std::move(formulas_));
     table.names = keep_array(std::move(names_));
+    table.observations = keep_array(std::move(observations_));
     table.owner = arena_;
     return table;
 }

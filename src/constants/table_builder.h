@@ -33,6 +33,9 @@ public:
     void read_spectators(const DocumentNode& document);
     void read_systems(const DocumentNode& document);
     void read_reagents(const DocumentNode& document);
+    void read_observations(const DocumentNode& document);
+    void read_traits(const DocumentNode& document);
+    void read_formulas(const DocumentNode& document);
 
     /// Resolves what is left and checks the whole; faults of untouched entries carry the entry's name as path.
     Table finish(std::string version, std::string sha256);
@@ -61,10 +64,17 @@ private:
     Figure read_figure(const DocumentNode& parent, const char* key, double lowest, double highest,
                        Provenance inherited);
     std::span<const std::uint16_t> read_cautions_of(const DocumentNode& entry);
+    Presence read_presence(const DocumentNode& node);
+    void read_product(const DocumentNode& node, Observation& observation);
+    std::optional<ProductFactor> product_factor(const DocumentNode& at, const std::string& name) const;
+    void read_when(const DocumentNode& node, Observation& observation);
     Step read_step(const DocumentNode& node);
     static void read_expression(const DocumentNode& node, Step& step);
     Ghs read_ghs(const DocumentNode& entry);
+    void place_fact(const Fact& fact);
     void read_strength(const DocumentNode& entry, Reagent& reagent);
+    std::optional<FormulaItem> read_formula_item(const DocumentNode& node);
+    void check_formula_names(const DocumentNode& node, const NamedFormula& formula);
     static std::optional<Formula> formula_at(const DocumentNode& node, const std::string& text);
     double molar_mass(const DocumentNode& node, const Formula& formula);
 
@@ -88,6 +98,9 @@ private:
     std::vector<Spectator> spectators_;
     std::vector<System> systems_;
     std::vector<Reagent> reagents_;
+    std::vector<Observation> observations_;
+    std::vector<Fact> facts_;
+    std::vector<NamedFormula> formulas_;
     std::vector<NameEntry> names_;
     std::map<std::size_t, std::vector<std::string>> counter_ion_names_;  ///< by system, still to be resolved
     std::map<std::string, std::string> paths_;                           ///< kind and name -> JSON path, of new entries

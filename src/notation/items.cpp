@@ -71,19 +71,31 @@ std::size_t locants_length(std::string_view text, std::size_t& commas) {
     return word_follows || after.starts_with(')') ? length : 0;
 }
 
-/// Bytes of the separator between items at `at`, 0 when there is none.
+/// Bytes of the spaces at the front.
+std::size_t spaces_length(std::string_view text) {
+    std::size_t length = 0;
+    while (const std::size_t space = space_length(text.substr(length))) {
+        length += space;
+    }
+    return length;
+}
+
+/// Bytes of the separator between items at `at`, 0 when there is none. `and` divides only before an amount or a pH:
+/// `saline with calcium and magnesium` is one name.
 std::size_t separator_length(std::string_view text, std::size_t at, bool after_space) {
-    if (text[at] == ',' || text[at] == ';') {
+    const std::string_view rest = text.substr(at);
+    if (rest.front() == ',' || rest.front() == ';') {
         return 1;
     }
-    for (const std::string_view word : {"+", "and"}) {
-        const std::string_view rest = text.substr(at);
-        if (after_space && lower_case(rest.substr(0, word.size())) == word && rest.size() > word.size() &&
-            space_length(rest.substr(word.size())) > 0) {
-            return word.size();
-        }
+    constexpr std::string_view and_word = "and";
+    const std::size_t word = rest.front() == '+' ? 1 : lower_case(rest.substr(0, and_word.size())) == and_word ? 3 : 0;
+    const std::string_view after = rest.substr(word);
+    const std::size_t spaces = spaces_length(after);
+    if (word == 0 || !after_space || spaces == 0) {
+        return 0;
     }
-    return 0;
+    const std::string next = lower_case(after.substr(spaces, 2));
+    return word == 1 || next == "ph" || (!next.empty() && (is_digit(next.front()) || next.front() == '.')) ? word : 0;
 }
 
 }  // namespace

@@ -1,12 +1,15 @@
+#include <algorithm>
 #include <optional>
 #include <string>
 #include <vector>
 
 #include <fmt/format.h>
+#include <fmt/ranges.h>
 
 #include "carboy/notation.h"
 
 #include "notation/buffer_name.h"
+#include "notation/formula_item.h"
 #include "notation/ingredient.h"
 #include "notation/items.h"
 #include "notation/line.h"
@@ -77,7 +80,15 @@ private:
     }
 
     void add_ingredient(Part item) {
+        if (const NamedFormula* formula = formula_named(table_, text_of(line_, item))) {
+            take_formula(*formula, 1, item);
+            return;
+        }
         const Ingredient ingredient = read_ingredient(line_, item, table_, item_form);
+        if (ingredient.quantity.kind == QuantityKind::strength) {
+            take_formula(formula_at(ingredient.name), times(ingredient.quantity), item);
+            return;
+        }
         check_quantity(ingredient.quantity);
         const std::string name = lower_case(text_of(line_, ingredient.name));
         if (const auto at = name.find(" at "); at != std::string::npos) {
@@ -88,15 +99,41 @@ private:
         resolve(ingredient);
     }
 
+    const NamedFormula& formula_at(Part name) const {
+        if (const NamedFormula* formula = formula_named(table_, text_of(line_, name))) {
+            return *formula;
+        }
+        expect_no_missing_comma(line_, name);
+        const auto near = nearest_formulas(text_of(line_, name), table_);
+        line_.fail("unknown_formula", fmt::format("the table has no formula called '{}'", text_of(line_, name)),
+                   name.begin, name.end,
+                   near.empty() ? "'carboy constants list formulas' shows every formula; else write out what is in it"
+                                : fmt::format("did you mean {}?", fmt::join(near, ", ")));
+    }
+
+    double times(const ReadQuantity& strength) const {
+        constexpr double strongest = 1000;
+        if (!(strength.value > 0 && strength.value <= strongest)) {
+            line_.fail("number_out_of_range",
+                       fmt::format("'{}' is no strength of a stock", text_of(line_, strength.whole)),
+                       strength.whole.begin, strength.whole.end, "write it like 10x");
+        }
+        return strength.value;
+    }
+
+    void take_formula(const NamedFormula& formula, double times, Part item) {
+        if (formula_ != nullptr) {
+            line_.fail("duplicate_item", "a second formula stands on the label", item.begin, item.end,
+                       "keep one, and write out what is in the other");
+        }
+        formula_ = &formula;
+        formula_times_ = times;
+        formula_item_ = item;
+        label_.strength = std::max(times, 1.0);
+    }
+
     void check_quantity(const ReadQuantity& quantity) const {
         const std::string_view typed = text_of(line_, quantity.whole);
-        if (quantity.kind == QuantityKind::strength) {
-            line_.fail(
-                "unknown_formula",
-                fmt::format("'{}' is a strength, which belongs to a named formula; this table holds none", typed),
-                quantity.whole.begin, quantity.whole.end,
-                "write out what is in it, as in 10 mM sodium phosphate, 137 mM NaCl, pH 7.4");
-        }
         expect_kind(line_, quantity, item_quantity);
         if (!(quantity.value > 0)) {
             line_.fail("zero_quantity", fmt::format("'{}' is nothing: a concentration must be more than zero", typed),
@@ -188,6 +225,9 @@ private:
 
     /// What only the whole label tells: whether something holds the pH, and whether there is one.
     void settle() {
+        if (formula_ != nullptr) {
+            settle_formula();
+        }
         if (label_.ph && label_.buffers.empty()) {
             promote_addition();
         } else if (!label_.ph && label_.ionic_strength) {
@@ -199,6 +239,21 @@ private:
         if (titrant_) {
             take_titrant();
         }
+    }
+
+    /// The formula's own pH serves where the label has none.
+    void settle_formula() {
+        if (!label_.ph && formula_->ph.known()) {
+            label_.ph = PH(formula_->ph.value);
+            ph_item_ = formula_item_;
+        }
+        try {
+            add_formula(label_, *formula_, formula_times_, titrant_, table_);
+        } catch (const Error& error) {
+            line_.fail(error.code(), error.message(), formula_item_.begin, formula_item_.end, error.help(),
+                       error.kind());
+        }
+        first_buffer_ = first_buffer_.empty() ? formula_item_ : first_buffer_;
     }
 
     /// `3 M sodium acetate` without a pH is the salt dissolved; `50 mM Tris-HCl` without one could be anything.
@@ -282,6 +337,9 @@ private:
     const Table& table_;
     Label label_;
     std::vector<Addition> additions_;  ///< beside label_.additives
+    const NamedFormula* formula_ = nullptr;
+    double formula_times_ = 1;
+    Part formula_item_;
     Part ph_item_;
     Part ionic_strength_item_;
     Part first_buffer_;

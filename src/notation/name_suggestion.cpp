@@ -160,6 +160,15 @@ std::vector<std::string> nearest_buffer_names(std::string_view text, const Table
     return names;
 }
 
+std::vector<std::string> nearest_formulas(std::string_view text, const Table& table, std::size_t at_most) {
+    std::vector<std::string> names;
+    for (const NamedFormula& formula : table.formulas) {
+        names.emplace_back(formula.name);
+        names.insert(names.end(), formula.names.begin(), formula.names.end());
+    }
+    return nearest_words(text, names, at_most);
+}
+
 std::vector<std::string> nearest_words(std::string_view text, const std::vector<std::string>& words,
                                        std::size_t at_most) {
     const std::string typed = fold_name(text);

@@ -303,6 +303,7 @@ Request request_from_label(std::string_view label, const Table& table, std::stri
     request.ph = read.ph;
     request.use_at = read.ph_at.value_or(Temperature{});
     request.ionic_strength = read.ionic_strength;
+    request.strength = read.strength;
     return request;
 }
 

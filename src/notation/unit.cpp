@@ -184,6 +184,13 @@ std::size_t unit_length(std::string_view text) {
         }
         return 1;
     }
+    // `10xPBS`: a capital after the x begins the name.
+    for (const std::string_view times : {"x", "X", "\u00D7"}) {
+        const std::string_view after = text.starts_with(times) ? text.substr(times.size()) : std::string_view();
+        if (!after.empty() && after.front() >= 'A' && after.front() <= 'Z') {
+            return times.size();
+        }
+    }
     std::size_t length = 0;
     bool bracket_open = false;  // of the token's own: a closing one of the line's ends it, as in `(4C)`
     while (length < text.size() && text[length] != ',' && text[length] != ';' &&

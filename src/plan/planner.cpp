@@ -19,6 +19,7 @@
 #include "plan/portioning.h"
 #include "plan/shortfall.h"
 #include "plan/staging.h"
+#include "warning/observe.h"
 
 namespace carboy {
 
@@ -423,6 +424,7 @@ Plan plan_with(const Stockroom& stockroom, const Request& request, const Activit
     }
     stage(plan, table, model);
     warn_of_bottles(plan, stockroom);
+    observe_recipe(plan, table);
     return plan;
 }
 

@@ -6,6 +6,7 @@
 
 #include <fmt/format.h>
 
+#include "carboy/enthalpy.h"
 #include "carboy/equilibrium.h"
 
 namespace carboy {
@@ -22,10 +23,21 @@ namespace {
 // Common practice, no source: nine tenths of the titrant at once, the last tenth in small portions.
 constexpr double at_once = 0.9;
 
-PH reading_of(const Table& table, const Preparation& preparation, const ActivityModel& model) {
-    EquilibriumSolver solver(table, compose(table, preparation).mixture, preparation.filled_at, model);
+/// The vessel at one moment of the work.
+struct Contents {
+    PH ph;
+    double enthalpy_kJ = 0;
+};
+
+Contents contents_of(const Table& table, const Preparation& preparation, const ActivityModel& model) {
+    const Composed composed = compose(table, preparation);
+    EquilibriumSolver solver(table, composed.mixture, preparation.filled_at, model);
     solver.solve();
-    return solver.ph();
+    return {solver.ph(), composed.water.kg() * reaction_enthalpy_kJ_per_kg(table, solver)};
+}
+
+PH reading_of(const Table& table, const Preparation& preparation, const ActivityModel& model) {
+    return contents_of(table, preparation, model).ph;
 }
 
 bool is_titrant(const Plan& plan, std::size_t portion) {
@@ -69,59 +81,6 @@ void choose_volumes(Plan& plan, const Table& table, Volume titrant) {
     plan.start_with = std::max(first_water * (plan.dissolve_in - bulk), Volume{});
 }
 
-/// A buffer far from every pK holds its pH badly; said only where a pH was asked for.
-void warn_of_weak_buffering(Plan& plan) {
-    double total = 0;
-    for (const BufferItem& buffer : plan.request.buffers) {
-        total += buffer.concentration.value;
-    }
-    // Best possible: ln 10 / 4 = 0.576 of the concentration, at pH = pK. Common practice: within 1 pH of a pK, 0.19 of
-    // it.
-    constexpr double one_ph_away = 0.19;
-    const double value = plan.predicted.buffer_value.mol_per_kg();
-    if (total > 0 && value < one_ph_away * total) {
-        plan.warnings.push_back(
-            {"weak_buffering",
-             fmt::format(
-                 "At pH {:.2f} this buffer is more than 1 pH from its pK: its buffer value is {:.2g} mol/kg per pH, "
-                 "{:.0f} % of the best that its concentration allows. Small amounts of acid or base will move it.",
-                 plan.predicted.ph.value(), value, 100 * value / (0.576 * total))});
-    }
-}
-
-/// Below neutral, what gives off a toxic gas with acid does so in the finished solution.
-void warn_of_gas(Plan& plan, const Table& table) {
-    constexpr double neutral = 7.0;
-    const double lowest = std::min(plan.readings.back().ph.value(), plan.predicted.ph.value());
-    for (const std::uint16_t index : reagents_used(plan)) {
-        const Reagent& reagent = table.reagents[index];
-        if (lowest < neutral && goes_in_last(reagent, table)) {
-            plan.warnings.insert(
-                plan.warnings.begin(),
-                {"acid_liberates_gas",
-                 fmt::format(
-                     "DANGER: {} gives off toxic gas with acid, and this solution is at pH {:.2f}. Leave it out or "
-                     "choose another; otherwise only in the fume hood, under supervision.",
-                     reagent.name, lowest)});
-        }
-    }
-}
-
-void warn_of_large_titrant(Plan& plan) {
-    if (plan.measure.empty() || plan.measure.back().purpose != Purpose::titrant) {
-        return;
-    }
-    const Measurement& titrant = plan.measure.back();
-    const double share = titrant.volume / plan.request.volume;
-    if (share > 0.5) {
-        plan.warnings.push_back(
-            {"much_titrant",
-             fmt::format("The titrant makes up {:.0f} % of the final volume. A stronger one, or the route "
-                         "with two salts, leaves more room.",
-                         100 * share)});
-    }
-}
-
 }  // namespace
 
 void stage(Plan& plan, const Table& table, const ActivityModel& model) {
@@ -141,14 +100,24 @@ void stage(Plan& plan, const Table& table, const ActivityModel& model) {
             stage.portions.push_back(plan.preparation.portions[i]);
         }
     }
-    plan.readings.push_back({Stage::dissolved, *stage.filled_to, reading_of(table, stage, model)});
+    const Contents dissolved = contents_of(table, stage, model);
+    plan.readings.push_back({Stage::dissolved, *stage.filled_to, dissolved.ph});
     if (titrated) {
         const Portion all = plan.preparation.portions.back();
         for (const auto& [reached, share] : {std::pair(Stage::nearly, at_once), std::pair(Stage::titrated, 1.0)}) {
             Preparation now = stage;
             now.portions.push_back({all.reagent, share * *all.amount, std::nullopt});
             now.filled_to = plan.dissolve_in + share * titrant;
-            plan.readings.push_back({reached, *now.filled_to, reading_of(table, now, model)});
+            const Contents reached_now = contents_of(table, now, model);
+            plan.readings.push_back({reached, *now.filled_to, reached_now.ph});
+            if (reached == Stage::titrated) {
+                const double brought =
+                    all.amount->mol() *
+                    reaction_enthalpy_kJ_per_mol(table, table.reagents[all.reagent], plan.request.prepare_at);
+                // A litre of solution weighs about a kilogram.
+                plan.temperature_rise_K = temperature_rise_K(dissolved.enthalpy_kJ + brought - reached_now.enthalpy_kJ,
+                                                             Mass::kilograms(now.filled_to->L()));
+            }
         }
     }
     plan.readings.push_back({Stage::filled, total, reading_of(table, plan.preparation, model)});
@@ -156,11 +125,6 @@ void stage(Plan& plan, const Table& table, const ActivityModel& model) {
         Preparation working = plan.preparation;
         working.filled_to = plan.request.strength * total;
         plan.readings.push_back({Stage::diluted, *working.filled_to, reading_of(table, working, model)});
-    }
-    warn_of_gas(plan, table);
-    if (plan.request.ph) {
-        warn_of_weak_buffering(plan);
-        warn_of_large_titrant(plan);
     }
 }
 

@@ -6,6 +6,7 @@
 #include "carboy/prediction.h"
 
 #include "prediction/hand_estimate.h"
+#include "warning/observe.h"
 
 namespace carboy {
 
@@ -23,7 +24,8 @@ void warn_of_ionic_strength(Prediction& prediction, const ActivityModel& model) 
              "Ionic strength {:.2f} mol/kg is above {:g} mol/kg, the range of the {} model. Expect the pH to be off "
              "by up to {:.2f}; trust the meter, or check at working strength after dilution.",
              ionic_strength, model.trusted_to_mol_per_kg(), model.name() == "davies" ? "Davies" : "Debye-Hückel",
-             expanded)});
+             expanded),
+         66});
 }
 
 void warn_of_unknown_temperature_dependence(Prediction& prediction, const Table& table) {
@@ -37,7 +39,8 @@ void warn_of_unknown_temperature_dependence(Prediction& prediction, const Table&
                  fmt::format(
                      "The table does not know how pK{} of {} moves with temperature at {:g} °C; its value at 25 °C "
                      "is used. The pH at {:g} °C is a guess: set it with a meter at that temperature.",
-                     used.step + 1, system.name, prediction.temperature.celsius(), prediction.temperature.celsius())});
+                     used.step + 1, system.name, prediction.temperature.celsius(), prediction.temperature.celsius()),
+                 72});
         }
     }
 }
@@ -49,6 +52,7 @@ Prediction predict(const Table& table, const Mixture& mixture, Temperature tempe
     solver.solve();
 
     Prediction prediction;
+    prediction.mixture = mixture;
     prediction.temperature = temperature;
     prediction.ph = solver.ph();
     prediction.ionic_strength = solver.ionic_strength();
@@ -82,6 +86,7 @@ Prediction predict(const Table& table, const Mixture& mixture, Temperature tempe
     prediction.uncertainty = ph_uncertainty(solver, table, model);
     warn_of_ionic_strength(prediction, model);
     warn_of_unknown_temperature_dependence(prediction, table);
+    observe_mixture(prediction, table);
     return prediction;
 }
 

@@ -86,7 +86,7 @@ void pictogram(Markup& svg, const BottleLabel::Pictogram& sign, double x, double
                {"fill", "#fff"},
                {"stroke", "#c8102e"},
                {"stroke-width", mm(stroke)}});
-    const double size = side * 0.17;
+    const double size = side * 0.18;
     line(svg, sign.code, x + half, y + half + 0.36 * size, size, true, "middle");
     svg.close();
 }

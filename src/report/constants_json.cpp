@@ -2,6 +2,8 @@
 
 #include <cmath>
 
+#include "carboy/concentration.h"
+
 namespace carboy {
 
 using nlohmann::ordered_json;
@@ -34,6 +36,22 @@ ordered_json cautions_json(std::span<const std::uint16_t> cautions, const Table&
     ordered_json list = ordered_json::array();
     for (const std::uint16_t caution : cautions) {
         list.push_back(table.cautions[caution].text);
+    }
+    return list;
+}
+
+ordered_json traits_json(const System& system, const Table& table) {
+    const std::uint16_t index = id_of(table, system).index;
+    ordered_json list = ordered_json::array();
+    for (const Fact& fact : table.facts) {
+        if (fact.system == index) {
+            list.push_back({{"trait", trait_word(fact.trait)},
+                            {"holds", fact.holds},
+                            {"wavelength_nm", number_or_null(fact.wavelength_nm)},
+                            {"text", fact.text},
+                            {"source", table.sources[fact.source].key},
+                            {"evidence", evidence_word(fact.evidence)}});
+        }
     }
     return list;
 }
@@ -77,6 +95,7 @@ ordered_json system_json(const System& system, const Table& table) {
             {"apparent_molar_volume_cm3_per_mol", figure_json(system.apparent_molar_volume_cm3_per_mol, table)},
             {"steps", std::move(steps)},
             {"cautions", cautions_json(system.cautions, table)},
+            {"traits", traits_json(system, table)},
             {"note", system.note}};
 }
 
@@ -129,6 +148,30 @@ ordered_json reagent_json(const Reagent& reagent, const Table& table) {
             {"note", reagent.note}};
 }
 
+ordered_json formula_json(const NamedFormula& formula, const Table& table) {
+    ordered_json items = ordered_json::array();
+    for (const FormulaItem& item : formula.items) {
+        const char* unit = item.unit == ConcentrationUnit::g_per_L       ? "g_per_L"
+                           : item.unit == ConcentrationUnit::percent_v_v ? "percent_v_v"
+                                                                         : "mol_per_L";
+        items.push_back({{"reagent", table.reagents[item.reagent].name},
+                         {unit, item.concentration},
+                         {"part", item.part == FormulaPart::buffer    ? "buffer"
+                                  : item.part == FormulaPart::titrant ? "titrant"
+                                                                      : "added"},
+                         {"counter_ion", item.has_counter_ion ? ordered_json(name_of(table, item.counter_ion))
+                                                              : ordered_json(nullptr)}});
+    }
+    return {{"entry", "formula"},
+            {"name", formula.name},
+            {"names", words_json(formula.names)},
+            {"pH", number_or_null(formula.ph.value)},
+            {"items", std::move(items)},
+            {"source", table.sources[formula.source].key},
+            {"evidence", evidence_word(formula.evidence)},
+            {"note", formula.note}};
+}
+
 ordered_json constants_list_json(const Table& table, Listing listing) {
     ordered_json entries = ordered_json::array();
     if (listing == Listing::systems) {
@@ -138,6 +181,10 @@ ordered_json constants_list_json(const Table& table, Listing listing) {
     } else if (listing == Listing::reagents) {
         for (const Reagent& reagent : table.reagents) {
             entries.push_back(reagent_json(reagent, table));
+        }
+    } else if (listing == Listing::formulas) {
+        for (const NamedFormula& formula : table.formulas) {
+            entries.push_back(formula_json(formula, table));
         }
     } else {
         for (const Spectator& spectator : table.spectators) {
@@ -154,6 +201,9 @@ ordered_json constants_entry_json(const Table& table, std::string_view name) {
     }
     if (const Spectator* spectator = find_spectator(table, name)) {
         entries.push_back(spectator_json(*spectator, table));
+    }
+    if (const NamedFormula* formula = find_named_formula(table, name)) {
+        entries.push_back(formula_json(*formula, table));
     }
     const Reagent* reagent = find_reagent(table, name);
     if (reagent == nullptr) {

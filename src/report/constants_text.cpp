@@ -5,6 +5,8 @@
 
 #include <fmt/format.h>
 
+#include "carboy/concentration.h"
+
 #include "report/figure_text.h"
 #include "report/page.h"
 
@@ -77,6 +79,17 @@ void cautions_text(Page& page, std::span<const std::uint16_t> cautions, const Ta
     }
 }
 
+void traits_text(Page& page, const System& system, const Table& table) {
+    const std::uint16_t index = id_of(table, system).index;
+    for (const Fact& one : table.facts) {
+        if (one.system == index) {
+            fact(page, trait_word(one.trait),
+                 fmt::format("{}{}  {} ({})", one.holds ? "" : "not so: ", one.text, table.sources[one.source].key,
+                             evidence_word(one.evidence)));
+        }
+    }
+}
+
 void system_text(Page& page, const System& system, const Table& table) {
     page.heading(fmt::format("SYSTEM {}", system.name));
     fact(page, "also called", joined(system.names));
@@ -91,6 +104,7 @@ void system_text(Page& page, const System& system, const Table& table) {
     figure_fact(page, "molar volume", system.apparent_molar_volume_cm3_per_mol, "cm³/mol", table);
     fact(page, "note", system.note);
     cautions_text(page, system.cautions, table);
+    traits_text(page, system, table);
     for (std::size_t step = 0; step < system.steps.size(); ++step) {
         step_text(page, system, step, table);
     }
@@ -138,6 +152,34 @@ void reagent_text(Page& page, const Reagent& reagent, const Table& table) {
     fact(page, "note", reagent.note);
 }
 
+std::string formula_amount(const FormulaItem& item) {
+    constexpr double milli = 1000;
+    return item.unit == ConcentrationUnit::g_per_L       ? fmt::format("{:g} g/L", item.concentration)
+           : item.unit == ConcentrationUnit::percent_v_v ? fmt::format("{:g} % v/v", item.concentration)
+                                                         : fmt::format("{:g} mmol/L", item.concentration * milli);
+}
+
+void formula_text(Page& page, const NamedFormula& formula, const Table& table) {
+    page.heading(fmt::format("FORMULA {}", formula.name));
+    fact(page, "also called", joined(formula.names));
+    for (const FormulaItem& item : formula.items) {
+        std::string text = fmt::format("{} {}", formula_amount(item), table.reagents[item.reagent].name);
+        if (item.part == FormulaPart::buffer) {
+            text += item.has_counter_ion ? fmt::format("; holds the pH, with {}", name_of(table, item.counter_ion))
+                                         : "; holds the pH";
+        } else if (item.part == FormulaPart::titrant) {
+            text += "; with a pH on the label, as much as that takes";
+        }
+        fact(page, &item == formula.items.data() ? "1x holds" : "", text);
+    }
+    fact(page, "pH",
+         formula.ph.known() ? fmt::format("{:g} at 25 °C and 1x, when the label gives none", formula.ph.value)
+                            : "as written, when the label gives none");
+    fact(page, "evidence",
+         fmt::format("{} ({})", table.sources[formula.source].citation, evidence_word(formula.evidence)));
+    fact(page, "note", formula.note);
+}
+
 void list_systems(Page& page, const Table& table) {
     const Columns columns{{26}, {10}, {44}};
     page.row(columns, {"system", "used as", "pK at 25 °C, zero ionic strength"}, true);
@@ -179,6 +221,18 @@ void list_ions(Page& page, const Table& table) {
     }
 }
 
+void list_formulas(Page& page, const Table& table) {
+    const Columns columns{{44}, {36}};
+    page.row(columns, {"formula", "also called"}, true);
+    for (const NamedFormula& formula : table.formulas) {
+        page.row(columns, {std::string(formula.name), joined(formula.names)});
+    }
+    page.blank();
+    page.paragraph(fmt::format("{} formulas; a label takes them as '10x NAME'. Constants {}.", table.formulas.size(),
+                               table.version),
+                   "");
+}
+
 }  // namespace
 
 std::string constants_list_text(const Table& table, Listing listing, bool colour) {
@@ -193,6 +247,9 @@ std::string constants_list_text(const Table& table, Listing listing, bool colour
         case Listing::ions:
             list_ions(page, table);
             break;
+        case Listing::formulas:
+            list_formulas(page, table);
+            break;
     }
     return page.text();
 }
@@ -204,6 +261,9 @@ std::string constants_entry_text(const Table& table, std::string_view name, bool
     }
     if (const Spectator* spectator = find_spectator(table, name)) {
         spectator_text(page, *spectator, table);
+    }
+    if (const NamedFormula* formula = find_named_formula(table, name)) {
+        formula_text(page, *formula, table);
     }
     const Reagent* reagent = find_reagent(table, name);
     if (reagent == nullptr) {

@@ -8,7 +8,7 @@
 namespace carboy {
 
 /// What a listing shows.
-enum class Listing { systems, reagents, ions };
+enum class Listing { systems, reagents, ions, formulas };
 
 std::string constants_list_text(const Table& table, Listing listing, bool colour);
 /// Everything the table knows under a name; empty when it knows nothing.

@@ -65,9 +65,11 @@ void explain_prediction(Page& page, const Prediction& prediction, const Table& t
         "pK(T) follows from pK, enthalpy and heat capacity at 25 °C: ln K(T) = ln K - (ΔH/R)(1/T - 1/T0) + "
         "(ΔCp/R)(T0/T - 1 + ln(T/T0)), or from the published expression of the step.");
     page.paragraph(
-        fmt::format("Uncertainty: {:.3f} from the constants and {:.3f} from the activity model, combined and "
-                    "doubled (k = 2).",
-                    prediction.uncertainty.constants, prediction.uncertainty.activity));
+        fmt::format("Uncertainty: {:.3f} from the constants, {:.3f} from the activity model, {:.3f} from what the "
+                    "model leaves out in such a solution and {:.3f} of the scale of pH itself, combined and doubled "
+                    "(k = 2).",
+                    prediction.uncertainty.constants, prediction.uncertainty.activity,
+                    prediction.uncertainty.unmodelled, prediction.uncertainty.reproducibility));
     if (prediction.hand_estimate) {
         page.paragraph(fmt::format("On paper, with pK at 25 °C and no activities, the sum gives pH {:.2f}.",
                                    prediction.hand_estimate->value()));

@@ -313,7 +313,9 @@ ordered_json prediction_json(const Prediction& prediction, const Table& table) {
     record["constants"] = constants_json(prediction, table);
     record["uncertainty"] = {{"pH_expanded_k2", prediction.uncertainty.expanded_k2},
                              {"pH_from_constants", prediction.uncertainty.constants},
-                             {"pH_from_activity_model", prediction.uncertainty.activity}};
+                             {"pH_from_activity_model", prediction.uncertainty.activity},
+                             {"pH_from_what_is_left_out", prediction.uncertainty.unmodelled},
+                             {"pH_reproducibility", prediction.uncertainty.reproducibility}};
     record["warnings"] = warnings_json(prediction.warnings);
     record["program"] = program_json(table);
     return record;

@@ -177,14 +177,12 @@ void cautions(Page& page, const Plan& plan, const Table& table) {
 }
 
 void warnings(Page& page, const Plan& plan, const TextStyle& style) {
-    if (plan.warnings.empty() && plan.predicted.warnings.empty() && !style.bench_temperature_assumed) {
+    if (plan.warnings.empty() && !style.bench_temperature_assumed) {
         return;
     }
     page.heading("TAKE NOTE");
-    for (const auto* list : {&plan.predicted.warnings, &plan.warnings}) {
-        for (const Warning& warning : *list) {
-            page.notice(warning.message, "  - ");
-        }
+    for (const Warning& warning : plan.warnings) {
+        page.notice(warning.message, "  - ");
     }
     if (style.bench_temperature_assumed) {
         page.paragraph(

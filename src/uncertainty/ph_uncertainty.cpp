@@ -42,6 +42,10 @@ double ion_product_uncertainty(Temperature temperature) {
 
 }  // namespace
 
+void PHUncertainty::combine() {
+    expanded_k2 = 2.0 * std::hypot(std::hypot(constants, activity), std::hypot(unmodelled, reproducibility));
+}
+
 PHUncertainty ph_uncertainty(EquilibriumSolver& solver, const Table& table, const ActivityModel& model) {
     constexpr double shift = 1e-3;
     const double ph = solver.ph().value();
@@ -73,7 +77,7 @@ PHUncertainty ph_uncertainty(EquilibriumSolver& solver, const Table& table, cons
     PHUncertainty uncertainty;
     uncertainty.constants = std::sqrt(sum);
     uncertainty.activity = model.ph_uncertainty(ionic_strength);
-    uncertainty.expanded_k2 = 2.0 * std::hypot(uncertainty.constants, uncertainty.activity);
+    uncertainty.combine();
     return uncertainty;
 }
 

@@ -70,6 +70,17 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
             add("prediction.schema.json", output_of({"predict", mixture, "--activity", model}));
         }
     }
+    for (const std::vector<std::string>& batch :
+         {std::vector<std::string>{"0.1 M sodium phosphate, pH 7.2", "--reading", "6.9", "--with", "NaOH 10 mol/L"},
+          {"50 mM Tris-HCl, pH 7.5 at 4 C", "--reading", "7.5", "--with", "1 M HCl", "--prepare-at", "22 C"},
+          {"50 mM Tris-HCl, pH 8", "--reading", "8.01", "--with", "1 M HCl"},
+          {"50 mM Tris-HCl, pH 8", "--reading", "8.3", "--with", "1 M NaOH", "--not-filled", "900 mL"},
+          {"0.2 M sodium acetate, pH 5", "--reading", "4.4", "--with", "NaOH"},
+          {"50 mM sodium citrate, pH 5.5", "--reading", "9.9", "--with", "acetic acid"}}) {
+        std::vector<std::string> arguments{"adjust", "--volume", "1L"};
+        arguments.insert(arguments.end(), batch.begin(), batch.end());
+        add("adjustment.schema.json", output_of(arguments));
+    }
     for (const char* label : {"50 mM Trsi-HCl, pH 7.5", "50 mM sodium acetate, pH 2", ""}) {
         const auto run = run_carboy({"recipe", label, "--volume", "1L", "--format", "json"});
         add("error.schema.json", json::parse(run.err));
@@ -95,6 +106,24 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
         add("constants.schema.json",
             json::parse(carboy::test::project_file("data/constants/" + file.path().filename().string())));
     }
+    for (const std::vector<std::string>& demands :
+         {std::vector<std::string>{"--ph", "7.4", "--at", "37C"},
+          {"--ph", "8", "--range", "4C:37C", "--acid", "5mM", "--hold", "0.3", "--avoid", "amine", "--clear-at", "230"},
+          {"--ph", "8", "--want", "volatile", "--ionic-strength", "100mM", "--concentration", "20 mmol/kg"},
+          {"--ph", "5:9"}}) {
+        std::vector<std::string> words{"select"};
+        words.insert(words.end(), demands.begin(), demands.end());
+        add("selection.schema.json", output_of(words));
+    }
+    const std::string titration = std::string(CARBOY_SOURCE_DIR) + "/examples/saltmarsh/titration.csv";
+    const carboy::test::TemporaryFolder folder;
+    add("fit.schema.json", output_of({"fit", titration, "--mixture", "25 mL of 0.1 M acetic acid, to 50 mL", "--with",
+                                      "0.1 M NaOH", "--free", "pK acetate", "--free", "amount acetic acid", "--free",
+                                      "offset", "--free", "slope", "--write", folder.path("own.json")}));
+    const auto written = run_program("cat", {folder.path("own.json")});
+    add("constants.schema.json", json::parse(written.out));
+    add("fit.schema.json",
+        output_of({"fit", "--mixture", "0.1 M acetic acid", "--degree", "0.014", "--free", "pK acetate"}));
     const auto run = run_program(python, {here + "validate.py", std::string(CARBOY_DATA_DIR) + "/schema"}, lines);
     if (missing(run.status, "python3-jsonschema")) {
         return;

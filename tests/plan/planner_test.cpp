@@ -273,7 +273,8 @@ TEST_CASE("plan: azide goes in after the pH is set, and a warning stands above i
     const Plan with = planned("50 mM Tris-HCl, 0.02 % w/v sodium azide, pH 8");
     const Plan without = planned("50 mM Tris-HCl, pH 8");
     CHECK(with.readings.front().ph.value() == Approx(without.readings.front().ph.value()).margin(1e-9));
-    CHECK(with.warnings.empty());
+    CHECK(std::none_of(with.warnings.begin(), with.warnings.end(),
+                       [](const Warning& warning) { return warning.code == "acid_liberates_gas"; }));
     const Plan acid = planned("50 mM acetate, 0.02 % w/v sodium azide, pH 4.5");
     REQUIRE_FALSE(acid.warnings.empty());
     CHECK(acid.warnings.front().code == "acid_liberates_gas");
