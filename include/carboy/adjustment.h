@@ -12,8 +12,7 @@ namespace carboy {
 
 /// A batch whose meter does not show what it should.
 struct OffBatch {
-    Request request;                   ///< label, mark, and the bench temperature where the meter was read
-    PH reading;                        ///< what the meter shows there
+    PH reading;                        ///< what the meter shows at the bench temperature
     std::optional<Volume> not_filled;  ///< present volume, when the batch is not yet filled to the mark
     std::optional<PH> reading_before;  ///< at the bench, everything but the titrant dissolved in the sheet's volume
     double within = 0.05;              ///< how far concentrations may end up from the label, relative
@@ -103,10 +102,12 @@ struct Adjustment {
     std::vector<Warning> warnings;
 };
 
-/// Works out what is off and what brings the batch to its label at the temperature of use.
+/// Works out what is off with a batch of `plan` and what brings it to its label at the temperature of use, and at
+/// working strength where it is a concentrate. `table` is the one the plan was made with.
 /// It takes the recipe's amounts as put in: of a batch that was titrated to the meter only the correction holds, not
-/// the causes. Errors: those of `plan_recipe`; `no_target` for a label without pH, `present_volume`, `bad_titrant`
-/// (input).
-Adjustment adjust(const Table& table, const OffBatch& batch, const Titrant& at_hand, const ActivityModel& model);
+/// the causes. Errors: `no_target` for a label without pH, `present_volume`, `bad_titrant` (input);
+/// `impossible_reading` (no_recipe) for a reading that no solution of the label can have.
+Adjustment adjust(const Table& table, const Plan& plan, const OffBatch& batch, const Titrant& at_hand,
+                  const ActivityModel& model);
 
 }  // namespace carboy

@@ -182,10 +182,10 @@ struct Presence {
 /// A species of an ionic product, with its power.
 struct ProductFactor {
     enum class Of : std::uint8_t { component, hydrogen_ion, hydroxide };
-    Of of;
+    Of of = Of::component;
     ComponentId component;
-    std::uint8_t species;  ///< index into System::species; 0 for a spectator
-    std::uint8_t power;
+    std::uint8_t species = 0;  ///< index into System::species; 0 for a spectator
+    std::uint8_t power = 1;
 };
 
 /// When a solution is looked at.

@@ -11,7 +11,8 @@ namespace carboy {
 double step_enthalpy_kJ_per_mol(const Step& step, Temperature temperature);
 
 /// H2O -> H+ + OH-, kJ/mol: 55.81 at 25 °C with -224 J/(K mol) (Olofsson G and Hepler LG, J. Solution Chem. 4, 127
-/// (1975); from memory). Good to 0.3 kJ/mol from 0 to 60 °C.
+/// (1975); from memory). Good to 0.3 kJ/mol from 0 to 60 °C. Calorimetry, not the
+/// slope of the equation for pKw, which gives 56.4 at 25 °C.
 double water_ionisation_enthalpy_kJ_per_mol(Temperature temperature);
 
 /// Enthalpy of all species of a solved state, kJ per kg of water, counted from the most protonated form of each system

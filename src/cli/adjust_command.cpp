@@ -7,6 +7,7 @@
 #include "carboy/error.h"
 #include "carboy/notation.h"
 #include "carboy/request_json.h"
+#include "carboy/shelf.h"
 
 #include "cli/commands.h"
 #include "cli/file.h"
@@ -39,12 +40,13 @@ struct Options {
     std::string reading_before;
     std::string not_filled;
     double within_percent = 5;
+    std::string route = "any";
+    ShelfOptions shelf;
     SharedOptions shared;
 };
 
-OffBatch batch_of(const Options& options, const Table& table) {
-    OffBatch batch;
-    batch.request = request_from_label(options.label, table);
+Request request_of(const Options& options, const Table& table) {
+    Request request = request_from_label(options.label, table);
     if (const auto use_at = options.shared.use_at()) {
         const auto on_label = read_label(options.label, table).ph_at;
         if (on_label && *on_label != *use_at) {
@@ -53,10 +55,16 @@ OffBatch batch_of(const Options& options, const Table& table) {
                 fmt::format("the label says {:g} °C and --at says {:g} °C", on_label->celsius(), use_at->celsius()),
                 "--at", "leave one of them out");
         }
-        batch.request.use_at = *use_at;
+        request.use_at = *use_at;
     }
-    batch.request.volume = read_volume(options.volume, "--volume");
-    batch.request.prepare_at = options.shared.bench_at().value_or(Temperature{});
+    request.volume = read_volume(options.volume, "--volume");
+    request.prepare_at = options.shared.bench_at().value_or(Temperature{});
+    request.route = route_of(options.route).value_or(Route::automatic);
+    return request;
+}
+
+OffBatch batch_of(const Options& options) {
+    OffBatch batch;
     batch.reading = read_ph(options.reading, "--reading");
     if (!options.reading_before.empty()) {
         batch.reading_before = read_ph(options.reading_before, "--reading-before");
@@ -69,9 +77,15 @@ OffBatch batch_of(const Options& options, const Table& table) {
 }
 
 int run(const Options& options) {
-    const Table table = table_for(options.shared);
+    const Table bundled = table_for(options.shared);
+    const ActivityModel& model = options.shared.activity_model();
+    const auto shelf = shelf_for(options.shelf, bundled, model);
+    const Table& table = shelf ? shelf->table() : bundled;
+    const OffBatch batch = batch_of(options);
     const Titrant titrant = read_titrant(options.titrant, table);
-    const Adjustment adjustment = adjust(table, batch_of(options, table), titrant, options.shared.activity_model());
+    const Request request = request_of(options, table);
+    const Plan plan = shelf ? plan_recipe(*shelf, request, model) : plan_recipe(table, request, model);
+    const Adjustment adjustment = adjust(table, plan, batch, titrant, model);
     if (options.shared.json()) {
         write_result(adjustment_json(adjustment, table).dump() + "\n", options.shared.output_file);
     } else {
@@ -101,6 +115,11 @@ Action declare_adjust(CLI::App& app, SharedOptions*& shared) {
         ->check(CLI::Range(0.0, 100.0))
         ->type_name("PERCENT")
         ->capture_default_str();
+    app.add_option("--route", options->route, "How it was made, as for a recipe")
+        ->check(CLI::IsMember({"any", "titrated", "salts", "stocks", "dilution"}))
+        ->type_name("ROUTE")
+        ->capture_default_str();
+    add_shelf_options(app, options->shelf);
     add_computing_options(app, options->shared);
     add_output_options(app, options->shared);
     return [options] { return run(*options); };

@@ -35,9 +35,9 @@ TableBuilder::TableBuilder(const Table& base)
       spectators_(copied(base.spectators)),
       systems_(copied(base.systems)),
       reagents_(copied(base.reagents)),
-      formulas_(copied(base.formulas)),
+      observations_(copied(base.observations)),
       facts_(copied(base.facts)),
-      observations_(copied(base.observations)) {
+      formulas_(copied(base.formulas)) {
     arena_->base_owner = base.owner;
 }
 

@@ -16,16 +16,16 @@ namespace carboy {
 
 namespace {
 
-void check(const Table& table, const OffBatch& batch, const Titrant& at_hand) {
-    if (!batch.request.ph) {
+void check(const Table& table, const Request& request, const OffBatch& batch, const Titrant& at_hand) {
+    if (!request.ph) {
         throw Error(ErrorKind::input, "no_target", "the label has no pH to come to", "label",
                     "add one, as in: pH 7.5 at 25 C");
     }
-    if (batch.not_filled && !(*batch.not_filled < batch.request.volume)) {
-        throw Error(ErrorKind::input, "present_volume",
-                    fmt::format("{:g} mL are in it, and the mark is at {:g} mL", batch.not_filled->mL(),
-                                batch.request.volume.mL()),
-                    "--not-filled", "leave it out for a batch that is filled to its mark");
+    if (batch.not_filled && !(*batch.not_filled < request.volume)) {
+        throw Error(
+            ErrorKind::input, "present_volume",
+            fmt::format("{:g} mL are in it, and the mark is at {:g} mL", batch.not_filled->mL(), request.volume.mL()),
+            "--not-filled", "leave it out for a batch that is filled to its mark");
     }
     const Reagent& reagent = table.reagents[at_hand.reagent];
     const bool acid_or_base = reagent.strong_charge != 0 ||
@@ -40,21 +40,21 @@ void check(const Table& table, const OffBatch& batch, const Titrant& at_hand) {
 }
 
 /// Expected reading with its uncertainty, now and at the bench.
-void expect(const Bench& bench, const VesselContent& vessel, Adjustment& adjustment) {
-    EquilibriumSolver solver(bench.table, compose(bench.table, vessel.present).mixture,
+void expect(const Bench& bench, const Contents& contents, Adjustment& adjustment) {
+    EquilibriumSolver solver(bench.table, compose(bench.table, contents.present).mixture,
                              adjustment.plan.request.prepare_at, bench.model);
     solver.solve();
     adjustment.expected = solver.ph();
     if (adjustment.batch.reading_before) {
-        adjustment.expected_before = ph_of(bench, before_titrant(bench.table, adjustment.plan, vessel.present),
+        adjustment.expected_before = ph_of(bench, before_titrant(bench.table, adjustment.plan, contents.present),
                                            adjustment.plan.request.prepare_at);
     }
     adjustment.expected_expanded_k2 = ph_uncertainty(solver, bench.table, bench.model).expanded_k2;
 }
 
-void find_what_is_off(const Bench& bench, const VesselContent& vessel, Adjustment& adjustment) {
-    const Amount acid = acid_in_excess(bench, adjustment.plan, vessel, adjustment.batch.reading);
-    adjustment.as_read = with_excess(bench.table, adjustment.plan, vessel.present, acid);
+void find_what_is_off(const Bench& bench, const Contents& contents, Adjustment& adjustment) {
+    const Amount acid = acid_in_excess(bench, adjustment.plan, contents, adjustment.batch.reading);
+    adjustment.as_read = with_excess(bench.table, adjustment.plan, contents.present, acid);
     const auto titrant = titrant_of(bench.table, adjustment.plan);
     const int charge = titrant ? titrant->charge : 0;
     adjustment.off = Amount::mol(std::abs(acid.mol()));
@@ -66,17 +66,15 @@ void find_what_is_off(const Bench& bench, const VesselContent& vessel, Adjustmen
 }
 
 /// With the titrant at hand, or with the other kind where that one is wrong.
-void correct(const Bench& bench, const VesselContent& as_read, Adjustment& adjustment) {
+void correct(const Bench& bench, const Contents& as_read, Adjustment& adjustment) {
     const Attempt first = attempt(bench, adjustment.plan, as_read, adjustment.at_hand);
     if (first.correction) {
         adjustment.correction = first.correction;
         adjustment.verdict = Verdict::add_titrant;
         return;
     }
-    const Reagent& at_hand = bench.table.reagents[adjustment.at_hand.reagent];
     const double now =
-        ph_of(bench, as_read.finished(bench.table, adjustment.at_hand, Amount{}), adjustment.plan.request.use_at)
-            .value();
+        ph_of(bench, as_read.in_use(bench.table, adjustment.at_hand, Amount{}), adjustment.plan.request.use_at).value();
     const bool needs_acid = now > adjustment.plan.request.ph->value();
     const Titrant other = strong_titrant(bench.table, adjustment.plan, needs_acid ? -1 : 1);
     adjustment.correction = attempt(bench, adjustment.plan, as_read, other).correction;
@@ -84,26 +82,27 @@ void correct(const Bench& bench, const VesselContent& as_read, Adjustment& adjus
     if (first.wrong_side) {
         adjustment.reasons.push_back(
             {"wrong_side",
-             fmt::format("The batch is too {}: {} would lead it further away. It takes {}.",
-                         needs_acid ? "basic" : "acid", at_hand.name, needs_acid ? "an acid" : "a base")});
+             fmt::format("The batch is too {}: the titrant at hand would lead it further away. It takes {}.",
+                         needs_acid ? "basic" : "acid", needs_acid ? "an acid" : "a base")});
     } else {
         adjustment.reasons.push_back(
-            {"out_of_reach", fmt::format("{} cannot bring it to pH {:.2f}, not even as much of it as there is batch.",
-                                         at_hand.name, adjustment.plan.request.ph->value())});
+            {"out_of_reach",
+             fmt::format("The titrant at hand cannot bring it to pH {:.2f}, not even as much of it as there is batch.",
+                         adjustment.plan.request.ph->value())});
     }
 }
 
-void weigh_suspicion(const Bench& bench, const VesselContent& vessel, Adjustment& adjustment) {
-    for (Suspect& suspect : suspects(bench, adjustment.plan, vessel, adjustment.batch)) {
+void weigh_suspicion(const Bench& bench, const Contents& contents, Adjustment& adjustment) {
+    for (Suspect& suspect : suspects(bench, adjustment.plan, contents, adjustment.batch)) {
         const Titrant& titrant = adjustment.correction ? adjustment.correction->titrant : adjustment.at_hand;
-        suspect.mistake.correction = attempt(bench, adjustment.plan, suspect.vessel, titrant).correction;
+        suspect.mistake.correction = attempt(bench, adjustment.plan, suspect.contents, titrant).correction;
         adjustment.mistakes.push_back(std::move(suspect.mistake));
     }
-    if (impossible_for_titrant(bench, adjustment.plan, vessel, adjustment.batch.reading)) {
-        adjustment.warnings.push_back({"impossible_reading",
-                                       "No amount of the recipe's titrant, none of it or twenty times as much, gives "
-                                       "this reading: something else "
-                                       "went wrong. Find out what before correcting the pH."});
+    if (impossible_for_titrant(bench, adjustment.plan, contents, adjustment.batch.reading)) {
+        adjustment.warnings.push_back(
+            {"impossible_reading",
+             "No amount of the recipe's titrant, none of it or twenty times as much, gives "
+             "this reading: something else went wrong. Find out what before correcting the pH."});
     } else if (adjustment.mistakes.empty() || !adjustment.mistakes.front().consistent) {
         adjustment.warnings.push_back(
             {"no_single_mistake",
@@ -224,27 +223,31 @@ std::string_view off_by_word(OffBy off) {
     return words[static_cast<std::size_t>(off)];
 }
 
-Adjustment adjust(const Table& table, const OffBatch& batch, const Titrant& at_hand, const ActivityModel& model) {
-    check(table, batch, at_hand);
+Adjustment adjust(const Table& table, const Plan& plan, const OffBatch& batch, const Titrant& at_hand,
+                  const ActivityModel& model) {
+    check(table, plan.request, batch, at_hand);
     const Bench bench{table, model};
     Adjustment adjustment;
     adjustment.batch = batch;
     adjustment.at_hand = at_hand;
-    adjustment.plan = plan_recipe(table, batch.request, model);
-    adjustment.present_volume = batch.not_filled.value_or(batch.request.volume);
-    const VesselContent vessel = planned_vessel(table, adjustment.plan, batch.not_filled);
-    expect(bench, vessel, adjustment);
-    find_what_is_off(bench, vessel, adjustment);
+    adjustment.plan = plan;
+    adjustment.present_volume = batch.not_filled.value_or(plan.request.volume);
+    // What limits the prediction of the recipe limits what is said here.
+    const Prediction& limits = plan.as_bottled ? *plan.as_bottled : plan.predicted;
+    adjustment.warnings = limits.warnings;
+    const Contents contents = planned_contents(table, adjustment.plan, batch.not_filled);
+    expect(bench, contents, adjustment);
+    find_what_is_off(bench, contents, adjustment);
 
     // What is typed has two decimals; a difference of exactly 0.02 counts as agreement.
     constexpr double rounding = 1e-6;
     if (std::abs(batch.reading.value() - adjustment.expected.value()) <= meter_ph + rounding) {
         return adjustment;
     }
-    VesselContent as_read = vessel;
+    Contents as_read = contents;
     as_read.present = adjustment.as_read;
     correct(bench, as_read, adjustment);
-    weigh_suspicion(bench, vessel, adjustment);
+    weigh_suspicion(bench, contents, adjustment);
     judge(table, adjustment);
     return adjustment;
 }

@@ -45,40 +45,40 @@ double concentration_off(const Table& table, const Plan& plan, const Preparation
     return worst;
 }
 
-bool moves_away(const Bench& bench, const Plan& plan, const VesselContent& vessel, const Titrant& titrant,
-                Amount step) {
+bool moves_away(const Bench& bench, const Plan& plan, const Contents& contents, const Titrant& titrant, Amount step) {
     const Temperature at = plan.request.use_at;
-    const double before = ph_of(bench, vessel.finished(bench.table, titrant, Amount{}), at).value();
-    const double after = ph_of(bench, vessel.finished(bench.table, titrant, step), at).value();
+    const double before = ph_of(bench, contents.in_use(bench.table, titrant, Amount{}), at).value();
+    const double after = ph_of(bench, contents.in_use(bench.table, titrant, step), at).value();
     return (after - before) * (plan.request.ph->value() - before) < 0;
 }
 
-Correction worked_out(const Bench& bench, const Plan& plan, const VesselContent& vessel, const Titrant& titrant,
+Correction worked_out(const Bench& bench, const Plan& plan, const Contents& contents, const Titrant& titrant,
                       Amount amount) {
     constexpr double nine_tenths = 0.9;  // common practice, no source: the last tenth in small portions
     const Request& request = plan.request;
     Correction correction;
     correction.titrant = titrant;
     correction.amount = amount;
-    const PH now = ph_of(bench, vessel.present, request.prepare_at);
+    const PH now = ph_of(bench, contents.present, request.prepare_at);
     const double all =
-        std::abs(charge_at(bench, vessel.finished(bench.table, titrant, Amount{}), *request.ph, request.use_at));
+        std::abs(charge_at(bench, contents.in_use(bench.table, titrant, Amount{}), *request.ph, request.use_at));
     const double by_meter =
-        std::abs(charge_at(bench, vessel.present, PH(now.value() + meter_ph), request.prepare_at) / 2 -
-                 charge_at(bench, vessel.present, PH(now.value() - meter_ph), request.prepare_at) / 2);
+        std::abs(charge_at(bench, contents.present, PH(now.value() + meter_ph), request.prepare_at) / 2 -
+                 charge_at(bench, contents.present, PH(now.value() - meter_ph), request.prepare_at) / 2);
     correction.least = amount * std::max(0.0, 1 - by_meter / all);
     correction.most = amount * (1 + by_meter / all);
     correction.at_once = nine_tenths * correction.least;
 
-    const Preparation then = vessel.with(bench.table, titrant, amount);
-    const Preparation finished = vessel.finished(bench.table, titrant, amount);
+    const Preparation then = contents.with(bench.table, titrant, amount);
+    const Preparation finished = contents.finished(bench.table, titrant, amount);
     correction.volume_then = *then.filled_to;
-    correction.volume = *then.filled_to - *vessel.present.filled_to;
+    correction.volume = *then.filled_to - *contents.present.filled_to;
     correction.stop_reading = ph_of(bench, then, request.prepare_at);
     correction.finished_volume = *finished.filled_to;
     correction.finished_reading = ph_of(bench, finished, request.prepare_at);
     correction.concentration_off = concentration_off(bench.table, plan, finished);
-    correction.predicted = predict(bench.table, compose(bench.table, finished).mixture, request.use_at, bench.model);
+    const Preparation in_use = contents.in_use(bench.table, titrant, amount);
+    correction.predicted = predict(bench.table, compose(bench.table, in_use).mixture, request.use_at, bench.model);
     return correction;
 }
 
@@ -102,9 +102,9 @@ Preparation with_excess(const Table& table, const Plan& plan, const Preparation&
     return changed;
 }
 
-Amount acid_in_excess(const Bench& bench, const Plan& plan, const VesselContent& vessel, PH reading) {
-    const double litres = vessel.present.filled_to->L();
-    const auto make = [&](Amount acid) { return with_excess(bench.table, plan, vessel.present, acid); };
+Amount acid_in_excess(const Bench& bench, const Plan& plan, const Contents& contents, PH reading) {
+    const double litres = contents.present.filled_to->L();
+    const auto make = [&](Amount acid) { return with_excess(bench.table, plan, contents.present, acid); };
     const auto found =
         amount_for(bench, make, reading, plan.request.prepare_at, Amount::mol(first_step_mol_per_L * litres),
                    Amount::mol(most_mol_per_L * litres), true);
@@ -117,18 +117,18 @@ Amount acid_in_excess(const Bench& bench, const Plan& plan, const VesselContent&
     return *found;
 }
 
-Attempt attempt(const Bench& bench, const Plan& plan, const VesselContent& vessel, const Titrant& titrant) {
-    const double litres = vessel.present.filled_to->L();
+Attempt attempt(const Bench& bench, const Plan& plan, const Contents& contents, const Titrant& titrant) {
+    const double litres = contents.present.filled_to->L();
     const Amount step = Amount::mol(first_step_mol_per_L * litres);
     // As much titrant again as there is batch is no correction any more.
     const Amount most =
         Amount::mol(titrant.strength ? titrant.strength->mol_per_L() * litres : most_mol_per_L * litres);
-    const auto make = [&](Amount amount) { return vessel.finished(bench.table, titrant, amount); };
+    const auto make = [&](Amount amount) { return contents.in_use(bench.table, titrant, amount); };
     const auto amount = amount_for(bench, make, *plan.request.ph, plan.request.use_at, std::min(step, most), most);
     if (!amount || amount->mol() < 0) {
-        return {std::nullopt, moves_away(bench, plan, vessel, titrant, std::min(step, most))};
+        return {std::nullopt, moves_away(bench, plan, contents, titrant, std::min(step, most))};
     }
-    return {worked_out(bench, plan, vessel, titrant, *amount), false};
+    return {worked_out(bench, plan, contents, titrant, *amount), false};
 }
 
 }  // namespace carboy

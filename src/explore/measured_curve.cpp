@@ -29,7 +29,7 @@ Error not_in_the_mixture(const std::string& what, const std::string& help) {
 }
 
 /// Moles of each portion in the vessel, and its water: volumes add up, or the vessel was filled.
-struct Vessel {
+struct VesselState {
     std::vector<std::pair<std::uint16_t, double>> mixture;  ///< reagent, mol
     std::vector<std::pair<std::uint16_t, double>> titrant;
     double water_kg = 0;
@@ -43,8 +43,8 @@ void pour(std::vector<std::pair<std::uint16_t, double>>& into, const Preparation
     }
 }
 
-Vessel fill(const Table& table, const FitProblem& problem, const Point& point) {
-    Vessel vessel;
+VesselState fill(const Table& table, const FitProblem& problem, const Point& point) {
+    VesselState vessel;
     const double litres = point.titrant.L();
     if (problem.filled_to) {
         if (std::any_of(point.mixture.portions.begin(), point.mixture.portions.end(),
@@ -79,7 +79,7 @@ Vessel fill(const Table& table, const FitProblem& problem, const Point& point) {
 
 void MeasuredCurve::take_point(const Table& table, const FitProblem& problem, const Point& point,
                                std::vector<std::pair<ComponentId, Share>>& shares) const {
-    const Vessel vessel = fill(table, problem, point);
+    const VesselState vessel = fill(table, problem, point);
     const auto add = [&](std::uint16_t reagent, double mol, std::size_t free, bool titrant) {
         for (const auto& [component, count] : table.reagents[reagent].supplies) {
             shares.push_back({component, {0, mol * count / vessel.water_kg, free, titrant}});

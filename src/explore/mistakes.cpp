@@ -3,9 +3,6 @@
 #include <algorithm>
 #include <array>
 #include <cmath>
-#include <numbers>
-
-#include "carboy/error.h"
 
 #include "plan/articles.h"
 
@@ -37,11 +34,11 @@ bool supplies(const Reagent& reagent, ComponentId component) {
 
 class Imagination {
 public:
-    Imagination(const Bench& bench, const Plan& plan, const VesselContent& vessel)
-        : bench_(bench), plan_(plan), vessel_(vessel), titrant_(titrant_of(bench.table, plan)) {}
+    Imagination(const Bench& bench, const Plan& plan, const Contents& contents)
+        : bench_(bench), plan_(plan), contents_(contents), titrant_(titrant_of(bench.table, plan)) {}
 
     std::vector<Suspect> all() {
-        add(of_kind(MistakeKind::meter), vessel_);
+        add(of_kind(MistakeKind::meter), contents_);
         titrant_mistakes();
         for (const Weighing& item : plan_.weigh) {
             if (item.purpose != Purpose::titrant) {
@@ -63,12 +60,12 @@ public:
 private:
     const Reagent& reagent(std::uint16_t index) const { return bench_.table.reagents[index]; }
 
-    void add(Mistake mistake, const VesselContent& vessel) {
-        suspects_.push_back({std::move(mistake), vessel, plan_.request.prepare_at});
+    void add(Mistake mistake, const Contents& contents) {
+        suspects_.push_back({std::move(mistake), contents, plan_.request.prepare_at});
     }
 
     std::size_t portion_of(std::uint16_t article, Amount amount) const {
-        const auto& portions = vessel_.present.portions;
+        const auto& portions = contents_.present.portions;
         for (std::size_t i = 0; i < portions.size(); ++i) {
             if (portions[i].reagent == article && portions[i].amount == amount) {
                 return i;
@@ -82,7 +79,7 @@ private:
 
     /// One portion replaced: another article, another amount.
     void replaced(Mistake mistake, std::size_t portion, std::uint16_t article, Amount amount) {
-        VesselContent made = vessel_;
+        Contents made = contents_;
         made.present.portions[portion].reagent = article;
         made.present.portions[portion].amount = amount;
         add(std::move(mistake), made);
@@ -111,7 +108,7 @@ private:
             return;
         }
         const auto with_factor = [&](MistakeKind kind, double factor, std::optional<std::uint16_t> taken) {
-            Suspect suspect = titrant_off_by(plan_, vessel_, *titrant_, factor);
+            Suspect suspect = titrant_off_by(plan_, contents_, *titrant_, factor);
             suspect.mistake.kind = kind;
             suspect.mistake.taken = taken;
             suspects_.push_back(std::move(suspect));
@@ -210,7 +207,7 @@ private:
                     at_second == nowhere) {
                     continue;
                 }
-                VesselContent made = vessel_;
+                Contents made = contents_;
                 made.present.portions[at_first].amount = amount_of(reagent(first.reagent), second.mass);
                 made.present.portions[at_second].amount = amount_of(reagent(second.reagent), first.mass);
                 Mistake mistake = of_kind(MistakeKind::forms_swapped);
@@ -223,7 +220,7 @@ private:
 
     void wrong_volumes() {
         for (const double factor : {2.0, 0.5}) {
-            VesselContent made = vessel_;
+            Contents made = contents_;
             made.present.filled_to = factor * *made.present.filled_to;
             made.mark = std::max(made.mark, *made.present.filled_to);
             Mistake mistake = of_kind(MistakeKind::wrong_volume);
@@ -233,7 +230,7 @@ private:
     }
 
     /// The recipe with the titrant that gives it this pH at this temperature; empty when none does.
-    std::optional<VesselContent> set_to(const VesselContent& start, PH ph, Temperature temperature) const {
+    std::optional<Contents> set_to(const Contents& start, PH ph, Temperature temperature) const {
         const std::size_t portion = titrant_portion();
         if (portion == nowhere) {
             return std::nullopt;
@@ -248,7 +245,7 @@ private:
         if (!amount || amount->mol() < 0) {
             return std::nullopt;
         }
-        VesselContent set = start;
+        Contents set = start;
         set.present.portions[portion].amount = *amount;
         return set;
     }
@@ -268,19 +265,19 @@ private:
             if (temperature != request.prepare_at) {
                 Mistake read = of_kind(MistakeKind::read_at_other_temperature);
                 read.temperature = temperature;
-                suspects_.push_back({read, vessel_, temperature});
+                suspects_.push_back({read, contents_, temperature});
             }
             if (temperature == request.prepare_at || temperature == request.use_at) {
                 continue;
             }
-            if (const auto set = set_to(vessel_, *request.ph, temperature)) {
+            if (const auto set = set_to(contents_, *request.ph, temperature)) {
                 Mistake mistake = of_kind(MistakeKind::set_at_other_temperature);
                 mistake.temperature = temperature;
                 add(mistake, *set);
             }
         }
-        if (request.use_at != request.prepare_at) {
-            if (const auto set = set_to(vessel_, *request.ph, request.prepare_at)) {
+        if (request.use_at != request.prepare_at || request.strength != 1) {
+            if (const auto set = set_to(contents_, *request.ph, request.prepare_at)) {
                 Mistake mistake = of_kind(MistakeKind::set_at_bench);
                 mistake.temperature = request.prepare_at;
                 add(mistake, *set);
@@ -292,14 +289,14 @@ private:
     void stock() {
         constexpr double fold = 10;
         constexpr double most_ionic_strength = 1.0;  // mol/kg; past it no model here can say what the stock reads
-        if (plan_.predicted.ionic_strength.mol_per_kg() * fold > most_ionic_strength) {
+        if (plan_.request.strength != 1 || plan_.predicted.ionic_strength.mol_per_kg() * fold > most_ionic_strength) {
             return;
         }
-        VesselContent concentrate = vessel_;
+        Contents concentrate = contents_;
         for (Portion& portion : concentrate.present.portions) {
             portion.amount = portion.amount.value_or(Amount{}) * fold;
         }
-        const PH bench_ph = ph_of(bench_, vessel_.present, plan_.request.prepare_at);
+        const PH bench_ph = ph_of(bench_, contents_.present, plan_.request.prepare_at);
         if (auto set = set_to(concentrate, bench_ph, plan_.request.prepare_at)) {
             for (Portion& portion : set->present.portions) {
                 portion.amount = portion.amount.value_or(Amount{}) / fold;
@@ -312,64 +309,27 @@ private:
 
     const Bench& bench_;
     const Plan& plan_;
-    const VesselContent& vessel_;
+    const Contents& contents_;
     std::optional<PlannedTitrant> titrant_;
     std::vector<Suspect> suspects_;
 };
 
 }  // namespace
 
-std::vector<Suspect> single_mistakes(const Bench& bench, const Plan& plan, const VesselContent& vessel) {
-    return Imagination(bench, plan, vessel).all();
+std::vector<Suspect> single_mistakes(const Bench& bench, const Plan& plan, const Contents& contents) {
+    return Imagination(bench, plan, contents).all();
 }
 
-Suspect titrant_off_by(const Plan& plan, const VesselContent& vessel, const PlannedTitrant& titrant, double factor) {
-    Suspect suspect{of_kind(MistakeKind::titrant_off), vessel, plan.request.prepare_at};
+Suspect titrant_off_by(const Plan& plan, const Contents& contents, const PlannedTitrant& titrant, double factor) {
+    Suspect suspect{of_kind(MistakeKind::titrant_off), contents, plan.request.prepare_at};
     suspect.mistake.reagent = titrant.titrant.reagent;
     suspect.mistake.factor = factor;
-    for (Portion& portion : suspect.vessel.present.portions) {
+    for (Portion& portion : suspect.contents.present.portions) {
         if (portion.reagent == titrant.titrant.reagent && portion.amount == titrant.amount) {
             portion.amount = factor * titrant.amount;
         }
     }
     return suspect;
-}
-
-double prior(MistakeKind kind) {
-    // Common practice, no source: what benches are known to do wrong (wrong temperature, titrant and hydrate before all
-    // else), ordered and weighed by judgement. Alternatives of one kind share its weight.
-    switch (kind) {
-        case MistakeKind::meter:
-            return 0.20;
-        case MistakeKind::titrant_off:
-            return 0.30;
-        case MistakeKind::set_at_bench:
-            return 0.20;
-        case MistakeKind::other_hydrate:
-        case MistakeKind::other_form:
-            return 0.15;
-        case MistakeKind::titrant_forgotten:
-        case MistakeKind::titrant_other_strength:
-        case MistakeKind::read_at_other_temperature:
-            return 0.10;
-        case MistakeKind::left_out:
-        case MistakeKind::mass_tenfold:
-        case MistakeKind::set_at_other_temperature:
-            return 0.08;
-        case MistakeKind::forms_swapped:
-        case MistakeKind::wrong_volume:
-        case MistakeKind::set_before_dilution:
-        case MistakeKind::titrant_wrong_kind:
-            return 0.05;
-    }
-    return 0;
-}
-
-double titrant_factor_share(double low, double high) {
-    // Cauchy's distribution about 1: heavy tails, since a titrant may be off by anything.
-    constexpr double half_width = 0.10;
-    const auto below = [&](double factor) { return std::atan((factor - 1) / half_width) / std::numbers::pi; };
-    return below(high) - below(low);
 }
 
 }  // namespace carboy

@@ -19,7 +19,7 @@ constexpr double largest_factor = 20;  // 50 % NaOH in place of 1 mol/L
 /// What the meter should show of a suspect, and how sure that is. False when it is no solution at all.
 bool take_reading(const Bench& bench, Suspect& suspect) {
     try {
-        EquilibriumSolver solver(bench.table, compose(bench.table, suspect.vessel.present).mixture, suspect.read_at,
+        EquilibriumSolver solver(bench.table, compose(bench.table, suspect.contents.present).mixture, suspect.read_at,
                                  bench.model);
         solver.solve();
         suspect.mistake.reading = solver.ph();
@@ -35,10 +35,10 @@ bool take_reading(const Bench& bench, Suspect& suspect) {
 }
 
 /// How many times the planned titrant gives this reading; empty when none does.
-std::optional<double> factor_for(const Bench& bench, const Plan& plan, const VesselContent& vessel,
+std::optional<double> factor_for(const Bench& bench, const Plan& plan, const Contents& contents,
                                  const PlannedTitrant& titrant, PH reading) {
     const auto make = [&](Amount amount) {
-        return titrant_off_by(plan, vessel, titrant, amount / titrant.amount).vessel.present;
+        return titrant_off_by(plan, contents, titrant, amount / titrant.amount).contents.present;
     };
     const auto amount = amount_for(bench, make, reading, plan.request.prepare_at, 1e-3 * titrant.amount,
                                    largest_factor * titrant.amount);
@@ -49,10 +49,11 @@ std::optional<double> factor_for(const Bench& bench, const Plan& plan, const Ves
 }
 
 /// The wrong kind of titrant was not yet in: before it only the other reagents count.
-void take_reading_before(const Bench& bench, const Plan& plan, const VesselContent& planned, Suspect& suspect) {
+void take_reading_before(const Bench& bench, const Plan& plan, const Contents& planned, Suspect& suspect) {
     const bool of_titrant = suspect.mistake.kind == MistakeKind::titrant_wrong_kind ||
                             suspect.mistake.kind == MistakeKind::set_before_dilution;
-    const Preparation before = before_titrant(bench.table, plan, of_titrant ? planned.present : suspect.vessel.present);
+    const Preparation before =
+        before_titrant(bench.table, plan, of_titrant ? planned.present : suspect.contents.present);
     suspect.mistake.before = ph_of(bench, before, plan.request.prepare_at);
 }
 
@@ -62,26 +63,26 @@ double density(double off, double standard_uncertainty) {
 }
 
 /// A titrant error of just the size that gives the reading, with the weight of errors of about that size.
-std::optional<Suspect> titrant_error(const Bench& bench, const Plan& plan, const VesselContent& vessel, PH reading,
+std::optional<Suspect> titrant_error(const Bench& bench, const Plan& plan, const Contents& contents, PH reading,
                                      double& weight) {
     const auto titrant = titrant_of(bench.table, plan);
     if (!titrant) {
         return std::nullopt;
     }
-    const auto factor = factor_for(bench, plan, vessel, *titrant, reading);
+    const auto factor = factor_for(bench, plan, contents, *titrant, reading);
     if (!factor) {
         return std::nullopt;
     }
-    Suspect suspect = titrant_off_by(plan, vessel, *titrant, *factor);
+    Suspect suspect = titrant_off_by(plan, contents, *titrant, *factor);
     if (!take_reading(bench, suspect)) {
         return std::nullopt;
     }
     suspect.mistake.consistent = true;
     const double standard = suspect.mistake.reading_expanded_k2 / 2;
-    const double acid = static_cast<double>(titrant->charge <= 0 ? 1 : -1);
-    const double low = factor_for(bench, plan, vessel, *titrant, PH(reading.value() + acid * standard)).value_or(0.0);
+    const double acid = titrant->charge <= 0 ? 1 : -1;
+    const double low = factor_for(bench, plan, contents, *titrant, PH(reading.value() + acid * standard)).value_or(0.0);
     const double high =
-        factor_for(bench, plan, vessel, *titrant, PH(reading.value() - acid * standard)).value_or(largest_factor);
+        factor_for(bench, plan, contents, *titrant, PH(reading.value() - acid * standard)).value_or(largest_factor);
     // The same measure as `density`: probability per standard uncertainty of pH, times sqrt(2 pi).
     constexpr double root_two_pi = 2.5066;
     weight = prior(MistakeKind::titrant_off) * titrant_factor_share(std::min(low, high), std::max(low, high)) *
@@ -91,15 +92,14 @@ std::optional<Suspect> titrant_error(const Bench& bench, const Plan& plan, const
 
 }  // namespace
 
-std::vector<Suspect> suspects(const Bench& bench, const Plan& plan, const VesselContent& vessel,
-                              const OffBatch& batch) {
+std::vector<Suspect> suspects(const Bench& bench, const Plan& plan, const Contents& contents, const OffBatch& batch) {
     constexpr std::size_t most = 6;
     constexpr std::size_t nearest_when_none = 2;
     const double reading = batch.reading.value();
-    const PH expected = ph_of(bench, vessel.present, plan.request.prepare_at);
+    const PH expected = ph_of(bench, contents.present, plan.request.prepare_at);
     std::vector<Suspect> tried;
     std::array<int, 32> of_kind{};
-    for (Suspect& suspect : single_mistakes(bench, plan, vessel)) {
+    for (Suspect& suspect : single_mistakes(bench, plan, contents)) {
         const bool shows =
             take_reading(bench, suspect) && (suspect.mistake.kind == MistakeKind::meter ||
                                              std::abs(suspect.mistake.reading.value() - expected.value()) > meter_ph);
@@ -116,7 +116,7 @@ std::vector<Suspect> suspects(const Bench& bench, const Plan& plan, const Vessel
                                density(off, mistake.reading_expanded_k2 / 2);
     }
     double weight = 0;
-    if (auto suspect = titrant_error(bench, plan, vessel, batch.reading, weight)) {
+    if (auto suspect = titrant_error(bench, plan, contents, batch.reading, weight)) {
         suspect->mistake.plausibility = weight;
         tried.push_back(std::move(*suspect));
     }
@@ -124,7 +124,7 @@ std::vector<Suspect> suspects(const Bench& bench, const Plan& plan, const Vessel
     for (Suspect& suspect : tried) {
         Mistake& mistake = suspect.mistake;
         if (batch.reading_before) {
-            take_reading_before(bench, plan, vessel, suspect);
+            take_reading_before(bench, plan, contents, suspect);
             const double off = batch.reading_before->value() - mistake.before->value();
             mistake.consistent = mistake.consistent && std::abs(off) <= mistake.reading_expanded_k2;
             mistake.plausibility *= density(off, mistake.reading_expanded_k2 / 2);
@@ -149,20 +149,20 @@ std::vector<Suspect> suspects(const Bench& bench, const Plan& plan, const Vessel
     return tried;
 }
 
-bool impossible_for_titrant(const Bench& bench, const Plan& plan, const VesselContent& vessel, PH reading) {
+bool impossible_for_titrant(const Bench& bench, const Plan& plan, const Contents& contents, PH reading) {
     const auto titrant = titrant_of(bench.table, plan);
     if (!titrant) {
         return false;
     }
-    Suspect none = titrant_off_by(plan, vessel, *titrant, 0.0);
-    Suspect most = titrant_off_by(plan, vessel, *titrant, largest_factor);
+    Suspect none = titrant_off_by(plan, contents, *titrant, 0.0);
+    Suspect most = titrant_off_by(plan, contents, *titrant, largest_factor);
     if (!take_reading(bench, none)) {
         return false;
     }
     const bool most_counts = take_reading(bench, most);
     const double from_none = reading.value() - none.mistake.reading.value();
     const double from_most = reading.value() - most.mistake.reading.value();
-    const bool titrant_lowers = none.mistake.reading > ph_of(bench, vessel.present, plan.request.prepare_at);
+    const bool titrant_lowers = none.mistake.reading > ph_of(bench, contents.present, plan.request.prepare_at);
     return (titrant_lowers ? from_none : -from_none) > none.mistake.reading_expanded_k2 ||
            (most_counts && (titrant_lowers ? -from_most : from_most) > most.mistake.reading_expanded_k2);
 }

@@ -9,22 +9,18 @@
 #include "carboy/error.h"
 #include "carboy/notation.h"
 
+#include "plan/articles.h"
+
 namespace carboy {
 
 namespace {
-
-bool same_chemistry(const Reagent& a, const Reagent& b) {
-    return std::is_permutation(
-        a.supplies.begin(), a.supplies.end(), b.supplies.begin(), b.supplies.end(),
-        [](const Supply& x, const Supply& y) { return x.component == y.component && x.count == y.count; });
-}
 
 /// The article of that chemistry whose strength is the one given, within what a label rounds.
 std::uint16_t article_of_strength(const Table& table, std::uint16_t reagent, Molarity strength) {
     constexpr double rounding = 0.01;
     for (std::size_t i = 0; i < table.reagents.size(); ++i) {
         const Reagent& article = table.reagents[i];
-        if (article.strength_mol_per_L.known() && same_chemistry(article, table.reagents[reagent]) &&
+        if (article.strength_mol_per_L.known() && same_supplies(article, table.reagents[reagent]) &&
             std::abs(article.strength_mol_per_L.value / strength.mol_per_L() - 1) < rounding) {
             return static_cast<std::uint16_t>(i);
         }

@@ -67,8 +67,9 @@ void what_to_do(Page& page, const Adjustment& adjustment, const Table& table) {
         page.paragraph(fmt::format("Then fill to {}, mix and read again: {}.", vessel_text(correction.finished_volume),
                                    ph_text(correction.finished_reading)));
     }
-    if (request.use_at != request.prepare_at) {
-        page.paragraph(fmt::format("Do not correct it further: at {} it then has pH {}.",
+    if (request.use_at != request.prepare_at || request.strength != 1) {
+        page.paragraph(fmt::format("Do not correct it further: {}at {} it then has pH {}.",
+                                   request.strength != 1 ? fmt::format("diluted {:g} times, ", request.strength) : "",
                                    temperature_text(request.use_at), ph_text(correction.predicted.ph)));
     }
 }
@@ -123,10 +124,14 @@ void afterwards(Page& page, const Adjustment& adjustment, const Table& table) {
     page.row(figure_columns, {"", "buffer value",
                               fmt::format("{} (planned {})", molality_text(correction.predicted.buffer_value),
                                           molality_text(planned.buffer_value))});
-    page.row(figure_columns,
-             {"", "if the meter is off by 0.02",
-              fmt::format("{} to {} of it", titrant_amount_text(correction.titrant, correction.least, table),
-                          titrant_amount_text(correction.titrant, correction.most, table))});
+    if (adjustment.plan.request.strength != 1) {
+        page.row(figure_columns, {"", "these at working strength: diluted",
+                                  fmt::format("{:g} times", adjustment.plan.request.strength)});
+    }
+    const std::string least = titrant_amount_text(correction.titrant, correction.least, table);
+    const std::string most = titrant_amount_text(correction.titrant, correction.most, table);
+    page.row(figure_columns, {"", "if the meter is off by 0.02",
+                              least == most ? "no more, no less" : least + " to " + most + " of it"});
 }
 
 /// What would then have to be done, short.
@@ -170,8 +175,12 @@ void causes(Page& page, const Adjustment& adjustment, const Table& table) {
         page.row(cause_columns, {"", mistake_text(mistake, adjustment, table), "", ph_text(mistake.reading), "", share,
                                  "", remedy(mistake, adjustment, table)});
     }
-    if (fits && adjustment.mistakes.size() > 1 &&
-        adjustment.mistakes[1].plausibility > 0.5 * adjustment.mistakes[0].plausibility) {
+    if (fits && adjustment.mistakes.front().kind == MistakeKind::titrant_off) {
+        page.paragraph(
+            "Some amount of titrant explains almost any reading: if it went in as planned, the cause is "
+            "another, or more than one.");
+    } else if (fits && adjustment.mistakes.size() > 1 &&
+               adjustment.mistakes[1].plausibility > 0.5 * adjustment.mistakes[0].plausibility) {
         page.paragraph(
             "The meter alone cannot tell the first of these apart: look at the bottles, the balance record "
             "and the titrant used.");

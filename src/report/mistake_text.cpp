@@ -64,8 +64,11 @@ std::string mistake_text(const Mistake& mistake, const Adjustment& adjustment, c
         case MistakeKind::wrong_volume:
             return fmt::format("filled to {} {}", factor > 1 ? "twice" : "half", "the volume");
         case MistakeKind::set_at_bench:
-            return fmt::format("set to pH {} at {}, where it should be so at {}", ph_text(*request.ph), temperature,
-                               temperature_text(request.use_at));
+            return request.strength != 1
+                       ? fmt::format("set to pH {} undiluted at {}, where it should be so diluted at {}",
+                                     ph_text(*request.ph), temperature, temperature_text(request.use_at))
+                       : fmt::format("set to pH {} at {}, where it should be so at {}", ph_text(*request.ph),
+                                     temperature, temperature_text(request.use_at));
         case MistakeKind::set_at_other_temperature:
             return fmt::format("set to pH {} while it was at {}", ph_text(*request.ph), temperature);
         case MistakeKind::read_at_other_temperature:

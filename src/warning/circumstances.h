@@ -45,9 +45,9 @@ struct Match {
 Circumstances circumstances_of(const Table& table, const Prediction& prediction, const RecipeFacts* recipe);
 
 /// True when every condition holds. Allocates nothing.
-bool applies(const Observation& observation, const Circumstances& circumstances, Match& match);
+bool applies(const Observation& observation, const Circumstances& seen, Match& match);
 
 /// The text with its places filled in.
-std::string filled_in(const Observation& observation, const Circumstances& circumstances, const Match& match);
+std::string filled_in(const Observation& observation, const Circumstances& seen, const Match& match);
 
 }  // namespace carboy

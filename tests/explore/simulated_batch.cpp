@@ -8,6 +8,7 @@
 
 #include "carboy/equilibrium.h"
 #include "carboy/notation.h"
+#include "carboy/request_json.h"
 
 namespace carboy::test {
 
@@ -153,6 +154,55 @@ SimulatedBatch simulate(const Plan& plan, const Mistake& mistake) {
         }
     }
     return {made(items, filled, request.prepare_at), read_at};
+}
+
+const std::vector<Job>& jobs() {
+    static const std::vector<Job> all{{"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C", 22},
+                                      {"50 mM Tris-HCl, pH 8.0 at 37 C", 25},
+                                      {"100 mM sodium phosphate, pH 7.2", 25},
+                                      {"100 mM sodium phosphate, pH 7.0", 25, Route::salts},
+                                      {"20 mM HEPES-KOH, 100 mM KCl, pH 7.4 at 37 C", 22},
+                                      {"0.2 M sodium acetate, pH 5.0", 25},
+                                      {"50 mM sodium citrate, pH 5.5", 25},
+                                      {"100 mM glycine-HCl, pH 2.8", 25},
+                                      {"50 mM sodium borate, pH 9.0", 25},
+                                      {"50 mM MES-NaOH, pH 6.1 at 25 C", 20},
+                                      {"20 mM MOPS-NaOH, pH 7.2 at 4 C", 25},
+                                      {"50 mM potassium phosphate, pH 7.0 at 37 C", 25},
+                                      {"20 mM imidazole-HCl, 200 mM NaCl, pH 7.0", 25},
+                                      {"100 mM sodium bicarbonate, pH 9.5", 25}};
+    return all;
+}
+
+Request request(const Job& job, double litres) {
+    Request made = request_from_label(job.label, bundled_table());
+    made.volume = Volume::litres(litres);
+    made.prepare_at = Temperature::celsius(job.bench_C);
+    made.route = job.route;
+    return made;
+}
+
+Titrant titrant(const char* text) {
+    return read_titrant(text, bundled_table());
+}
+
+Adjustment adjusted(const Plan& plan, double reading, const Titrant& with, std::optional<Volume> not_filled) {
+    OffBatch batch;
+    batch.reading = PH(reading);
+    batch.not_filled = not_filled;
+    return adjust(bundled_table(), plan, batch, with, davies_model());
+}
+
+Titrant needed(const Plan& plan, double reading) {
+    const double expected = ph_at(plan.preparation, plan.request.prepare_at);
+    return titrant(reading > expected ? "1 M HCl" : "1 M NaOH");
+}
+
+Preparation after(const Preparation& before, const Correction& correction, Amount amount, double litres) {
+    Preparation then = before;
+    then.portions.push_back({correction.titrant.reagent, amount, std::nullopt});
+    then.filled_to = Volume::litres(litres + amount.mol() / correction.titrant.strength->mol_per_L());
+    return then;
 }
 
 }  // namespace carboy::test

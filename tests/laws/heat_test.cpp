@@ -30,10 +30,6 @@ TEST_CASE("heat: strong acid and strong base give the heat of formation of water
     const double before = state({{"HCl 1 mol/L", 0.1}}) + state({{"NaOH 1 mol/L", 0.1}});
     const double after = state({{"HCl 1 mol/L", 0.1}, {"NaOH 1 mol/L", 0.1}});
     CHECK((before - after) / 0.1 == Approx(55.8).margin(0.1));
-    // The slope of the ion product's published equation (IAPWS R11-07) says the same by van 't Hoff.
-    const double slope = water_at(Temperature::celsius(26)).pKw - water_at(Temperature::celsius(24)).pKw;
-    const double kelvin = 298.15;
-    CHECK(-8.314462618e-3 * 2.302585093 * kelvin * kelvin * slope / 2 == Approx(55.8).margin(0.5));
 }
 
 TEST_CASE("heat: Tris with hydrochloric acid", "[heat]") {

@@ -1,4 +1,4 @@
-#include "explore/vessel_content.h"
+#include "explore/contents.h"
 
 #include <algorithm>
 #include <cmath>
@@ -37,33 +37,40 @@ std::optional<Titrant> bringing(const Table& table, ComponentId ion) {
 
 }  // namespace
 
-Preparation VesselContent::with(const Table& table, const Titrant& titrant, Amount amount) const {
+Preparation Contents::with(const Table& table, const Titrant& titrant, Amount amount) const {
     Preparation then = present;
     then.filled_to = *present.filled_to + volume_added(table, titrant, amount);
     then.portions.push_back({titrant.reagent, amount, std::nullopt});
     return then;
 }
 
-Preparation VesselContent::finished(const Table& table, const Titrant& titrant, Amount amount) const {
+Preparation Contents::finished(const Table& table, const Titrant& titrant, Amount amount) const {
     Preparation then = with(table, titrant, amount);
     then.filled_to = std::max(*then.filled_to, mark);
     then.portions.insert(then.portions.end(), to_come.begin(), to_come.end());
     return then;
 }
 
-VesselContent planned_vessel(const Table& table, const Plan& plan, std::optional<Volume> not_filled) {
-    VesselContent vessel;
-    vessel.mark = plan.request.volume;
-    vessel.present = plan.preparation;
+Preparation Contents::in_use(const Table& table, const Titrant& titrant, Amount amount) const {
+    Preparation then = finished(table, titrant, amount);
+    then.filled_to = strength * *then.filled_to;
+    return then;
+}
+
+Contents planned_contents(const Table& table, const Plan& plan, std::optional<Volume> not_filled) {
+    Contents contents;
+    contents.mark = plan.request.volume;
+    contents.strength = plan.request.strength;
+    contents.present = plan.preparation;
     if (not_filled) {
-        vessel.present.filled_to = not_filled;
-        vessel.present.portions.clear();
+        contents.present.filled_to = not_filled;
+        contents.present.portions.clear();
         for (const Portion& portion : plan.preparation.portions) {
             const bool last = goes_in_last(table.reagents[portion.reagent], table);
-            (last ? vessel.to_come : vessel.present.portions).push_back(portion);
+            (last ? contents.to_come : contents.present.portions).push_back(portion);
         }
     }
-    return vessel;
+    return contents;
 }
 
 std::optional<PlannedTitrant> titrant_of(const Table& table, const Plan& plan) {
@@ -85,8 +92,9 @@ std::optional<PlannedTitrant> titrant_of(const Table& table, const Plan& plan) {
     }
     const auto& portions = plan.preparation.portions;
     for (std::size_t i = portions.size(); any && i-- > 0;) {
-        if (portions[i].reagent == found.titrant.reagent && portions[i].amount == found.amount) {
+        if (portions[i].reagent == found.titrant.reagent && portions[i].amount) {
             found.portion = i;
+            found.amount = *portions[i].amount;
             const Reagent& reagent = table.reagents[found.titrant.reagent];
             const bool strong =
                 reagent.supplies.size() == 1 && reagent.supplies[0].component.kind == ComponentKind::spectator;

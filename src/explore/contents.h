@@ -10,21 +10,24 @@
 namespace carboy {
 
 /// What stands on the bench: what is in it now, what is still to go in, and the mark it is filled to in the end.
-struct VesselContent {
+struct Contents {
     Preparation present;           ///< at the bench temperature, in its present volume
     std::vector<Portion> to_come;  ///< goes in after the pH is set (azide and its like)
     Volume mark;
+    double strength = 1;  ///< how many times the working strength it is
 
     /// After so much titrant: its volume comes on top.
     Preparation with(const Table& table, const Titrant& titrant, Amount amount) const;
     /// The same, with everything in it and filled to the mark, if it is not over it already.
     Preparation finished(const Table& table, const Titrant& titrant, Amount amount) const;
+    /// The same at working strength, where the target holds.
+    Preparation in_use(const Table& table, const Titrant& titrant, Amount amount) const;
 };
 
 /// The batch as the recipe makes it.
-VesselContent planned_vessel(const Table& table, const Plan& plan, std::optional<Volume> not_filled);
+Contents planned_contents(const Table& table, const Plan& plan, std::optional<Volume> not_filled);
 
-/// The vessel as it was before the titrant: in the volume that the recipe dissolves in, without what goes in last.
+/// The contents as they were before the titrant: in the volume that the recipe dissolves in, without what goes in last.
 Preparation before_titrant(const Table& table, const Plan& plan, const Preparation& present);
 
 /// The titrant of a recipe, if it has one.
