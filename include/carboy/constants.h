@@ -5,6 +5,7 @@
 #include <optional>
 #include <span>
 #include <string_view>
+#include <vector>
 
 #include "carboy/quantity.h"
 
@@ -291,6 +292,27 @@ struct NamedFormula {
     std::string_view note;
 };
 
+/// When an article carries a GHS pictogram. Codes are compared letter by letter.
+struct PictogramRule {
+    std::string_view key;
+    std::string_view code;                         ///< `GHS05`
+    std::string_view name;                         ///< `corrosion`
+    std::span<const std::string_view> statements;  ///< codes of hazard statements, any of which calls for it
+    /// Pictograms and statements of the same article beside which the rule falls away (`GHS06`, `H334`).
+    std::span<const std::string_view> unless;
+    std::uint16_t source;
+    Evidence evidence;
+};
+
+/// A label to print on.
+struct LabelStock {
+    std::string_view name;  ///< `70x36`
+    double width_mm;
+    double height_mm;
+    std::uint16_t source;
+    Evidence evidence;
+};
+
 struct Element {
     std::string_view symbol;
     Figure standard_atomic_weight;
@@ -314,6 +336,8 @@ struct Table {
     std::span<const Element> elements;
     std::span<const HazardStatement> hazards;
     std::span<const Caution> cautions;
+    std::span<const PictogramRule> pictograms;
+    std::span<const LabelStock> label_stock;  ///< the usual one first
     std::span<const Vessel> vessels;
     std::span<const Spectator> spectators;
     std::span<const System> systems;
@@ -342,6 +366,9 @@ const Reagent* find_reagent_by_cas(const Table& table, std::string_view cas);
 const Vessel* find_vessel(const Table& table, std::string_view name);
 /// What the table knows of a trait of a system; nullptr when it says nothing.
 const Fact* find_fact(const Table& table, std::uint16_t system, Trait trait);
+
+/// The pictograms that an article as supplied carries, each code once, in the order of the codes.
+std::vector<const PictogramRule*> pictograms_of(const Reagent& reagent, const Table& table);
 
 ComponentId id_of(const Table& table, const System& system);
 ComponentId id_of(const Table& table, const Spectator& spectator);

@@ -9,6 +9,7 @@
 #include "carboy/plan.h"
 #include "carboy/request_json.h"
 
+#include "cli/bottle_options.h"
 #include "cli/commands.h"
 #include "cli/file.h"
 #include "report/json.h"
@@ -31,6 +32,8 @@ Examples:
   carboy recipe "50 mM acetic acid, pH 5" --volume 1L --format json | jq .weigh
   carboy recipe --request request.json --format json -o recipe.json
   carboy recipe "50 mM Tris-HCl, pH 8" --volume 1L --format html -o tris.html
+  carboy recipe "50 mM Tris-HCl, pH 8" --volume 1L --quiet \
+      --bottle-label tris.svg --made 2026-12-01 --expires 2027-03-01
 
 Masses carry the assay of the table; the meter readings are for the bench
 temperature, the last figure is for the temperature of use.
@@ -51,6 +54,7 @@ struct Options {
     std::string minimum_mass;
     std::string measure_with;
     ShelfOptions shelf;
+    BottleOptions bottle;
     SharedOptions shared;
 };
 
@@ -144,6 +148,9 @@ std::string written(const Plan& plan, const Table& table, const Options& options
     }
     SheetOptions sheet_options;
     sheet_options.bench_temperature_assumed = bench_temperature_assumed;
+    const BottleDates dates = options.bottle.dates();
+    sheet_options.made = dates.made;
+    sheet_options.expires = dates.expires;
     const Sheet sheet = sheet_of(plan, table, sheet_options);
     return format == "html" ? sheet_html(sheet) : format == "markdown" ? sheet_markdown(sheet) : sheet_text(sheet);
 }
@@ -161,12 +168,15 @@ Plan planned(const Shelf& shelf, const Table& table, const Request& request, con
 
 int run(const Options& options) {
     const Table table = table_for(options.shared);
+    const std::string& format = options.shared.format;
+    check_bottle_options(options.bottle, table, format == "html" || format == "markdown" || format == "sheet");
     const ActivityModel& model = options.shared.activity_model();
     Request request = request_of(options, table);
     narrow(request, options, table);
     const auto shelf = shelf_for(options.shelf, table, model);
     const Plan plan = planned(shelf, table, request, model);
     const Table& used = shelf ? shelf->table() : table;
+    write_bottle_label(plan, used, options.bottle);
     write_result(written(plan, used, options), options.shared.output_file);
     return 0;
 }
@@ -197,6 +207,7 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
     app.add_option("--balance", options->balance, "Round masses to what it reads: 0.1mg")->type_name("MASS");
     app.add_option("--minimum-mass", options->minimum_mass, "Least to weigh [100 times that]")->type_name("MASS");
     app.add_option("--measure-with", options->measure_with, "Vessel to round volumes to")->type_name("VESSEL");
+    add_bottle_options(app, options->bottle);
     add_computing_options(app, options->shared);
     app.add_option("--request", options->request_file, "Read a JSON request from FILE, or from -")->type_name("FILE");
     add_output_options(app, options->shared, {"text", "sheet", "markdown", "html", "csv", "json"});

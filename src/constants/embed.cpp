@@ -186,6 +186,15 @@ std::string source_code(const Table& table, std::string_view version) {
         arrays.of("HazardStatement", table.hazards, [&](const HazardStatement& h) { return noted(h, h.code, h.text); });
     const std::string cautions =
         arrays.of("Caution", table.cautions, [&](const Caution& c) { return noted(c, c.key, c.text); });
+    const std::string pictograms = arrays.of("PictogramRule", table.pictograms, [&](const PictogramRule& p) {
+        return fmt::format("{{{}, {}, {}, {}, {}, {}, Evidence{{{}}}}}", quoted(p.key), quoted(p.code), quoted(p.name),
+                           words(arrays, p.statements), words(arrays, p.unless), p.source,
+                           static_cast<int>(p.evidence));
+    });
+    const std::string label_stock = arrays.of("LabelStock", table.label_stock, [](const LabelStock& s) {
+        return fmt::format("{{{}, {}, {}, {}, Evidence{{{}}}}}", quoted(s.name), number(s.width_mm),
+                           number(s.height_mm), s.source, static_cast<int>(s.evidence));
+    });
     const std::string vessels = arrays.of("Vessel", table.vessels, [&](const Vessel& v) { return vessel(arrays, v); });
     const std::string spectators =
         arrays.of("Spectator", table.spectators, [&](const Spectator& s) { return spectator(arrays, s); });
@@ -209,10 +218,11 @@ std::string source_code(const Table& table, std::string_view version) {
         "namespace carboy {{\nnamespace {{\nusing namespace std::literals;\n"
         "constexpr double none = std::numeric_limits<double>::quiet_NaN();\n{}}}  // namespace\n\n"
         "const Table& bundled_table() {{\n"
-        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
+        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, "
+        "nullptr}};\n"
         "    return table;\n}}\n\n}}  // namespace carboy\n",
-        arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, vessels, spectators,
-        systems, reagents, facts, formulas, names, observations);
+        arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, pictograms,
+        label_stock, vessels, spectators, systems, reagents, facts, formulas, names, observations);
 }
 
 int embed(int argc, char** argv) {

@@ -15,8 +15,9 @@ namespace {
 constexpr auto format_word = "carboy-constants/1";
 
 bool head_is_sound(const DocumentNode& node) {
-    if (!node.is_object_with({"schema", "sources", "elements", "hazards", "cautions", "vessels", "spectators",
-                              "systems", "reagents", "formulas", "traits", "observations", "note"})) {
+    if (!node.is_object_with({"schema", "sources", "elements", "hazards", "cautions", "pictograms", "label_stock",
+                              "vessels", "spectators", "systems", "reagents", "formulas", "traits", "observations",
+                              "note"})) {
         return false;
     }
     if (!node.has("schema")) {
@@ -53,9 +54,10 @@ ConstantsOverlay lay_over(const Table& base, const std::vector<ConstantsDocument
     }
     for (const auto section :
          {&TableBuilder::read_sources, &TableBuilder::read_elements, &TableBuilder::read_hazards,
-          &TableBuilder::read_cautions, &TableBuilder::read_vessels, &TableBuilder::read_spectators,
-          &TableBuilder::read_systems, &TableBuilder::read_reagents, &TableBuilder::read_formulas,
-          &TableBuilder::read_traits, &TableBuilder::read_observations}) {
+          &TableBuilder::read_cautions, &TableBuilder::read_pictograms, &TableBuilder::read_label_stock,
+          &TableBuilder::read_vessels, &TableBuilder::read_spectators, &TableBuilder::read_systems,
+          &TableBuilder::read_reagents, &TableBuilder::read_formulas, &TableBuilder::read_traits,
+          &TableBuilder::read_observations}) {
         for (const DocumentNode& node : nodes) {
             (builder.*section)(node);
         }

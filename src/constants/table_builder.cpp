@@ -29,6 +29,8 @@ TableBuilder::TableBuilder(const Table& base)
       elements_(copied(base.elements)),
       hazards_(copied(base.hazards)),
       cautions_(copied(base.cautions)),
+      pictograms_(copied(base.pictograms)),
+      label_stock_(copied(base.label_stock)),
       vessels_(copied(base.vessels)),
       spectators_(copied(base.spectators)),
       systems_(copied(base.systems)),
@@ -266,6 +268,8 @@ Table TableBuilder::finish(std::string version, std::string sha256) {
     table.elements = keep_array(std::move(elements_));
     table.hazards = keep_array(std::move(hazards_));
     table.cautions = keep_array(std::move(cautions_));
+    table.pictograms = keep_array(std::move(pictograms_));
+    table.label_stock = keep_array(std::move(label_stock_));
     table.vessels = keep_array(std::move(vessels_));
     table.spectators = keep_array(std::move(spectators_));
     table.systems = keep_array(std::move(systems_));

@@ -27,6 +27,8 @@ public:
     void read_elements(const DocumentNode& document);
     void read_hazards(const DocumentNode& document);
     void read_cautions(const DocumentNode& document);
+    void read_pictograms(const DocumentNode& document);
+    void read_label_stock(const DocumentNode& document);
     void read_vessels(const DocumentNode& document);
     void read_spectators(const DocumentNode& document);
     void read_systems(const DocumentNode& document);
@@ -90,6 +92,8 @@ private:
     std::vector<Element> elements_;
     std::vector<HazardStatement> hazards_;
     std::vector<Caution> cautions_;
+    std::vector<PictogramRule> pictograms_;
+    std::vector<LabelStock> label_stock_;
     std::vector<Vessel> vessels_;
     std::vector<Spectator> spectators_;
     std::vector<System> systems_;

@@ -129,10 +129,8 @@ void add_result(Sheet& sheet, const Plan& plan, const Table& table) {
 }
 
 void add_notes(Sheet& sheet, const Plan& plan, const SheetOptions& options) {
-    for (const auto* list : {&plan.predicted.warnings, &plan.warnings}) {
-        for (const Warning& warning : *list) {
-            sheet.notes.push_back(warning.message);
-        }
+    for (const Warning& warning : plan.warnings) {
+        sheet.notes.push_back(warning.message);
     }
     if (options.bench_temperature_assumed) {
         sheet.notes.push_back(
