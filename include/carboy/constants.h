@@ -141,6 +141,20 @@ struct Caution {
     Evidence evidence;
 };
 
+/// What a vessel is for: filled to one mark, or read on a scale.
+enum class VesselKind : std::uint8_t { flask, pipette, scale };
+
+/// A piece of glassware or a pipette.
+struct Vessel {
+    std::string_view name;
+    std::span<const std::string_view> names;
+    VesselKind kind;
+    bool at_hand;  ///< benches commonly have it: taken when a recipe needs one that fits
+    Figure capacity_mL;
+    Figure tolerance_mL;  ///< largest permitted error at capacity
+    Figure reads_to_mL;   ///< finest that can be set; of a one-mark vessel its capacity
+};
+
 /// What a buffer does to an experiment, apart from holding its pH.
 enum class Trait : std::uint8_t {
     phosphate,
@@ -200,6 +214,7 @@ struct Table {
     std::span<const Element> elements;
     std::span<const HazardStatement> hazards;
     std::span<const Caution> cautions;
+    std::span<const Vessel> vessels;
     std::span<const Spectator> spectators;
     std::span<const System> systems;
     std::span<const Reagent> reagents;
@@ -217,6 +232,9 @@ const Spectator* find_spectator(const Table& table, std::string_view name);
 const Reagent* find_reagent(const Table& table, std::string_view name);
 /// First reagent with that CAS number whose entry is marked usual, else the first with it; nullptr when there is none.
 const Reagent* find_reagent_by_cas(const Table& table, std::string_view cas);
+
+/// nullptr when no vessel is called so.
+const Vessel* find_vessel(const Table& table, std::string_view name);
 
 /// What the table knows of a trait of a system; nullptr when it says nothing.
 const Fact* find_fact(const Table& table, std::uint16_t system, Trait trait);

@@ -46,12 +46,20 @@ public:
         return *this;
     }
 
+    /// The caller's own id of the request that failed; empty when it gave none.
+    const std::string& id() const { return id_; }
+    Error& with_id(std::string id) {
+        id_ = std::move(id);
+        return *this;
+    }
+
 private:
     ErrorKind kind_;
     std::string code_;
     std::string where_;
     std::string help_;
     Excerpt excerpt_;
+    std::string id_;
 };
 
 }  // namespace carboy

@@ -38,6 +38,7 @@ struct Prediction {
     Molality ionic_strength;
     Molality buffer_value;  ///< per unit of pH, at constant ionic strength
     Molality charge_residual;
+    Molality particles;  ///< sum over all species: the ideal osmolality, a few per cent above that of a real salt
     /// Sum on paper: textbook pK at 25 °C and the ratio of what was put together, no activities, no water. Empty where
     /// such a sum does not apply.
     std::optional<PH> hand_estimate;

@@ -1,6 +1,8 @@
+#include <algorithm>
 #include <array>
 #include <cstdio>
 #include <exception>
+#include <iterator>
 #include <string>
 #include <string_view>
 #include <unistd.h>
@@ -33,6 +35,9 @@ struct Command {
 constexpr std::array commands{
     Command{"recipe", "From a label to what to weigh, measure and read", carboy::cli::declare_recipe},
     Command{"predict", "The pH and the species of a mixture as made", carboy::cli::declare_predict},
+    Command{"series", "A set of buffers across pH, from the same stocks", carboy::cli::declare_series},
+    Command{"shelf", "Check what is on the shelf, and book it off", carboy::cli::declare_shelf},
+    Command{"adjust", "What to do with a batch whose pH is off", carboy::cli::declare_adjust},
     Command{"select", "Rank the buffers for a job, with the reasons", carboy::cli::declare_select},
     Command{"fit", "Constants and strengths from your own readings", carboy::cli::declare_fit},
     Command{"constants", "Look into the constants, or check a file of them", carboy::cli::declare_constants}};
@@ -52,7 +57,7 @@ Not for clinical or parenteral use.
 
 void report(const Error& error, const SharedOptions* shared) {
     if (shared != nullptr && shared->json()) {
-        fmt::print(stderr, "{}\n", carboy::error_json(error, {}).dump());
+        fmt::print(stderr, "{}\n", carboy::error_json(error, error.id()).dump());
         return;
     }
     const bool colour = shared == nullptr || shared->color == "auto"
@@ -78,6 +83,33 @@ Error unknown_command(const std::string& word, const CLI::App& app) {
                          : fmt::format("did you mean {}?", near.front())};
 }
 
+/// Words that are left over, in the order typed: most often a label that stands without quotes.
+Error left_over_error(const CLI::App& app, const std::vector<std::string>& words) {
+    const std::vector<std::string> left = app.remaining(true);
+    std::vector<std::string> unexpected;
+    std::copy_if(words.begin(), words.end(), std::back_inserter(unexpected),
+                 [&](const std::string& word) { return std::find(left.begin(), left.end(), word) != left.end(); });
+    const std::string told =
+        fmt::format("'{}' {} not expected here", fmt::join(unexpected, " "), unexpected.size() == 1 ? "is" : "are");
+    std::vector<std::string> options;
+    for (const CLI::Option* option : app.get_options()) {
+        for (const std::string& name : option->get_lnames()) {
+            options.push_back("--" + name);
+        }
+    }
+    std::string help = usage_of(app);
+    const auto option = std::find_if(unexpected.begin(), unexpected.end(),
+                                     [](const std::string& word) { return word.starts_with('-'); });
+    if (unexpected.size() == 1 && option == unexpected.end()) {
+        help = fmt::format("name the option that it belongs to, as in --volume 1L; {}", help);
+    } else if (option == unexpected.end()) {
+        help = fmt::format("put quotes around what has spaces in it, as in \"50 mM Tris-HCl, pH 8.0\"; {}", help);
+    } else if (const auto near = carboy::nearest_words(*option, options, 1); !near.empty()) {
+        help = fmt::format("did you mean {}? {}", near.front(), help);
+    }
+    return {ErrorKind::input, "usage", told, "command line", help};
+}
+
 /// CLI11's complaint in our form, with the nearest option or command where a word is unknown.
 Error usage_error(const CLI::ParseError& error, const CLI::App& app, const std::vector<std::string>& words) {
     const auto code = static_cast<CLI::ExitCodes>(error.get_exit_code());
@@ -95,24 +127,14 @@ Error usage_error(const CLI::ParseError& error, const CLI::App& app, const std::
             inside = inside || word == app.get_name();
         }
     }
-    std::string told = error.what();
-    std::string help = usage_of(app);
     if (code == CLI::ExitCodes::ExtrasError) {
-        std::vector<std::string> options;
-        for (const CLI::Option* option : app.get_options()) {
-            for (const std::string& name : option->get_lnames()) {
-                options.push_back("--" + name);
-            }
-        }
-        const std::string unknown = told.substr(told.find_last_of(' ') + 1);
-        if (const auto near = carboy::nearest_words(unknown, options, 1); !near.empty()) {
-            help = fmt::format("did you mean {}? {}", near.front(), help);
-        }
+        return left_over_error(app, words);
     }
+    std::string told = error.what();
     while (told.ends_with('.') || told.ends_with('\n')) {
         told.pop_back();
     }
-    return {ErrorKind::input, "usage", told, "command line", help};
+    return {ErrorKind::input, "usage", told, "command line", usage_of(app)};
 }
 
 int run(int argc, char** argv) {

@@ -12,6 +12,7 @@
 #include "carboy/constants_file.h"
 #include "carboy/error.h"
 #include "carboy/notation.h"
+#include "carboy/shelf_file.h"
 
 #include "cli/file.h"
 
@@ -40,9 +41,7 @@ const ActivityModel& SharedOptions::activity_model() const {
 }
 
 void add_output_options(CLI::App& app, SharedOptions& options, const std::vector<std::string>& formats) {
-    const bool two = formats.size() == 2;
-    app.add_option("--format", options.format,
-                   two ? "text for people, json for programs" : fmt::format("{}", fmt::join(formats, ", ")))
+    app.add_option("--format", options.format, fmt::format("{}", fmt::join(formats, ", ")))
         ->check(CLI::IsMember(formats))
         ->type_name("FORMAT")
         ->capture_default_str();
@@ -86,6 +85,47 @@ Table table_for(const SharedOptions& options) {
         }
     }
     return std::move(overlay.table);
+}
+
+void add_shelf_options(CLI::App& app, ShelfOptions& options) {
+    app.add_option("--shelf", options.shelf_file, "Use only what FILE lists as there")->type_name("FILE");
+    app.add_option("--stock", options.stocks, "A solution at hand, such as '0.2 M NaH2PO4'")
+        ->type_name("SOLUTION")
+        ->allow_extra_args(false);
+    app.add_option("--on", options.today, "Date to judge expiry by, as 2026-12-31")->type_name("DATE");
+}
+
+std::optional<Shelf> shelf_for(const ShelfOptions& options, const Table& table, const ActivityModel& model) {
+    std::optional<Shelf> shelf;
+    if (!options.shelf_file.empty()) {
+        ShelfReading reading = read_shelf(table, read_file(options.shelf_file), model, options.shelf_file);
+        if (!reading.faults.empty()) {
+            const ConstantsFault& first = reading.faults.front();
+            throw Error(ErrorKind::data, "invalid_shelf",
+                        fmt::format("{}: {}{}", first.path.empty() ? "document" : first.path, first.message,
+                                    reading.faults.size() > 1 ? fmt::format(" (and {} more)", reading.faults.size() - 1)
+                                                              : std::string()),
+                        options.shelf_file,
+                        fmt::format("'carboy shelf check {}' lists every fault", options.shelf_file));
+        }
+        shelf = std::move(reading.shelf);
+    }
+    if (!options.today.empty()) {
+        const auto today = Date::read(options.today);
+        if (!today) {
+            throw Error(ErrorKind::input, "bad_date", fmt::format("'{}' is no date", options.today), "--on",
+                        "write it as 2026-12-31");
+        }
+        if (!shelf) {
+            throw Error(ErrorKind::input, "usage", "--on judges the dates of a shelf, and there is none", "--on",
+                        "give --shelf too");
+        }
+        shelf->today = today;
+    }
+    if (!options.stocks.empty()) {
+        shelf = with_stocks(table, shelf ? &*shelf : nullptr, options.stocks, model);
+    }
+    return shelf;
 }
 
 }  // namespace carboy::cli

@@ -8,6 +8,7 @@
 #include "carboy/activity.h"
 #include "carboy/constants.h"
 #include "carboy/quantity.h"
+#include "carboy/shelf.h"
 
 namespace CLI {
 class App;
@@ -44,6 +45,17 @@ void add_computing_options(CLI::App& app, SharedOptions& options);
 /// The bundled table, with the user's file laid over it when one is given; what it changed is told on standard error
 /// unless quiet. Throws Error (file or data).
 Table table_for(const SharedOptions& options);
+
+/// What is on the shelf, as typed.
+struct ShelfOptions {
+    std::string shelf_file;
+    std::vector<std::string> stocks;
+    std::string today;
+};
+/// --shelf, --stock, --on.
+void add_shelf_options(CLI::App& app, ShelfOptions& options);
+/// The shelf asked for; none when no option names one. Throws Error (file, data or input).
+std::optional<Shelf> shelf_for(const ShelfOptions& options, const Table& table, const ActivityModel& model);
 
 /// One command: its options are declared on a CLI::App, and it runs later.
 using Action = std::function<int()>;

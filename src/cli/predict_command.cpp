@@ -23,16 +23,19 @@ Examples:
   carboy predict "0.1 M acetic acid" --format json | jq .pH
 
 Masses and volumes need a final 'to V'. Concentrations in mol/kg are per
-kilogram of water and need none.
+kilogram of water and need none. With --shelf, 'bottle ID' is a reagent.
 )";
 
 struct Options {
     std::string mixture;
+    ShelfOptions shelf;
     SharedOptions shared;
 };
 
 int run(const Options& options) {
-    const Table table = table_for(options.shared);
+    const Table constants = table_for(options.shared);
+    const auto shelf = shelf_for(options.shelf, constants, options.shared.activity_model());
+    const Table& table = shelf ? shelf->table() : constants;
     const Temperature bench = options.shared.bench_at().value_or(Temperature{});
     const Preparation preparation = read_mixture(options.mixture, table, bench);
     const Prediction prediction =
@@ -54,6 +57,7 @@ Action declare_predict(CLI::App& app, SharedOptions*& shared) {
     shared = &options->shared;
     app.footer(examples);
     app.add_option("mixture", options->mixture, "What was put together")->required()->type_name("MIXTURE");
+    add_shelf_options(app, options->shelf);
     add_computing_options(app, options->shared);
     add_output_options(app, options->shared);
     return [options] { return run(*options); };

@@ -3,6 +3,7 @@
 #include <CLI/CLI.hpp>
 #include <fmt/format.h>
 
+#include "carboy/constraint_words.h"
 #include "carboy/error.h"
 #include "carboy/notation.h"
 #include "carboy/plan.h"
@@ -35,11 +36,52 @@ struct Options {
     std::string volume;
     std::string route = "any";
     std::string request_file;
+    std::vector<std::string> only;
+    std::vector<std::string> without;
+    std::vector<std::string> use;
+    std::vector<std::string> avoid;
+    std::vector<std::string> hold;
+    std::optional<std::size_t> most_weighings;
+    std::string balance;
+    std::string minimum_mass;
+    std::string measure_with;
+    ShelfOptions shelf;
     SharedOptions shared;
 };
 
-Route route_of(const std::string& word) {
-    return word == "titrated" ? Route::titrated : word == "salts" ? Route::salts : Route::automatic;
+/// What the options add to a request, wherever it came from.
+void narrow(Request& request, const Options& options, const Table& table) {
+    Constraints& constraints = request.constraints;
+    for (const std::string& name : options.only) {
+        allow_only(constraints, read_ion(name, table, "--only"), table);
+    }
+    for (const std::string& name : options.without) {
+        constraints.without.push_back(read_ion(name, table, "--without"));
+    }
+    for (const std::string& name : options.use) {
+        constraints.use.push_back(read_reagent(name, table, "--use"));
+    }
+    for (const std::string& name : options.avoid) {
+        constraints.avoid.push_back(read_reagent(name, table, "--avoid"));
+    }
+    for (const std::string& text : options.hold) {
+        constraints.totals.push_back(read_ion_total(text, table, "--hold"));
+    }
+    if (options.most_weighings) {
+        constraints.most_weighings = options.most_weighings;
+    }
+    if (!options.balance.empty()) {
+        request.balance = read_balance(
+            options.balance,
+            options.minimum_mass.empty() ? std::nullopt : std::optional<std::string_view>(options.minimum_mass),
+            "--balance");
+    } else if (!options.minimum_mass.empty()) {
+        throw Error(ErrorKind::input, "usage", "--minimum-mass belongs to a --balance", "--minimum-mass",
+                    "give the balance's readability, such as --balance 0.1mg");
+    }
+    if (!options.measure_with.empty()) {
+        request.measure_with = read_vessel(options.measure_with, table, "--measure-with");
+    }
 }
 
 /// --at may add a temperature of use to a label that has none, not contradict one.
@@ -65,7 +107,8 @@ Request request_of(const Options& options, const Table& table) {
                         "--request holds the whole request: no label, --volume, --at or --prepare-at beside it",
                         "command line", "write them into the request");
         }
-        return read_request(read_file(options.request_file), table, options.request_file);
+        return read_request(read_file(options.request_file), table,
+                            options.request_file == "-" ? "request" : options.request_file);
     }
     if (options.label.empty() || options.volume.empty()) {
         throw Error(ErrorKind::input, "usage", options.label.empty() ? "a label is missing" : "--volume is missing",
@@ -77,19 +120,34 @@ Request request_of(const Options& options, const Table& table) {
     take_use_temperature(request, options, table);
     request.volume = read_volume(options.volume, "--volume");
     request.prepare_at = options.shared.bench_at().value_or(Temperature{});
-    request.route = route_of(options.route);
+    request.route = route_of(options.route).value_or(Route::automatic);
     return request;
+}
+
+/// An error of the planner carries the request's own id, as one of its reader does.
+template <class Shelf>
+Plan planned(const Shelf& shelf, const Table& table, const Request& request, const ActivityModel& model) {
+    try {
+        return shelf ? plan_recipe(*shelf, request, model) : plan_recipe(table, request, model);
+    } catch (Error& error) {
+        error.with_id(request.id);
+        throw;
+    }
 }
 
 int run(const Options& options) {
     const Table table = table_for(options.shared);
-    const Request request = request_of(options, table);
-    const Plan plan = plan_recipe(table, request, options.shared.activity_model());
+    const ActivityModel& model = options.shared.activity_model();
+    Request request = request_of(options, table);
+    narrow(request, options, table);
+    const auto shelf = shelf_for(options.shelf, table, model);
+    const Plan plan = planned(shelf, table, request, model);
+    const Table& used = shelf ? shelf->table() : table;
     if (options.shared.json()) {
-        write_result(recipe_json(plan, table).dump() + "\n", options.shared.output_file);
+        write_result(recipe_json(plan, used).dump() + "\n", options.shared.output_file);
     } else {
         const TextStyle style{options.shared.colour(), options.shared.explain, options.shared.prepare_at.empty()};
-        write_result(recipe_text(plan, table, style), options.shared.output_file);
+        write_result(recipe_text(plan, used, style), options.shared.output_file);
     }
     return 0;
 }
@@ -102,10 +160,24 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
     app.footer(examples);
     app.add_option("label", options->label, "What is to stand on the bottle")->type_name("LABEL");
     app.add_option("--volume", options->volume, "Volume to make, such as 1L or '250 mL'")->type_name("V");
-    app.add_option("--route", options->route, "any, titrated or salts")
-        ->check(CLI::IsMember({"any", "titrated", "salts"}))
+    app.add_option("--route", options->route, "any, titrated, salts, stocks or dilution")
+        ->check(CLI::IsMember({"any", "titrated", "salts", "stocks", "dilution"}))
         ->type_name("ROUTE")
         ->capture_default_str();
+    add_shelf_options(app, options->shelf);
+    const auto repeatable = [&](const char* name, std::vector<std::string>& values, const char* text,
+                                const char* type) {
+        app.add_option(name, values, text)->type_name(type)->allow_extra_args(false);
+    };
+    repeatable("--only", options->only, "No other ion of its charge, such as sodium", "ION");
+    repeatable("--without", options->without, "Nothing that brings this ion, such as Cl-", "ION");
+    repeatable("--hold", options->hold, "An ion's total, such as 'Na+ = 150 mM'", "TOTAL");
+    repeatable("--use", options->use, "A reagent that must be in it", "REAGENT");
+    repeatable("--avoid", options->avoid, "A reagent that must not", "REAGENT");
+    app.add_option("--max-weighings", options->most_weighings, "At most so many weighings")->type_name("N");
+    app.add_option("--balance", options->balance, "Round masses to what it reads: 0.1mg")->type_name("MASS");
+    app.add_option("--minimum-mass", options->minimum_mass, "Least to weigh [100 times that]")->type_name("MASS");
+    app.add_option("--measure-with", options->measure_with, "Vessel to round volumes to")->type_name("VESSEL");
     add_computing_options(app, options->shared);
     app.add_option("--request", options->request_file, "Read a JSON request from FILE, or from -")->type_name("FILE");
     add_output_options(app, options->shared);

@@ -38,8 +38,8 @@ std::size_t TableBuilder::place(std::vector<Entry>& entries, Entry entry, std::s
                                 const char* kind) {
     // Names are folded as users type them; keys of sources, elements and hazards (H360FD, H360Fd) are taken letter by
     // letter.
-    const bool is_name =
-        std::is_same_v<Entry, Spectator> || std::is_same_v<Entry, System> || std::is_same_v<Entry, Reagent>;
+    const bool is_name = std::is_same_v<Entry, Spectator> || std::is_same_v<Entry, System> ||
+                         std::is_same_v<Entry, Reagent> || std::is_same_v<Entry, Vessel>;
     const auto compared = [&](std::string_view text) { return is_name ? fold_name(text) : std::string(text); };
     const std::string wanted = compared(entry.*key);
     const auto known = std::find_if(entries.begin(), entries.end(),

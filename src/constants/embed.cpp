@@ -130,6 +130,12 @@ std::string reagent(Arrays& arrays, const Reagent& r) {
         indices(arrays, r.cautions), quoted(r.note));
 }
 
+std::string vessel(Arrays& arrays, const Vessel& v) {
+    return fmt::format("{{{}, {}, VesselKind{{{}}}, {}, {}, {}, {}}}", quoted(v.name), words(arrays, v.names),
+                       static_cast<int>(v.kind), v.at_hand, figure(v.capacity_mL), figure(v.tolerance_mL),
+                       figure(v.reads_to_mL));
+}
+
 std::string source_code(const Table& table, std::string_view version) {
     Arrays arrays;
     const auto noted = [](const auto& item, std::string_view first, std::string_view second) {
@@ -146,6 +152,7 @@ std::string source_code(const Table& table, std::string_view version) {
         arrays.of("HazardStatement", table.hazards, [&](const HazardStatement& h) { return noted(h, h.code, h.text); });
     const std::string cautions =
         arrays.of("Caution", table.cautions, [&](const Caution& c) { return noted(c, c.key, c.text); });
+    const std::string vessels = arrays.of("Vessel", table.vessels, [&](const Vessel& v) { return vessel(arrays, v); });
     const std::string spectators =
         arrays.of("Spectator", table.spectators, [&](const Spectator& s) { return spectator(arrays, s); });
     const std::string systems = arrays.of("System", table.systems, [&](const System& s) { return system(arrays, s); });
@@ -164,10 +171,10 @@ std::string source_code(const Table& table, std::string_view version) {
         "namespace carboy {{\nnamespace {{\nusing namespace std::literals;\n"
         "constexpr double none = std::numeric_limits<double>::quiet_NaN();\n{}}}  // namespace\n\n"
         "const Table& bundled_table() {{\n"
-        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
+        "    static constinit const Table table{{{}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, {}, nullptr}};\n"
         "    return table;\n}}\n\n}}  // namespace carboy\n",
-        arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, spectators, systems,
-        reagents, facts, names);
+        arrays.text(), quoted(version), quoted(table.sha256), sources, elements, hazards, cautions, vessels, spectators,
+        systems, reagents, facts, names);
 }
 
 int embed(int argc, char** argv) {

@@ -15,8 +15,8 @@ namespace {
 constexpr auto format_word = "carboy-constants/1";
 
 bool head_is_sound(const DocumentNode& node) {
-    if (!node.is_object_with(
-            {"schema", "sources", "elements", "hazards", "cautions", "spectators", "systems", "reagents", "traits", "note"})) {
+    if (!node.is_object_with({"schema", "sources", "elements", "hazards", "cautions", "vessels", "spectators",
+                              "systems", "reagents", "traits", "note"})) {
         return false;
     }
     if (!node.has("schema")) {
@@ -51,10 +51,10 @@ ConstantsOverlay lay_over(const Table& base, const std::vector<ConstantsDocument
             nodes.push_back(node);
         }
     }
-    for (const auto section : {&TableBuilder::read_sources, &TableBuilder::read_elements, &TableBuilder::read_hazards,
-                               &TableBuilder::read_cautions, &TableBuilder::read_spectators,
-                               &TableBuilder::read_systems, &TableBuilder::read_reagents,
-                               &TableBuilder::read_traits}) {
+    for (const auto section :
+         {&TableBuilder::read_sources, &TableBuilder::read_elements, &TableBuilder::read_hazards,
+          &TableBuilder::read_cautions, &TableBuilder::read_vessels, &TableBuilder::read_spectators,
+          &TableBuilder::read_systems, &TableBuilder::read_reagents, &TableBuilder::read_traits}) {
         for (const DocumentNode& node : nodes) {
             (builder.*section)(node);
         }

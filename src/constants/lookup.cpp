@@ -59,6 +59,18 @@ const Reagent* find_reagent_by_cas(const Table& table, std::string_view cas) {
     return found;
 }
 
+const Vessel* find_vessel(const Table& table, std::string_view name) {
+    const std::string folded = fold_name(name);
+    for (const Vessel& vessel : table.vessels) {
+        const bool other = std::any_of(vessel.names.begin(), vessel.names.end(),
+                                       [&](std::string_view also) { return fold_name(also) == folded; });
+        if (other || fold_name(vessel.name) == folded) {
+            return &vessel;
+        }
+    }
+    return nullptr;
+}
+
 ComponentId id_of(const Table& table, const System& system) {
     return {ComponentKind::system, static_cast<std::uint16_t>(&system - table.systems.data())};
 }

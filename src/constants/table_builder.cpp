@@ -29,6 +29,7 @@ TableBuilder::TableBuilder(const Table& base)
       elements_(copied(base.elements)),
       hazards_(copied(base.hazards)),
       cautions_(copied(base.cautions)),
+      vessels_(copied(base.vessels)),
       spectators_(copied(base.spectators)),
       systems_(copied(base.systems)),
       reagents_(copied(base.reagents)),
@@ -263,6 +264,7 @@ Table TableBuilder::finish(std::string version, std::string sha256) {
     table.elements = keep_array(std::move(elements_));
     table.hazards = keep_array(std::move(hazards_));
     table.cautions = keep_array(std::move(cautions_));
+    table.vessels = keep_array(std::move(vessels_));
     table.spectators = keep_array(std::move(spectators_));
     table.systems = keep_array(std::move(systems_));
     table.reagents = keep_array(std::move(reagents_));

@@ -27,6 +27,7 @@ public:
     void read_elements(const DocumentNode& document);
     void read_hazards(const DocumentNode& document);
     void read_cautions(const DocumentNode& document);
+    void read_vessels(const DocumentNode& document);
     void read_spectators(const DocumentNode& document);
     void read_systems(const DocumentNode& document);
     void read_reagents(const DocumentNode& document);
@@ -81,6 +82,7 @@ private:
     std::vector<Element> elements_;
     std::vector<HazardStatement> hazards_;
     std::vector<Caution> cautions_;
+    std::vector<Vessel> vessels_;
     std::vector<Spectator> spectators_;
     std::vector<System> systems_;
     std::vector<Reagent> reagents_;

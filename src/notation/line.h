@@ -10,7 +10,8 @@ namespace carboy {
 /// A line that a person typed, with the means to point at a part of it.
 class Line {
 public:
-    /// Refuses what cannot be a line of text: empty, longer than 4096 bytes, control characters, broken UTF-8.
+    /// Refuses what cannot be a line of text: empty, longer than 4096 bytes, control characters, broken UTF-8. These
+    /// errors carry no excerpt, because such bytes must not reach a terminal or a JSON document.
     Line(std::string_view text, std::string_view where);
 
     std::string_view text() const { return text_; }
@@ -36,7 +37,18 @@ inline std::string_view text_of(const Line& line, Part part) {
     return line.text().substr(part.begin, part.end - part.begin);
 }
 
-/// The part without spaces around it (ASCII and no-break).
+/// Bytes of the space at the front of the text: blank, tab, or one of the fixed spaces that typography puts between
+/// number and unit; 0 when there is none.
+std::size_t space_length(std::string_view text);
+
+/// The part without spaces around it.
 Part trimmed(const Line& line, Part part);
+
+/// True when the part begins with this lower-case word, in any case, and the word ends there: a space, a digit or
+/// nothing follows.
+bool begins_with_word(const Line& line, Part part, std::string_view word);
+
+/// Lower case of the ASCII letters; everything else, and every position, stays.
+std::string lower_case(std::string_view text);
 
 }  // namespace carboy

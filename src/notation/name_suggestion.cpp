@@ -38,6 +38,9 @@ std::size_t distance(std::string_view a, std::string_view b, std::size_t limit) 
 
 /// A third of the word may be wrong; what begins with all that was typed is near too.
 std::size_t nearness(std::string_view typed, std::string_view known) {
+    if (typed == known) {
+        return 0;
+    }
     const std::size_t limit = std::max<std::size_t>(1, typed.size() / 3);
     if (typed.size() >= 3 && known.starts_with(typed)) {
         return 1;
@@ -88,7 +91,23 @@ std::string spelling(const Table& table, const NameEntry& entry) {
     return {};
 }
 
-/// `Trs-HCl`: where one side of a name is an ion, the other may be a misspelt system.
+/// Entries of a kind near to one side of a name; what was typed right stays as it was typed.
+std::vector<Near> near_side(const Table& table, EntryKind kind, std::string_view side) {
+    const std::string typed = fold_name(side);
+    std::vector<Near> found;
+    for (const NameEntry& entry : table.names) {
+        const std::size_t apart = entry.kind == kind && !typed.empty() ? nearness(typed, entry.key) : std::string::npos;
+        if (apart == 0) {
+            return {{0, std::string(side)}};
+        }
+        if (apart != std::string::npos) {
+            found.push_back({apart, spelling(table, entry)});
+        }
+    }
+    return found;
+}
+
+/// `Trs-HCl`, `soduim phosphate`: where one side of a name is right, the other may be misspelt.
 void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& table) {
     for (std::size_t i = 1; i + 1 < text.size(); ++i) {
         if (text[i] != ' ' && text[i] != '-') {
@@ -96,17 +115,16 @@ void add_with_ion(std::vector<Near>& found, std::string_view text, const Table& 
         }
         const std::string_view left = text.substr(0, i);
         const std::string_view right = text.substr(i + 1);
-        const bool ion_last = find_spectator(table, right) != nullptr;
-        if (!ion_last && find_spectator(table, left) == nullptr) {
-            continue;
-        }
-        const std::string typed = fold_name(ion_last ? left : right);
-        for (const NameEntry& entry : table.names) {
-            const std::size_t apart = entry.kind == EntryKind::system ? nearness(typed, entry.key) : std::string::npos;
-            if (apart != std::string::npos) {
-                const std::string system = spelling(table, entry);
-                found.push_back(
-                    {apart, ion_last ? system + text[i] + std::string(right) : std::string(left) + text[i] + system});
+        for (const bool ion_last : {true, false}) {
+            const auto ions = near_side(table, EntryKind::spectator, ion_last ? right : left);
+            const auto systems = ions.empty() ? ions : near_side(table, EntryKind::system, ion_last ? left : right);
+            for (const Near& ion : ions) {
+                for (const Near& system : systems) {
+                    if (ion.apart == 0 || system.apart == 0) {
+                        found.push_back({ion.apart + system.apart, ion_last ? system.name + text[i] + ion.name
+                                                                            : ion.name + text[i] + system.name});
+                    }
+                }
             }
         }
     }

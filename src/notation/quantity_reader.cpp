@@ -1,291 +1,209 @@
 #include "notation/quantity_reader.h"
 
-#include <array>
+#include <algorithm>
 #include <charconv>
 #include <cmath>
 #include <string>
-#include <vector>
 
 #include <fmt/format.h>
-
-#include "carboy/notation.h"
 
 namespace carboy {
 
 namespace {
 
-struct Unit {
-    std::string_view spelling;
-    QuantityKind kind;
-    double factor;
-    ConcentrationUnit unit = ConcentrationUnit::mol_per_L;
-};
+constexpr std::string_view minus_sign = "\u2212";
+constexpr const char* percent_help = "write % w/v, % v/v or % w/w";
+constexpr std::string_view any_example = "50 mM, 9 g/L, 20 mL, 5 g or 25 C";
 
-constexpr auto molar = ConcentrationUnit::mol_per_L;
-constexpr auto molal = ConcentrationUnit::mol_per_kg;
-constexpr auto grams = ConcentrationUnit::g_per_L;
-
-// As the trade writes them and as UCUM codes. Temperatures have their own rule for kelvin.
-constexpr std::array units{Unit{"M", QuantityKind::concentration, 1, molar},
-                           Unit{"mM", QuantityKind::concentration, 1e-3, molar},
-                           Unit{"uM", QuantityKind::concentration, 1e-6, molar},
-                           Unit{"\u00B5M", QuantityKind::concentration, 1e-6, molar},
-                           Unit{"\u03BCM", QuantityKind::concentration, 1e-6, molar},
-                           Unit{"nM", QuantityKind::concentration, 1e-9, molar},
-                           Unit{"mol/L", QuantityKind::concentration, 1, molar},
-                           Unit{"mol/l", QuantityKind::concentration, 1, molar},
-                           Unit{"mmol/L", QuantityKind::concentration, 1e-3, molar},
-                           Unit{"mmol/l", QuantityKind::concentration, 1e-3, molar},
-                           Unit{"umol/L", QuantityKind::concentration, 1e-6, molar},
-                           Unit{"\u00B5mol/L", QuantityKind::concentration, 1e-6, molar},
-                           Unit{"\u03BCmol/L", QuantityKind::concentration, 1e-6, molar},
-                           Unit{"nmol/L", QuantityKind::concentration, 1e-9, molar},
-                           Unit{"mol/kg", QuantityKind::concentration, 1, molal},
-                           Unit{"mmol/kg", QuantityKind::concentration, 1e-3, molal},
-                           Unit{"umol/kg", QuantityKind::concentration, 1e-6, molal},
-                           Unit{"\u00B5mol/kg", QuantityKind::concentration, 1e-6, molal},
-                           Unit{"\u03BCmol/kg", QuantityKind::concentration, 1e-6, molal},
-                           Unit{"g/L", QuantityKind::concentration, 1, grams},
-                           Unit{"g/l", QuantityKind::concentration, 1, grams},
-                           Unit{"mg/L", QuantityKind::concentration, 1e-3, grams},
-                           Unit{"mg/l", QuantityKind::concentration, 1e-3, grams},
-                           Unit{"mg/mL", QuantityKind::concentration, 1, grams},
-                           Unit{"mg/ml", QuantityKind::concentration, 1, grams},
-                           Unit{"% w/v", QuantityKind::concentration, 10, grams},
-                           Unit{"% v/v", QuantityKind::concentration, 1, ConcentrationUnit::percent_v_v},
-                           Unit{"% w/w", QuantityKind::concentration, 1, ConcentrationUnit::percent_w_w},
-                           Unit{"N", QuantityKind::concentration, 1, ConcentrationUnit::normal},
-                           Unit{"L", QuantityKind::volume, 1},
-                           Unit{"l", QuantityKind::volume, 1},
-                           Unit{"dL", QuantityKind::volume, 0.1},
-                           Unit{"dl", QuantityKind::volume, 0.1},
-                           Unit{"mL", QuantityKind::volume, 1e-3},
-                           Unit{"ml", QuantityKind::volume, 1e-3},
-                           Unit{"uL", QuantityKind::volume, 1e-6},
-                           Unit{"ul", QuantityKind::volume, 1e-6},
-                           Unit{"\u00B5L", QuantityKind::volume, 1e-6},
-                           Unit{"\u00B5l", QuantityKind::volume, 1e-6},
-                           Unit{"\u03BCL", QuantityKind::volume, 1e-6},
-                           Unit{"kg", QuantityKind::mass, 1000},
-                           Unit{"g", QuantityKind::mass, 1},
-                           Unit{"mg", QuantityKind::mass, 1e-3},
-                           Unit{"ug", QuantityKind::mass, 1e-6},
-                           Unit{"\u00B5g", QuantityKind::mass, 1e-6},
-                           Unit{"\u03BCg", QuantityKind::mass, 1e-6},
-                           Unit{"C", QuantityKind::temperature, 1},
-                           Unit{"\u00B0C", QuantityKind::temperature, 1},
-                           Unit{"\u2103", QuantityKind::temperature, 1},
-                           Unit{"Cel", QuantityKind::temperature, 1},
-                           Unit{"K", QuantityKind::temperature, 1},
-                           Unit{"x", QuantityKind::strength, 1},
-                           Unit{"X", QuantityKind::strength, 1},
-                           Unit{"\u00D7", QuantityKind::strength, 1}};
-
-constexpr double zero_celsius_K = 273.15;
-
-bool is_space(char c) {
-    return c == ' ' || c == '\t';
-}
 bool is_digit(char c) {
     return c >= '0' && c <= '9';
 }
 
-/// The unit's letters: up to a space or comma, with `% w/v` kept together.
-Part unit_token(const Line& line, Part part) {
+/// Bytes of the sign at the front, 0 when there is none.
+std::size_t sign_length(std::string_view text) {
+    return text.starts_with('-') || text.starts_with('+') ? 1 : text.starts_with(minus_sign) ? minus_sign.size() : 0;
+}
+
+bool ends_with_space(std::string_view text) {
+    constexpr std::size_t longest_space = 3;  // bytes
+    for (std::size_t length = 1; length <= std::min(longest_space, text.size()); ++length) {
+        if (space_length(text.substr(text.size() - length)) == length) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/// `0,5 M` and `1,000 mL` are one number with a comma in it; `pH 7.4,150 mM NaCl` is two items.
+void refuse_comma(const Line& line, Part number) {
     const auto text = line.text();
-    Part token{part.begin, part.begin};
-    if (token.end < part.end && text[token.end] == '%') {
-        ++token.end;
-        std::size_t next = token.end;
-        while (next < part.end && is_space(text[next])) {
-            ++next;
-        }
-        const auto rest = text.substr(next, part.end - next);
-        for (const std::string_view basis : {"w/v", "v/v", "w/w", "(w/v)", "(v/v)", "(w/w)"}) {
-            if (rest.starts_with(basis)) {
-                token.end = next + basis.size();
-                break;
-            }
-        }
-        return token;
+    if (number.end + 1 >= text.size() || text[number.end] != ',' || !is_digit(text[number.end + 1]) ||
+        text_of(line, number).find_first_of(".eE") != std::string_view::npos) {
+        return;
     }
-    while (token.end < part.end && !is_space(text[token.end]) && text[token.end] != ',' && text[token.end] != ';') {
-        ++token.end;
-    }
-    return token;
+    const std::size_t after = std::min(text.find_first_not_of("0123456789", number.end + 1), text.size());
+    line.fail("decimal_comma", fmt::format("'{}' has a comma in a number", text_of(line, {number.begin, after})),
+              number.begin, after,
+              "write a decimal point, no thousands separators, and a space after a comma between items");
 }
 
-std::string normal_spelling(std::string_view token) {
-    if (!token.starts_with('%')) {
-        return std::string(token);
-    }
-    std::string spelled = "%";
-    for (const char c : token.substr(1)) {
-        if (c == 'w' || c == 'v' || c == '/') {
-            spelled += spelled.size() == 1 ? " " : "";
-            spelled += c;
-        }
-    }
-    return spelled;
-}
-
-const Unit* find_unit(std::string_view token) {
-    const std::string spelled = normal_spelling(token);
-    for (const Unit& unit : units) {
-        if (unit.spelling == spelled) {
-            return &unit;
-        }
-    }
-    return nullptr;
-}
-
-[[noreturn]] void fail_unit(const Line& line, Part number, Part token) {
+/// The error of a token that stands where the unit of `number` should.
+[[noreturn]] void fail_unit(const Line& line, Part number, Part token, std::optional<Expected> expected) {
     const std::string_view typed = text_of(line, token);
-    if (typed == "%") {
-        line.fail("unknown_unit", "'%' does not say of what", token.begin, token.end, "write % w/v, % v/v or % w/w");
+    const std::string_view example = expected ? expected->example : any_example;
+    if (typed.empty()) {
+        line.fail("missing_unit", fmt::format("{} has no unit", text_of(line, number)), number.begin, number.end,
+                  fmt::format("write it like {}", example));
     }
-    std::vector<std::string> spellings;
-    for (const Unit& unit : units) {
-        spellings.emplace_back(unit.spelling);
+    if (typed.find_first_not_of("0123456789.") == std::string_view::npos) {
+        line.fail("not_a_number", fmt::format("'{}' is not one number", text_of(line, {number.begin, token.end})),
+                  number.begin, token.end, "write no space or separator inside a number, and one decimal point");
     }
-    const auto near = nearest_words(typed, spellings);
     line.fail("unknown_unit", fmt::format("'{}' is no unit known here", typed), token.begin, token.end,
-              near.empty() ? fmt::format("write a unit after {}, such as mM, g/L, mL, mg or C", text_of(line, number))
-                           : fmt::format("did you mean {}?", near.front()));
+              unit_help(typed, expected ? std::optional(expected->kind) : std::nullopt, example));
 }
 
 }  // namespace
 
-std::string_view kind_phrase(QuantityKind kind) {
-    constexpr std::array phrases{std::string_view("a concentration"), std::string_view("a volume"),
-                                 std::string_view("a mass"), std::string_view("a temperature"),
-                                 std::string_view("a strength of a named formula")};
-    return phrases[static_cast<std::size_t>(kind)];
-}
-
 bool number_begins(std::string_view text) {
-    if (!text.empty() && (text.front() == '-' || text.front() == '+')) {
-        text.remove_prefix(1);
-    } else if (text.starts_with("\u2212")) {
-        text.remove_prefix(std::string_view("\u2212").size());
-    }
-    if (!text.empty() && text.front() == '.') {
+    text.remove_prefix(sign_length(text));
+    if (text.starts_with('.')) {
         text.remove_prefix(1);
     }
     return !text.empty() && is_digit(text.front());
 }
 
-double read_number(const Line& line, Part& part, bool may_be_negative) {
+double read_number(const Line& line, Part& part) {
     const auto text = line.text();
     const std::size_t start = part.begin;
     if (!number_begins(text_of(line, part))) {
-        const Part token = part.empty() ? Part{part.begin, part.begin} : unit_token(line, part);
-        line.fail(
-            "not_a_number",
-            part.empty() ? "a number is expected here" : fmt::format("'{}' is not a number", text_of(line, token)),
-            token.begin, token.end, "write it as 7.4 or 1e-3");
+        const std::size_t end =
+            part.empty() ? part.begin : part.begin + std::max<std::size_t>(unit_length(text_of(line, part)), 1);
+        line.fail("not_a_number",
+                  part.empty() ? "a number is expected here"
+                               : fmt::format("'{}' is not a number", text_of(line, {start, end})),
+                  start, end, "write it as 7.4 or 1e-3");
     }
-    bool negative = false;
-    constexpr std::string_view minus_sign = "\u2212";
-    if (text_of(line, part).starts_with(minus_sign)) {
-        negative = true;
-        part.begin += minus_sign.size();
-    } else if (text[part.begin] == '-' || text[part.begin] == '+') {
-        negative = text[part.begin] == '-';
-        ++part.begin;
-    }
+    const bool negative = text[start] != '+' && sign_length(text_of(line, part)) > 0;
+    part.begin += sign_length(text_of(line, part));
     double value = 0;
     const auto [end, error] = std::from_chars(text.data() + part.begin, text.data() + part.end, value);
     part.begin = static_cast<std::size_t>(end - text.data());
+    const Part number{start, part.begin};
     if (error == std::errc::result_out_of_range || !std::isfinite(value)) {
-        line.fail("number_out_of_range",
-                  fmt::format("'{}' is too large or too small a number", text.substr(start, part.begin - start)), start,
-                  part.begin);
+        line.fail("number_out_of_range", fmt::format("'{}' is too large or too small a number", text_of(line, number)),
+                  number.begin, number.end, "write a number such as 7.4 or 1e-3");
     }
-    if (part.begin + 1 < text.size() && text[part.begin] == ',' && is_digit(text[part.begin + 1])) {
-        std::size_t after = part.begin + 1;
-        while (after < text.size() && is_digit(text[after])) {
-            ++after;
-        }
-        // `7.4,150 mM` is two items; `0,5 M` and `1,000 mL` are one number with a comma in it.
-        const std::string_view so_far = text.substr(start, part.begin - start);
-        if (so_far.find('.') == std::string_view::npos && so_far.find('e') == std::string_view::npos) {
-            line.fail("decimal_comma", fmt::format("'{}' has a comma in a number", text.substr(start, after - start)),
-                      start, after,
-                      "write a decimal point, no thousands separators, and a space after a comma between items");
-        }
-    }
-    if (negative && value != 0 && !may_be_negative) {
-        line.fail("negative_quantity", fmt::format("'{}' is negative", text.substr(start, part.begin - start)), start,
-                  part.begin, "amounts are zero or more");
-    }
-    return negative ? -value : value;
+    refuse_comma(line, number);
+    return negative && value != 0 ? -value : value;
 }
 
-ReadQuantity read_quantity(const Line& line, Part& part) {
+PH read_ph_number(const Line& line, Part& part) {
+    constexpr double lowest = -2;
+    constexpr double highest = 16;
+    const std::size_t start = part.begin;
+    const double value = read_number(line, part);
+    if (!(value >= lowest && value <= highest)) {
+        line.fail("ph_out_of_range", fmt::format("pH {:g} is outside {:g} to {:g}", value, lowest, highest), start,
+                  part.begin, "write it like pH 7.4");
+    }
+    return PH(value);
+}
+
+ReadQuantity read_quantity(const Line& line, Part& part, std::optional<Expected> expected,
+                           std::optional<Expected> likely) {
     ReadQuantity quantity;
     const std::size_t start = part.begin;
-    const double value = read_number(line, part, true);
+    const double value = read_number(line, part);
     quantity.number = {start, part.begin};
-    while (!part.empty() && is_space(line.text()[part.begin])) {
-        ++part.begin;
-    }
-    const Part token = unit_token(line, part);
-    if (token.empty()) {
-        line.fail("missing_unit", fmt::format("{} has no unit", text_of(line, quantity.number)), quantity.number.begin,
-                  quantity.number.end, "write one after it, such as mM, g/L, mL, mg or C");
-    }
+    part = trimmed(line, part);
+    const Part token{part.begin, part.begin + unit_length(text_of(line, part))};
     const Unit* unit = find_unit(text_of(line, token));
     if (unit == nullptr) {
-        fail_unit(line, quantity.number, token);
+        fail_unit(line, quantity.number, token, expected ? expected : likely);
     }
+    quantity.bare_percent = text_of(line, token) == "%";
+    if (quantity.bare_percent && expected) {
+        line.fail("unknown_unit", "'%' does not say of what", token.begin, token.end, percent_help);
+    }
+    part.begin = token.end;
+    quantity.whole = {start, token.end};
     quantity.kind = unit->kind;
-    quantity.unit = unit->unit;
-    quantity.value = value * unit->factor;
-    if (unit->spelling == "K") {
-        quantity.value -= zero_celsius_K;
+    quantity.unit = unit->concentration;
+    quantity.value = value * unit->factor / unit->divisor;
+    if (expected) {
+        expect_kind(line, quantity, *expected);
     }
     if (unit->kind != QuantityKind::temperature && value < 0) {
         line.fail("negative_quantity", fmt::format("'{}' is negative", text_of(line, quantity.number)),
                   quantity.number.begin, quantity.number.end, "amounts are zero or more");
     }
-    if (unit->kind == QuantityKind::temperature && quantity.value < -zero_celsius_K) {
-        line.fail("temperature_out_of_range",
-                  fmt::format("'{}' is below absolute zero", text_of(line, quantity.number)), quantity.number.begin,
-                  token.end);
+    if (unit->kind == QuantityKind::temperature) {
+        const Temperature temperature =
+            unit->spelling == "K" ? Temperature::kelvin(value) : Temperature::celsius(value);
+        quantity.value = temperature.celsius();
+        if (!(temperature.kelvin() > 0)) {
+            line.fail("temperature_out_of_range",
+                      fmt::format("'{}' is not above absolute zero", text_of(line, quantity.whole)),
+                      quantity.whole.begin, quantity.whole.end, "write it like 25 C");
+        }
     }
-    part.begin = token.end;
-    quantity.whole = {start, token.end};
     return quantity;
 }
 
-std::optional<ReadQuantity> read_trailing_quantity(const Line& line, Part& part) {
-    const auto text = line.text();
-    for (std::size_t at = part.end; at > part.begin + 1; --at) {
-        const std::size_t begin = at - 1;
-        if (!is_space(text[begin - 1]) || !number_begins(text.substr(begin, part.end - begin))) {
+std::optional<ReadQuantity> read_trailing_quantity(const Line& line, Part& part, std::optional<Expected> likely) {
+    constexpr int longest_quantity = 3;  // words: `0.9 % w/v`
+    std::optional<Error> fault;
+    int words = 0;
+    for (std::size_t begin = part.end; begin-- > part.begin + 1 && words < longest_quantity;) {
+        const std::string_view before = line.text().substr(part.begin, begin - part.begin);
+        const bool word_begins = space_length(text_of(line, {begin, part.end})) == 0 && ends_with_space(before);
+        words += word_begins ? 1 : 0;
+        if (!word_begins || !number_begins(text_of(line, {begin, part.end}))) {
             continue;
         }
         Part rest{begin, part.end};
         try {
-            ReadQuantity quantity = read_quantity(line, rest);
-            if (rest.empty()) {
+            const ReadQuantity quantity = read_quantity(line, rest, std::nullopt, likely);
+            if (trimmed(line, rest).empty()) {
                 part = trimmed(line, {part.begin, begin});
                 return quantity;
             }
-        } catch (const Error&) {
-            continue;  // not a quantity after all: part of the name
+        } catch (const Error& error) {
+            if (!fault) {
+                fault = error;
+            }
         }
+    }
+    if (fault) {
+        throw Error(*fault);
     }
     return std::nullopt;
 }
 
-void expect_kind(const Line& line, const ReadQuantity& quantity, QuantityKind expected, std::string_view example) {
-    if (quantity.kind != expected) {
+void expect_kind(const Line& line, const ReadQuantity& quantity, Expected expected) {
+    if (quantity.kind != expected.kind) {
         line.fail("wrong_quantity",
                   fmt::format("'{}' is {}; {} is expected here", text_of(line, quantity.whole),
-                              kind_phrase(quantity.kind), kind_phrase(expected)),
-                  quantity.whole.begin, quantity.whole.end, fmt::format("write it like {}", example));
+                              kind_phrase(quantity.kind), kind_phrase(expected.kind)),
+                  quantity.whole.begin, quantity.whole.end, fmt::format("write it like {}", expected.example));
+    }
+}
+
+void expect_percent_of_solid(const Line& line, const ReadQuantity& quantity, const Reagent& reagent) {
+    if (quantity.bare_percent && reagent.state != State::solid) {
+        line.fail("unknown_unit",
+                  fmt::format("'{}' does not say of what, and {} is a {}", text_of(line, quantity.whole), reagent.name,
+                              reagent.state == State::liquid ? "liquid" : "solution"),
+                  quantity.whole.begin, quantity.whole.end, "write % v/v or % w/v");
+    }
+}
+
+void expect_end(const Line& line, Part rest, std::string_view belongs_to, std::string_view help) {
+    rest = trimmed(line, rest);
+    if (!rest.empty()) {
+        line.fail("trailing_text", fmt::format("'{}' does not belong to {}", text_of(line, rest), belongs_to),
+                  rest.begin, rest.end, std::string(help));
     }
 }
 

@@ -1,5 +1,3 @@
-#include <cmath>
-
 #include <fmt/format.h>
 
 #include "carboy/notation.h"
@@ -13,74 +11,63 @@ namespace carboy {
 namespace {
 
 /// A text that is one quantity and nothing else.
-ReadQuantity read_only(const Line& line, QuantityKind expected, std::string_view example) {
+ReadQuantity read_only(const Line& line, Expected expected) {
     Part part = trimmed(line, {0, line.text().size()});
-    const ReadQuantity quantity = read_quantity(line, part);
-    expect_kind(line, quantity, expected, example);
-    part = trimmed(line, part);
-    if (!part.empty()) {
-        line.fail("trailing_text",
-                  fmt::format("'{}' does not belong to {}", text_of(line, part), kind_phrase(expected)), part.begin,
-                  part.end, fmt::format("write it like {}", example));
-    }
+    const ReadQuantity quantity = read_quantity(line, part, expected);
+    expect_end(line, part, kind_phrase(expected.kind), fmt::format("write it like {}", expected.example));
     return quantity;
 }
 
-void expect_positive(const Line& line, const ReadQuantity& quantity) {
+void expect_positive(const Line& line, const ReadQuantity& quantity, std::string_view example) {
     if (!(quantity.value > 0)) {
-        line.fail("zero_quantity", fmt::format("{} must be more than zero", kind_phrase(quantity.kind)),
-                  quantity.whole.begin, quantity.whole.end);
+        line.fail(
+            "zero_quantity",
+            fmt::format("'{}': {} must be more than zero", text_of(line, quantity.whole), kind_phrase(quantity.kind)),
+            quantity.whole.begin, quantity.whole.end, fmt::format("write it like {}", example));
     }
 }
 
 }  // namespace
 
 Volume read_volume(std::string_view text, std::string_view where) {
-    const Line line(text, where);
-    const ReadQuantity quantity = read_only(line, QuantityKind::volume, "500 mL");
-    expect_positive(line, quantity);
+    constexpr Expected expected{QuantityKind::volume, "500 mL"};
     constexpr double largest_L = 1e5;
     constexpr double smallest_L = 1e-9;
+    const Line line(text, where);
+    const ReadQuantity quantity = read_only(line, expected);
+    expect_positive(line, quantity, expected.example);
     if (quantity.value > largest_L || quantity.value < smallest_L) {
         line.fail("number_out_of_range", fmt::format("a volume of {:g} L is outside 1 nL to 100000 L", quantity.value),
-                  quantity.whole.begin, quantity.whole.end);
+                  quantity.whole.begin, quantity.whole.end, "write it like 500 mL");
     }
     return Volume::litres(quantity.value);
 }
 
 Temperature read_temperature(std::string_view text, std::string_view where) {
     const Line line(text, where);
-    return Temperature::celsius(read_only(line, QuantityKind::temperature, "25 C").value);
+    return Temperature::celsius(read_only(line, {QuantityKind::temperature, "25 C"}).value);
 }
 
 Mass read_mass(std::string_view text, std::string_view where) {
+    constexpr Expected expected{QuantityKind::mass, "10 g"};
     const Line line(text, where);
-    const ReadQuantity quantity = read_only(line, QuantityKind::mass, "10 g");
-    expect_positive(line, quantity);
+    const ReadQuantity quantity = read_only(line, expected);
+    expect_positive(line, quantity, expected.example);
     return Mass::grams(quantity.value);
 }
 
 Concentration read_concentration(std::string_view text, std::string_view where) {
     const Line line(text, where);
-    const ReadQuantity quantity = read_only(line, QuantityKind::concentration, "50 mM");
+    const ReadQuantity quantity = read_only(line, {QuantityKind::concentration, "50 mM"});
     return {quantity.value, quantity.unit};
 }
 
 PH read_ph(std::string_view text, std::string_view where) {
     const Line line(text, where);
     Part part = trimmed(line, {0, text.size()});
-    const std::size_t start = part.begin;
-    const double value = read_number(line, part, true);
-    const std::size_t end = part.begin;
-    part = trimmed(line, part);
-    if (!part.empty()) {
-        line.fail("trailing_text", fmt::format("'{}' does not belong to a pH", text_of(line, part)), part.begin,
-                  part.end, "a pH has no unit: 7.4");
-    }
-    if (!(value >= -2 && value <= 16)) {
-        line.fail("ph_out_of_range", fmt::format("pH {:g} is outside -2 to 16", value), start, end);
-    }
-    return PH(value);
+    const PH ph = read_ph_number(line, part);
+    expect_end(line, part, "a pH", "a pH has no unit: 7.4");
+    return ph;
 }
 
 }  // namespace carboy

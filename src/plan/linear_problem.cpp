@@ -25,7 +25,7 @@ Mixture shape_of(const Table& table, const Preparation& fixed, const std::vector
         add(reagent);
     }
     for (const auto& total : totals) {
-        shape.add(total.system, Molality{});
+        shape.add(total.component, Molality{});
     }
     return shape;
 }
@@ -134,7 +134,7 @@ bool LinearProblem::solve_once(const std::vector<std::uint16_t>& columns, std::v
         for (const auto& [part, count] : terms_of(columns[column])) {
             const ComponentId component = shape_.parts()[part].component;
             for (std::size_t row = 0; row < totals_.size(); ++row) {
-                if (totals_[row].system == component) {
+                if (totals_[row].component == component) {
                     at(row, column) += count;
                 }
             }
@@ -153,6 +153,11 @@ bool LinearProblem::solve_once(const std::vector<std::uint16_t>& columns, std::v
     for (const Portion& portion : fixed_.portions) {
         const double mol = portion.amount ? portion.amount->mol() : portion.molality->mol_per_kg() * water_kg_;
         for (const auto& [part, count] : terms_of(portion.reagent)) {
+            for (std::size_t row = 0; row < totals_.size(); ++row) {
+                if (totals_[row].counts_fixed && totals_[row].component == shape_.parts()[part].component) {
+                    at(row, size) -= mol * count;
+                }
+            }
             charge += mol * count * solver_.mean_charge(part);
             half_squares += 0.5 * mol * count * solver_.mean_square_charge(part);
         }

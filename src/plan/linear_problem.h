@@ -19,11 +19,12 @@ namespace carboy {
 /// coefficients and the mass of water depend on the answer: it is solved again until the amounts repeat.
 class LinearProblem {
 public:
-    /// A buffer's total: moles in the finished volume, or per kilogram of its water.
+    /// Total of a buffer or of a strong ion: moles in the finished volume, or per kilogram of its water.
     struct Total {
-        ComponentId system;
+        ComponentId component;
         double value = 0;
         bool per_kg_water = false;
+        bool counts_fixed = false;  ///< what `fixed` brings of it is part of the total
     };
 
     /// `fixed` are the additives; `volume` and `filled_at` give the water; components that may occur are those of

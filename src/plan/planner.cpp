@@ -2,41 +2,27 @@
 #include <array>
 #include <cmath>
 #include <optional>
-#include <tuple>
 #include <vector>
 
 #include <fmt/format.h>
 
+#include "carboy/equilibrium.h"
 #include "carboy/error.h"
 #include "carboy/plan.h"
 
+#include "plan/articles.h"
+#include "plan/bottle_warnings.h"
 #include "plan/candidates.h"
+#include "plan/dilution.h"
+#include "plan/draft.h"
 #include "plan/linear_problem.h"
+#include "plan/portioning.h"
 #include "plan/shortfall.h"
 #include "plan/staging.h"
 
 namespace carboy {
 
 namespace {
-
-/// The amounts that a candidate asks for.
-struct Solved {
-    const Candidate* candidate = nullptr;
-    std::vector<std::uint16_t> columns;
-    LinearProblem::Answer answer;
-};
-
-std::vector<std::uint16_t> columns_of(const Candidate& candidate) {
-    std::vector<std::uint16_t> columns;
-    for (const Chemistry* form : candidate.forms) {
-        columns.push_back(form->articles.front());
-    }
-    columns.push_back(candidate.extra->articles.front());
-    if (candidate.salt != nullptr) {
-        columns.push_back(candidate.salt->articles.front());
-    }
-    return columns;
-}
 
 /// Rounding noise of an amount that should be none.
 bool negative(double mol, double largest) {
@@ -47,23 +33,6 @@ bool feasible(const LinearProblem::Answer& answer) {
     const double largest = *std::max_element(answer.amounts_mol.begin(), answer.amounts_mol.end());
     return std::none_of(answer.amounts_mol.begin(), answer.amounts_mol.end(),
                         [&](double mol) { return negative(mol, largest); });
-}
-
-/// Lower is better: usual counter-ions, then articles that benches keep, then few weighings, then little titrant, then
-/// little of everything.
-std::tuple<std::size_t, int, int, double, double> rank(const Solved& solved, const Table& table) {
-    const auto& amounts = solved.answer.amounts_mol;
-    const std::size_t extra = solved.candidate->forms.size();
-    double total = 0;
-    for (const double mol : amounts) {
-        total += std::max(mol, 0.0);
-    }
-    int rare = 0;
-    for (const std::uint16_t column : solved.columns) {
-        rare += table.reagents[column].rarely_stocked ? 1 : 0;
-    }
-    const bool titrated = solved.candidate->route == Route::titrated;
-    return {solved.candidate->set, rare, titrated ? 0 : 1, titrated ? amounts[extra] : 0.0, total};
 }
 
 void check(const Request& request) {
@@ -82,169 +51,401 @@ void check(const Request& request) {
     }
 }
 
-Preparation additives_of(const Table& table, const Request& request) {
+/// A label that itself asks for what the constraints rule out.
+void check_conflicts(const Request& request, const Table& table) {
+    const Constraints& constraints = request.constraints;
+    const auto conflict = [&](std::string_view asked, std::string_view ruled_out) {
+        return Error(ErrorKind::no_recipe, "constraint_conflict",
+                     fmt::format("the label asks for {}, and {} is ruled out", asked, ruled_out), "constraints",
+                     "change the label, or leave the constraint out");
+    };
+    for (const ComponentId ion : constraints.without) {
+        for (const AdditiveItem& item : request.additives) {
+            if (count_of(table.reagents[item.reagent], ion) > 0) {
+                throw conflict(table.reagents[item.reagent].name, name_of(table, ion));
+            }
+        }
+        for (const BufferItem& buffer : request.buffers) {
+            if (buffer.counter_ion == ion) {
+                throw conflict(fmt::format("{} with {}", name_of(table, buffer.system), name_of(table, ion)),
+                               name_of(table, ion));
+            }
+        }
+    }
+    for (const std::uint16_t avoided : constraints.avoid) {
+        for (const AdditiveItem& item : request.additives) {
+            if (item.reagent == avoided) {
+                throw conflict(table.reagents[avoided].name, "that article");
+            }
+        }
+    }
+}
+
+/// What the label adds besides its buffers, at the working strength.
+Preparation additives_of(const Stockroom& stockroom, const Request& request) {
+    const Table& table = stockroom.table();
     Preparation fixed;
-    fixed.filled_to = request.volume;
+    fixed.filled_to = request.strength * request.volume;
     fixed.filled_at = request.prepare_at;
     for (const AdditiveItem& item : request.additives) {
         Portion portion;
         portion.reagent = item.reagent;
         if (item.concentration.unit == ConcentrationUnit::mol_per_kg) {
-            portion.molality = Molality::mol_per_kg(item.concentration.value);
+            portion.molality = Molality::mol_per_kg(item.concentration.value / request.strength);
         } else {
-            portion.amount = amount_in(item.concentration, request.volume, table.reagents[item.reagent], table);
+            const Amount amount = amount_in(item.concentration, request.volume, table.reagents[item.reagent], table);
+            const Share taken = stockroom.stand_in({item.reagent, amount}, request.volume);
+            portion.reagent = taken.reagent;
+            portion.amount = taken.amount;
         }
         fixed.portions.push_back(portion);
     }
     return fixed;
 }
 
+LinearProblem::Total total_of(const Request& request, ComponentId component, const Concentration& concentration,
+                              bool counts_additives) {
+    const bool molal = concentration.unit == ConcentrationUnit::mol_per_kg;
+    return {component, concentration.value * (molal ? 1 / request.strength : request.volume.L()), molal,
+            counts_additives};
+}
+
 std::vector<LinearProblem::Total> totals_of(const Request& request) {
     std::vector<LinearProblem::Total> totals;
     for (const BufferItem& buffer : request.buffers) {
-        const bool molal = buffer.concentration.unit == ConcentrationUnit::mol_per_kg;
-        totals.push_back({buffer.system, buffer.concentration.value * (molal ? 1.0 : request.volume.L()), molal});
+        totals.push_back(total_of(request, buffer.system, buffer.concentration, false));
+    }
+    for (const auto& total : request.constraints.totals) {
+        totals.push_back(total_of(request, total.ion, total.concentration, true));
     }
     return totals;
 }
 
-/// Best candidate, or an Error that says in the bench's words why there is none.
-Solved choose(LinearProblem& problem, const Table& table, const std::vector<Candidate>& all,
-              const Shortfall& shortfall) {
+std::vector<Share> moles_of(const Preparation& fixed, Mass water) {
+    std::vector<Share> moles;
+    for (const Portion& portion : fixed.portions) {
+        moles.push_back({portion.reagent,
+                         portion.amount ? *portion.amount : Amount::mol(portion.molality->mol_per_kg() * water.kg())});
+    }
+    return moles;
+}
+
+/// The best draft of every route.
+class Choice {
+public:
+    Choice(const Stockroom& stockroom, const Request& request) : stockroom_(stockroom), request_(request) {}
+
+    void offer(std::optional<Draft> draft, const Candidate* candidate) {
+        if (!draft || !keeps_constraints(*draft)) {
+            return;
+        }
+        auto& best = best_[static_cast<std::size_t>(draft->route)];
+        if (!best || better(*draft, best->draft)) {
+            best = Kept{std::move(*draft), candidate};
+        }
+    }
+
+    struct Kept {
+        Draft draft;
+        const Candidate* candidate = nullptr;  ///< none: the draft is exact already
+    };
+    const Kept* of(Route route) const {
+        const auto& best = best_[static_cast<std::size_t>(route)];
+        return best ? &*best : nullptr;
+    }
+    const Kept* best() const {
+        if (request_.route != Route::automatic) {
+            return of(request_.route);
+        }
+        const Kept* found = nullptr;
+        for (const auto& kept : best_) {
+            if (kept && (found == nullptr || better(kept->draft, found->draft))) {
+                found = &*kept;
+            }
+        }
+        return found;
+    }
+    bool any_before(std::size_t set) const {
+        const Kept* found = best();
+        return found != nullptr && found->draft.set < set;
+    }
+    /// Fewest weighings of a draft that only had too many; none when there was no such.
+    std::optional<int> fewest_weighings() const { return fewest_weighings_; }
+    bool lacked_what_was_asked_for() const { return lacked_use_; }
+
+private:
+    bool keeps_constraints(const Draft& draft) {
+        const Constraints& constraints = request_.constraints;
+        const int weighings = draft.weighings + draft.stocks_to_make;
+        if (constraints.most_weighings && weighings > static_cast<int>(*constraints.most_weighings)) {
+            fewest_weighings_ = std::min(fewest_weighings_.value_or(weighings), weighings);
+            return false;
+        }
+        for (const std::uint16_t wanted : constraints.use) {
+            const bool used = std::any_of(draft.ingredients.begin(), draft.ingredients.end(), [&](const auto& item) {
+                const Bottle* bottle =
+                    stockroom_.shelf() != nullptr ? stockroom_.shelf()->bottle(item.reagent) : nullptr;
+                return item.reagent == wanted || (bottle != nullptr && bottle->article == wanted);
+            });
+            if (!used) {
+                lacked_use_ = true;
+                return false;
+            }
+        }
+        return true;
+    }
+
+    const Stockroom& stockroom_;
+    const Request& request_;
+    std::array<std::optional<Kept>, 5> best_;
+    std::optional<int> fewest_weighings_;
+    bool lacked_use_ = false;
+};
+
+Error constraint_error(const Choice& choice, const Request& request, const Table& table) {
+    if (choice.fewest_weighings()) {
+        return {ErrorKind::no_recipe, "too_many_weighings",
+                fmt::format("it cannot be done with {} weighings: the least is {}", *request.constraints.most_weighings,
+                            *choice.fewest_weighings()),
+                "constraints", "allow more, or put stock solutions on the shelf"};
+    }
+    return {ErrorKind::no_recipe, "unused_reagent",
+            fmt::format("no recipe for this label has a place for {}",
+                        table.reagents[request.constraints.use.front()].name),
+            "constraints", "check that it brings the buffer with the label's counter-ion, or leave it out"};
+}
+
+/// The routes besides the chosen one, best first, with the reason for each place.
+void rank_ways(Plan& plan, const Choice& choice, const Stockroom& stockroom) {
+    std::vector<const Choice::Kept*> kept;
+    for (const Route route : {Route::titrated, Route::salts, Route::stocks, Route::dilution}) {
+        if (const auto* found = choice.of(route)) {
+            kept.push_back(found);
+        }
+    }
+    std::sort(kept.begin(), kept.end(), [](const auto* a, const auto* b) { return better(a->draft, b->draft); });
+    for (const auto* one : kept) {
+        plan.ways.push_back({one->draft.route, in_words(one->draft, stockroom.table()), true});
+    }
+    const auto impossible = [&](Route route, const char* reason) {
+        if (choice.of(route) == nullptr) {
+            plan.ways.push_back({route, reason, false});
+        }
+    };
+    impossible(Route::titrated, "no form of the buffer and strong acid or base lead there");
+    impossible(Route::salts, "no two forms of the buffer lead there");
+    impossible(Route::stocks, "no two forms of the buffer lead there");
+    impossible(Route::dilution, stockroom.shelf() != nullptr ? "no bottle of the same buffer is on the shelf"
+                                                             : "needs a shelf with a stock of the same buffer");
+}
+
+void offer_all(Choice& choice, LinearProblem& problem, const Stockroom& stockroom, const Request& request,
+               const Preparation& fixed, const std::vector<Candidate>& all) {
     constexpr double good_enough_to_rank = 1e-4;
-    std::optional<Solved> best;
     for (const Candidate& candidate : all) {
-        if (best && candidate.set > best->candidate->set) {
+        if (choice.any_before(candidate.set)) {
             break;
         }
-        Solved solved{&candidate, columns_of(candidate), {}};
-        auto answer = problem.solve(solved.columns, good_enough_to_rank);
+        const auto answer = problem.solve(candidate.columns(), good_enough_to_rank);
         if (!answer || !feasible(*answer)) {
             continue;
         }
-        solved.answer = std::move(*answer);
-        if (!best || rank(solved, table) < rank(*best, table)) {
-            best = std::move(solved);
+        const auto additives = additive_ingredients(stockroom, request, moles_of(fixed, answer->water));
+        if (!additives) {
+            continue;
+        }
+        const auto offer = [&](Route route) {
+            choice.offer(draft_of(stockroom, request, candidate, answer->amounts_mol, *additives, route), &candidate);
+        };
+        if (request.route == Route::automatic || request.route == Route::stocks) {
+            offer(Route::stocks);
+        }
+        if (request.route != Route::stocks) {
+            offer(candidate.titrated ? Route::titrated : Route::salts);
         }
     }
-    if (!best) {
-        throw shortfall.explain();
-    }
-    constexpr double exact = 1e-13;
-    best->answer = problem.solve(best->columns, exact).value();
-    if (!best->answer.settled) {
-        throw Error(ErrorKind::defect, "not_converged", "the amounts of the recipe did not settle", "plan",
-                    "please report the label");
-    }
-    return std::move(*best);
 }
 
-void add_to_plan(Plan& plan, const Table& table, std::uint16_t reagent, Purpose purpose, Amount amount) {
-    if (!(amount.mol() > 0)) {
-        return;
-    }
-    const Reagent& article = table.reagents[reagent];
-    plan.preparation.portions.push_back({reagent, amount, std::nullopt});
-    if (article.strength_mol_per_L.known()) {
-        const Molarity strength = Molarity::mol_per_L(article.strength_mol_per_L.value);
-        plan.measure.push_back(
-            {reagent, purpose, amount, strength, Volume::litres(amount.mol() / strength.mol_per_L())});
-    } else {
-        const double assay = article.assay.known() ? article.assay.value : 1.0;
-        plan.weigh.push_back(
-            {reagent, purpose, amount, Mass::grams(amount.mol() * article.molar_mass_g_per_mol / assay)});
-    }
-}
-
-/// A recipe without a pH target: everything is weighed as the label says.
-void plan_as_written(Plan& plan, const Table& table, const Preparation& fixed) {
-    const Composed composed = compose(table, fixed);
-    for (const Portion& portion : fixed.portions) {
-        const Amount amount =
-            portion.amount ? *portion.amount : Amount::mol(portion.molality->mol_per_kg() * composed.water.kg());
-        add_to_plan(plan, table, portion.reagent, Purpose::additive, amount);
-    }
-    plan.route = Route::salts;
-}
-
-void plan_to_ph(Plan& plan, const Table& table, const Preparation& fixed, const ActivityModel& model) {
+void plan_to_ph(Plan& plan, const Stockroom& stockroom, const Preparation& fixed, const ActivityModel& model) {
     const Request& request = plan.request;
-    const auto sets = counter_ion_sets(table, request);
-    const auto all = candidates(sets, request);
-    const Shortfall shortfall(table, request, fixed, sets, model);
-    if (all.empty()) {
-        throw shortfall.no_reagents();
+    const Table& table = stockroom.table();
+    const auto sets = counter_ion_sets(stockroom, request);
+    const auto all = candidates(sets, request, table);
+    const Shortfall shortfall(stockroom, request, fixed, sets, model);
+    Choice choice(stockroom, request);
+    if (request.route == Route::automatic || request.route == Route::dilution) {
+        for (Draft& draft : dilutions(stockroom, request, fixed, sets, model)) {
+            choice.offer(std::move(draft), nullptr);
+        }
     }
     std::vector<std::uint16_t> reagents;
     for (const Candidate& candidate : all) {
-        for (const std::uint16_t column : columns_of(candidate)) {
-            reagents.push_back(column);
-        }
+        const auto columns = candidate.columns();
+        reagents.insert(reagents.end(), columns.begin(), columns.end());
     }
     LinearProblem problem(table, fixed, totals_of(request), reagents, *request.ph, request.use_at, model);
     if (request.ionic_strength) {
         problem.ask_ionic_strength(*request.ionic_strength);
     }
-    const Solved solved = choose(problem, table, all, shortfall);
-    const Candidate& chosen = *solved.candidate;
-    plan.route = chosen.route;
-    plan.counter_ions = sets[chosen.set].choices;
+    offer_all(choice, problem, stockroom, request, fixed, all);
+    const Choice::Kept* best = choice.best();
+    if (best == nullptr) {
+        if (choice.fewest_weighings() || choice.lacked_what_was_asked_for()) {
+            throw constraint_error(choice, request, table);
+        }
+        throw shortfall.explain(all.empty());
+    }
+    Draft draft = best->draft;
+    if (best->candidate != nullptr) {
+        constexpr double exact = 1e-13;
+        const auto answer = problem.solve(best->candidate->columns(), exact);
+        if (!answer || !answer->settled) {
+            throw Error(ErrorKind::defect, "not_converged", "the amounts of the recipe did not settle", "plan",
+                        "please report the label");
+        }
+        const auto additives = additive_ingredients(stockroom, request, moles_of(fixed, answer->water));
+        const Route route = draft.route == Route::stocks ? Route::stocks
+                            : best->candidate->titrated  ? Route::titrated
+                                                         : Route::salts;
+        auto exactly = additives
+                           ? draft_of(stockroom, request, *best->candidate, answer->amounts_mol, *additives, route)
+                           : std::nullopt;
+        if (!exactly) {  // the shelf holds a hair less than the exact amount
+            throw shortfall.explain(false);
+        }
+        draft = std::move(*exactly);
+        plan.counter_ions = sets[best->candidate->set].choices;
+    } else {
+        plan.counter_ions = draft.counter_ions;
+    }
+    plan.route = draft.route;
+    if (request.route == Route::automatic) {
+        rank_ways(plan, choice, stockroom);
+    }
+    portion(plan, draft, stockroom);
+}
 
-    const auto amount = [&](std::size_t column) {
-        return Amount::mol(std::max(solved.answer.amounts_mol[column], 0.0));
-    };
-    const std::size_t extra = chosen.forms.size();
-    for (std::size_t column = 0; column < extra; ++column) {
-        add_to_plan(plan, table, solved.columns[column], Purpose::buffer, amount(column));
+/// A recipe without a pH target: everything is weighed as the label says.
+void plan_as_written(Plan& plan, const Stockroom& stockroom, const Preparation& fixed, const ActivityModel& model) {
+    const auto moles = moles_of(fixed, compose(stockroom.table(), fixed).water);
+    if (!plan.request.constraints.totals.empty()) {
+        throw Error(ErrorKind::input, "missing_ph",
+                    "an ion's total is held beside a buffer at its pH, and the label has none", "constraints",
+                    "write the salt's amount on the label");
     }
-    if (chosen.route == Route::salts) {
-        add_to_plan(plan, table, solved.columns[extra], Purpose::buffer, amount(extra));
+    auto additives = additive_ingredients(stockroom, plan.request, moles);
+    if (!additives) {
+        throw Shortfall(stockroom, plan.request, fixed, {}, model).explain(true);
     }
-    if (chosen.salt != nullptr) {
-        add_to_plan(plan, table, solved.columns[extra + 1], Purpose::ionic_strength, amount(extra + 1));
+    Draft draft;
+    draft.ingredients = std::move(*additives);
+    plan.route = Route::salts;
+    portion(plan, draft, stockroom);
+}
+
+void check_room(const Plan& plan, const Table& table) {
+    Volume measured;
+    for (const Measurement& item : plan.measure) {
+        measured += item.volume;
     }
-    for (const Portion& portion : fixed.portions) {
-        add_to_plan(
-            plan, table, portion.reagent, Purpose::additive,
-            portion.amount ? *portion.amount : Amount::mol(portion.molality->mol_per_kg() * solved.answer.water.kg()));
+    constexpr double most_titrant = 0.75;
+    if (!plan.measure.empty() && plan.measure.back().purpose == Purpose::titrant &&
+        plan.measure.back().volume > most_titrant * plan.request.volume) {
+        const Measurement& titrant = plan.measure.back();
+        throw Error(ErrorKind::no_recipe, "no_room_for_titrant",
+                    fmt::format("even {} would take {:.0f} % of the volume to bring this to pH {:.2f}",
+                                table.reagents[titrant.reagent].name, 100 * (titrant.volume / plan.request.volume),
+                                plan.request.ph->value()),
+                    "label", "ask for a lower concentration, or use the route 'salts'");
     }
-    if (chosen.route == Route::titrated) {
-        const std::uint16_t article = article_to_titrate_with(table, *chosen.extra, amount(extra), request.volume);
-        add_to_plan(plan, table, article, Purpose::titrant, amount(extra));
-        if (!plan.measure.empty() && plan.measure.back().volume > 0.75 * request.volume) {
-            throw Error(ErrorKind::no_recipe, "no_room_for_titrant",
-                        fmt::format("even {} would take {:.0f} % of the volume to bring this to pH {:.2f}",
-                                    table.reagents[article].name, 100 * (plan.measure.back().volume / request.volume),
-                                    request.ph->value()),
-                        "label", "ask for a lower concentration, or use the route 'salts'");
+    if (measured > 1.0001 * plan.request.volume) {
+        throw Error(ErrorKind::no_recipe, "stocks_too_dilute",
+                    fmt::format("the solutions alone would make {:.0f} % of the volume",
+                                100 * (measured / plan.request.volume)),
+                    "label", "ask for a lower concentration, or use stronger stocks");
+    }
+}
+
+/// What rounding changes: the exact recipe is planned beside it.
+void compare_with_exact(Plan& plan, const Table& table, const Preparation& exact, const ActivityModel& model) {
+    Rounding rounding;
+    const Composed composed = compose(table, exact);
+    EquilibriumSolver solver(table, composed.mixture, plan.request.use_at, model);
+    solver.solve();
+    rounding.ph = plan.predicted.ph.value() - solver.ph().value();
+    for (std::size_t i = 0; i < exact.portions.size(); ++i) {
+        const double change = *plan.preparation.portions[i].amount / *exact.portions[i].amount - 1;
+        if (std::abs(change) > std::abs(rounding.largest_relative)) {
+            rounding.largest_relative = change;
+            rounding.largest_reagent = exact.portions[i].reagent;
         }
     }
+    plan.rounding = rounding;
+}
+
+Preparation diluted(const Preparation& preparation, double times) {
+    Preparation working = preparation;
+    working.filled_to = times * *preparation.filled_to;
+    return working;
+}
+
+Plan plan_with(const Stockroom& stockroom, const Request& request, const ActivityModel& model) {
+    const Table& table = stockroom.table();
+    check(request);
+    check_conflicts(request, table);
+    Plan plan;
+    plan.request = request;
+    plan.shelf_sha256 = stockroom.shelf() != nullptr ? stockroom.shelf()->sha256 : std::string();
+    plan.preparation.filled_to = request.volume;
+    plan.preparation.filled_at = request.prepare_at;
+    const Preparation fixed = additives_of(stockroom, request);
+    if (request.ph) {
+        plan_to_ph(plan, stockroom, fixed, model);
+    } else {
+        plan_as_written(plan, stockroom, fixed, model);
+    }
+    const Composed composed = compose(table, plan.preparation);
+    check_room(plan, table);
+    plan.volume_neglected = composed.volume_neglected;
+    if (request.strength == 1) {
+        plan.predicted = predict(table, composed.mixture, request.use_at, model);
+    } else {
+        plan.as_bottled = predict(table, composed.mixture, request.use_at, model);
+        plan.predicted =
+            predict(table, compose(table, diluted(plan.preparation, request.strength)).mixture, request.use_at, model);
+    }
+    if (request.balance || request.measure_with) {
+        Request exact = request;
+        exact.balance.reset();
+        exact.measure_with.reset();
+        const Plan unrounded = plan_with(stockroom, exact, model);
+        compare_with_exact(plan, table, diluted(unrounded.preparation, request.strength), model);
+    }
+    stage(plan, table, model);
+    warn_of_bottles(plan, stockroom);
+    return plan;
 }
 
 }  // namespace
 
+constexpr std::array route_words{std::string_view("any"), std::string_view("titrated"), std::string_view("salts"),
+                                 std::string_view("stocks"), std::string_view("dilution")};
+
 std::string_view route_word(Route route) {
-    constexpr std::array words{std::string_view("any"), std::string_view("titrated"), std::string_view("salts")};
-    return words[static_cast<std::size_t>(route)];
+    return route_words[static_cast<std::size_t>(route)];
+}
+
+std::optional<Route> route_of(std::string_view word) {
+    const auto* const known = std::find(route_words.begin(), route_words.end(), word);
+    return known == route_words.end() ? std::nullopt : std::optional(static_cast<Route>(known - route_words.begin()));
 }
 
 Plan plan_recipe(const Table& table, const Request& request, const ActivityModel& model) {
-    check(request);
-    Plan plan;
-    plan.request = request;
-    plan.preparation.filled_to = request.volume;
-    plan.preparation.filled_at = request.prepare_at;
-    const Preparation fixed = additives_of(table, request);
-    if (request.ph) {
-        plan_to_ph(plan, table, fixed, model);
-    } else {
-        plan_as_written(plan, table, fixed);
-    }
-    const Composed composed = compose(table, plan.preparation);
-    plan.volume_neglected = composed.volume_neglected;
-    plan.predicted = predict(table, composed.mixture, request.use_at, model);
-    stage(plan, table, model);
-    return plan;
+    return plan_with(Stockroom(table, request.constraints, nullptr), request, model);
+}
+
+Plan plan_recipe(const Shelf& shelf, const Request& request, const ActivityModel& model) {
+    return plan_with(Stockroom(shelf.table(), request.constraints, &shelf), request, model);
 }
 
 std::vector<std::uint16_t> reagents_used(const Plan& plan) {

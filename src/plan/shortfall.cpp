@@ -6,18 +6,11 @@
 
 #include "carboy/equilibrium.h"
 
+#include "plan/articles.h"
+
 namespace carboy {
 
 namespace {
-
-double count_of(const Reagent& reagent, ComponentId component) {
-    for (const Supply& supply : reagent.supplies) {
-        if (supply.component == component) {
-            return supply.count;
-        }
-    }
-    return 0;
-}
 
 /// Charge that a form leaves to protons per mole of its system: the lower, the more acid.
 double basicity(const Reagent& reagent, ComponentId system) {
@@ -94,13 +87,144 @@ std::optional<Error> Shortfall::ionic_strength_too_low() const {
     return std::nullopt;
 }
 
+/// The same label without the counter-ions it names, when the shelf can make that.
+std::string Shortfall::counter_ions_that_would_do(const Shelf& shelf) const {
+    Request freely = request_;
+    bool named = false;
+    for (BufferItem& buffer : freely.buffers) {
+        named = named || buffer.counter_ion;
+        buffer.counter_ion.reset();
+        buffer.named_form.reset();
+    }
+    if (!named) {
+        return {};
+    }
+    try {
+        std::string words;
+        for (const CounterIonChoice& choice : plan_recipe(shelf, freely, model_).counter_ions) {
+            words += fmt::format("{}{} with {}", words.empty() ? "" : ", ", name_of(table_, choice.system),
+                                 name_of(table_, choice.counter_ion));
+        }
+        return words;
+    } catch (const Error&) {
+        return {};
+    }
+}
+
+/// With a shelf that is all there is: what the recipe from the whole table would take and the shelf does not hold.
+std::optional<Error> Shortfall::short_on_shelf() const {
+    const Shelf* shelf = stockroom_.shelf();
+    if (shelf == nullptr || !shelf->complete()) {
+        return std::nullopt;
+    }
+    Table whole = table_;
+    whole.reagents = table_.reagents.first(table_.reagents.size() - shelf->bottles().size());
+    Request open = request_;
+    if (open.route == Route::dilution) {
+        open.route = Route::automatic;
+    }
+    std::optional<Plan> plan;
+    try {
+        plan = plan_recipe(whole, open, model_);
+    } catch (const Error&) {
+        return std::nullopt;  // no shelf would do; the reason is told instead
+    }
+    std::string missing;
+    std::string instead;
+    for (const Portion& portion : plan->preparation.portions) {
+        const Reagent& wanted = table_.reagents[portion.reagent];
+        bool enough = false;
+        Amount there;
+        std::string held;
+        for (const Bottle& bottle : shelf->bottles()) {
+            if (!same_supplies(table_.reagents[bottle.reagent], wanted)) {
+                continue;
+            }
+            const auto left = shelf->left(bottle);
+            enough = enough || !left;
+            there += left.value_or(Amount{});
+            held += (held.empty() ? "" : ", ") + bottle.id;
+        }
+        if (enough || there >= *portion.amount) {
+            continue;
+        }
+        const auto grams = [&](Amount amount) {
+            return is_solution(wanted) ? fmt::format("{:.4g} mL", 1e3 * amount.mol() / wanted.strength_mol_per_L.value)
+                                       : fmt::format("{:.4g} g", amount.mol() * wanted.molar_mass_g_per_mol);
+        };
+        missing += missing.empty() ? "" : "; ";
+        missing += held.empty() ? fmt::format("{} is not there ({} needed)", wanted.name, grams(*portion.amount))
+                                : fmt::format("{} is short: {} needed, {} left in {}", wanted.name,
+                                              grams(*portion.amount), grams(there), held);
+        for (const Bottle& bottle : shelf->bottles()) {
+            const Reagent& other = table_.reagents[bottle.reagent];
+            const bool brings_the_same =
+                std::any_of(wanted.supplies.begin(), wanted.supplies.end(), [&](const Supply& s) {
+                    return s.component.kind == ComponentKind::system && count_of(other, s.component) > 0;
+                });
+            if (brings_the_same && !same_supplies(other, wanted)) {
+                instead += fmt::format("{}{} ({})", instead.empty() ? "" : ", ", other.name, bottle.id);
+            }
+        }
+    }
+    if (missing.empty()) {
+        return std::nullopt;
+    }
+    if (const std::string other = counter_ions_that_would_do(*shelf); !other.empty()) {
+        instead = other;
+    }
+    return Error(ErrorKind::no_recipe, "short_on_shelf", fmt::format("the shelf cannot make this: {}", missing),
+                 "shelf",
+                 instead.empty() ? "get what is missing, make less, or leave --shelf out to see the recipe"
+                                 : fmt::format("what else would do: {}", instead));
+}
+
+Error Shortfall::no_dilution() const {
+    return {ErrorKind::no_recipe, "no_stock_to_dilute",
+            stockroom_.shelf() == nullptr
+                ? fmt::format("the route 'dilution' needs a stock of {} to dilute", buffer_names())
+                : fmt::format("no bottle on the shelf holds {} in these proportions, strong enough to dilute",
+                              buffer_names()),
+            "label", "name one with --stock, as in --stock '1 M Tris-HCl, pH 8', or put it on the shelf"};
+}
+
+std::optional<Error> Shortfall::ion_total_too_low() const {
+    if (request_.constraints.totals.empty()) {
+        return std::nullopt;
+    }
+    Request without = request_;
+    without.constraints.totals.clear();
+    try {
+        const Plan plan = plan_recipe(table_, without, model_);
+        for (const auto& total : request_.constraints.totals) {
+            const bool molal = total.concentration.unit == ConcentrationUnit::mol_per_kg;
+            double mol = 0;
+            for (const Portion& portion : plan.preparation.portions) {
+                mol += portion.amount->mol() * count_of(table_.reagents[portion.reagent], total.ion);
+            }
+            const double least = mol / (molal ? compose(table_, plan.preparation).water.kg() : request_.volume.L());
+            if (least > total.concentration.value) {
+                const std::string_view unit = molal ? "mol/kg" : "mol/L";
+                return Error(
+                    ErrorKind::no_recipe, "unreachable_total",
+                    fmt::format("{:.4g} {} {} in all cannot be kept: the buffer and the additives bring {:.4g} {}",
+                                total.concentration.value, unit, name_of(table_, total.ion), least, unit),
+                    "constraints", fmt::format("ask for at least {:.4g} {}, or for less buffer", least, unit));
+            }
+        }
+    } catch (const Error&) {
+        // The pH itself is out of reach; that is told instead.
+    }
+    return std::nullopt;
+}
+
 Error Shortfall::no_reagents() const {
     for (const CounterIonSet& set : sets_) {
         for (std::size_t b = 0; b < set.forms.size(); ++b) {
             if (set.forms[b].empty()) {
                 return {
                     ErrorKind::no_recipe, "no_reagent",
-                    fmt::format("the table has no reagent that brings {} with {} or nothing beside it",
+                    fmt::format("there is no reagent that brings {} with {} or nothing beside it",
                                 name_of(table_, set.choices[b].system), name_of(table_, set.choices[b].counter_ion)),
                     "label", "name another counter-ion, or add the reagent with --constants"};
             }
@@ -118,7 +242,19 @@ Error Shortfall::no_reagents() const {
             "label", "name another counter-ion, or use the route 'salts'"};
 }
 
-Error Shortfall::explain() const {
+Error Shortfall::explain(bool nothing_to_try) const {
+    if (auto error = short_on_shelf()) {
+        return *error;
+    }
+    if (request_.route == Route::dilution) {
+        return no_dilution();
+    }
+    if (nothing_to_try) {
+        return no_reagents();
+    }
+    if (auto error = ion_total_too_low()) {
+        return *error;
+    }
     if (auto error = ionic_strength_too_low()) {
         return *error;
     }

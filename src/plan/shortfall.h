@@ -14,16 +14,24 @@ namespace carboy {
 /// Why there is no recipe, in the words of the bench: on which side the pH lies, and what would reach it.
 class Shortfall {
 public:
-    Shortfall(const Table& table, const Request& request, const Preparation& fixed,
+    Shortfall(const Stockroom& stockroom, const Request& request, const Preparation& fixed,
               const std::vector<CounterIonSet>& sets, const ActivityModel& model)
-        : table_(table), request_(request), fixed_(fixed), sets_(sets), model_(model) {}
+        : stockroom_(stockroom),
+          table_(stockroom.table()),
+          request_(request),
+          fixed_(fixed),
+          sets_(sets),
+          model_(model) {}
 
-    /// No basic solution is non-negative.
-    Error explain() const;
-    /// There are not even reagents to try.
-    Error no_reagents() const;
+    /// `nothing_to_try`: there are not even reagents; else no basic solution is without a negative amount.
+    Error explain(bool nothing_to_try) const;
 
 private:
+    std::optional<Error> short_on_shelf() const;
+    std::string counter_ions_that_would_do(const Shelf& shelf) const;
+    Error no_dilution() const;
+    Error no_reagents() const;
+    std::optional<Error> ion_total_too_low() const;
     std::optional<Error> ionic_strength_too_low() const;
     /// Weakest or strongest form of each buffer with the label's additives and nothing else: what the meter would show.
     struct Limit {
@@ -33,6 +41,7 @@ private:
     std::optional<Limit> limit(const CounterIonSet& set, bool acid) const;
     std::string buffer_names() const;
 
+    const Stockroom& stockroom_;
     const Table& table_;
     const Request& request_;
     const Preparation& fixed_;

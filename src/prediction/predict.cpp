@@ -64,6 +64,7 @@ Prediction predict(const Table& table, const Mixture& mixture, Temperature tempe
         const std::string_view owner = species.part == EquilibriumSolver::water_part
                                            ? std::string_view("water")
                                            : name_of(table, solver.component(species.part));
+        prediction.particles += species.molality;
         prediction.species.push_back(
             {owner, species.formula, species.charge, species.molality, species.activity_coefficient});
     }

@@ -32,6 +32,14 @@ std::string mass_text(Mass mass) {
     return fmt::format("{} µg", fixed(grams * 1e6, 4));
 }
 
+std::string weighed_text(Mass mass, Mass readability) {
+    const int decimals = std::clamp(static_cast<int>(std::ceil(-std::log10(readability.g()) - 1e-9)), 0, 9);
+    if (mass.g() >= 1.0 || decimals < 3) {
+        return fmt::format("{:.{}f} g", mass.g(), decimals);
+    }
+    return fmt::format("{:.{}f} mg", mass.g() * 1e3, decimals - 3);
+}
+
 std::string volume_text(Volume volume) {
     const double millilitres = volume.mL();
     if (millilitres >= 1000.0) {
@@ -68,6 +76,15 @@ std::string plain_number(double value, int significant) {
 
 std::string molality_text(Molality molality) {
     return fmt::format("{} mol/kg", plain_number(molality.mol_per_kg()));
+}
+
+std::string osmolality_text(Molality particles) {
+    return fmt::format("{:.3g} osmol/kg", particles.mol_per_kg());
+}
+
+std::string strength_text(Molarity strength) {
+    const double value = strength.mol_per_L();
+    return value < 0.01 ? fmt::format("{:.4g} mmol/L", value * 1e3) : fmt::format("{:.4g} mol/L", value);
 }
 
 std::string concentration_text(const Concentration& concentration) {

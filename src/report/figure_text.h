@@ -12,6 +12,8 @@ namespace carboy {
 
 /// `6.057 g`, `372.2 mg`, `1250.1 g`: at least four significant digits, a unit that avoids leading zeros.
 std::string mass_text(Mass mass);
+/// A mass as the balance shows it: to its readability.
+std::string weighed_text(Mass mass, Mass readability);
 /// `34.5 mL`, `250 µL`, `1.200 L`: three to four significant digits.
 std::string volume_text(Volume volume);
 /// A nominal volume as a vessel is marked: `1 L`, `500 mL`.
@@ -22,8 +24,12 @@ std::string ph_text(PH ph);
 std::string temperature_text(Temperature temperature);
 /// `0.1000 mol/kg`, four significant digits.
 std::string molality_text(Molality molality);
+/// `0.5 mol/L`: a stock's strength, up to four significant digits.
+std::string strength_text(Molarity strength);
 /// `50 mM`, `0.9 % w/v`, `0.1 mol/kg`.
 std::string concentration_text(const Concentration& concentration);
+/// `0.29 osmol/kg`: moles of particles, two to three significant digits.
+std::string osmolality_text(Molality particles);
 /// Four significant digits without an exponent where that is readable.
 std::string plain_number(double value, int significant = 4);
 

@@ -73,6 +73,38 @@ std::string_view unit_code(ConcentrationUnit unit) {
     return {};
 }
 
+/// What narrows the recipe; keys only where something does, so that ids of plain requests stay as they are.
+void add_constraints(json& canonical, const Request& request, const Table& table) {
+    const Constraints& constraints = request.constraints;
+    const auto names = [&](const char* key, const std::vector<std::uint16_t>& reagents) {
+        for (const std::uint16_t reagent : reagents) {
+            canonical[key].push_back(table.reagents[reagent].name);
+        }
+    };
+    names("use", constraints.use);
+    names("avoid", constraints.avoid);
+    for (const ComponentId ion : constraints.without) {
+        canonical["without"].push_back(name_of(table, ion));
+    }
+    for (const auto& total : constraints.totals) {
+        canonical["totals"].push_back({{"ion", name_of(table, total.ion)},
+                                       {"concentration", total.concentration.value},
+                                       {"unit", unit_code(total.concentration.unit)}});
+    }
+    if (constraints.most_weighings) {
+        canonical["most_weighings"] = *constraints.most_weighings;
+    }
+    if (request.balance) {
+        canonical["balance_g"] = {request.balance->readability.g(), request.balance->minimum.g()};
+    }
+    if (request.measure_with) {
+        canonical["measure_with"] = table.vessels[*request.measure_with].name;
+    }
+    if (request.strength != 1) {
+        canonical["strength"] = request.strength;
+    }
+}
+
 /// The request as understood, whatever its spelling was; keys sorted.
 json canonical_request(const Plan& plan, const Table& table) {
     const Request& request = plan.request;
@@ -99,6 +131,7 @@ json canonical_request(const Plan& plan, const Table& table) {
                    {"volume_L", request.volume.L()},
                    {"route", route_word(request.route)},
                    {"activity_model", plan.predicted.activity_model}};
+    add_constraints(canonical, request, table);
     if (request.ph) {
         canonical["pH"] = request.ph->value();
     }
@@ -132,15 +165,49 @@ std::string_view purpose_code(Purpose purpose) {
             return "additive";
         case Purpose::ionic_strength:
             return "ionic_strength";
+        case Purpose::ion_total:
+            return "ion_total";
     }
     return {};
 }
 
 ordered_json article_json(const Reagent& reagent) {
+    // A solution of several reagents has neither formula nor molar mass.
+    const bool substance = reagent.molar_mass_g_per_mol > 0;
     return {{"reagent", reagent.name},
-            {"formula", reagent.formula},
+            {"formula", substance ? ordered_json(reagent.formula) : ordered_json(nullptr)},
             {"cas", reagent.cas.empty() ? ordered_json(nullptr) : ordered_json(reagent.cas)},
-            {"molar_mass_g_per_mol", reagent.molar_mass_g_per_mol}};
+            {"molar_mass_g_per_mol", substance ? ordered_json(reagent.molar_mass_g_per_mol) : ordered_json(nullptr)}};
+}
+
+ordered_json text_or_null(const std::string& text) {
+    return text.empty() ? ordered_json(nullptr) : ordered_json(text);
+}
+
+void add_bottle(ordered_json& entry, const Bottle* bottle) {
+    entry["shelf_id"] = bottle != nullptr ? ordered_json(bottle->id) : ordered_json(nullptr);
+    if (bottle != nullptr) {
+        entry["lot"] = text_or_null(bottle->lot);
+        entry["expires"] = bottle->expires ? ordered_json(bottle->expires->text()) : ordered_json(nullptr);
+        entry["location"] = text_or_null(bottle->location);
+    }
+}
+
+ordered_json stocks_json(const Plan& plan, const Table& table) {
+    ordered_json list = ordered_json::array();
+    for (const Stock& stock : plan.stocks) {
+        ordered_json entry = article_json(table.reagents[stock.reagent]);
+        if (stock.mass.g() > 0) {
+            entry["mass_g"] = stock.mass.g();
+        } else {
+            entry["volume_mL"] = stock.liquid.mL();
+        }
+        entry["fill_to_mL"] = stock.volume.mL();
+        entry["concentration_mol_per_L"] = stock.strength.mol_per_L();
+        add_bottle(entry, stock.bottle);
+        list.push_back(std::move(entry));
+    }
+    return list;
 }
 
 ordered_json weigh_json(const Plan& plan, const Table& table) {
@@ -151,7 +218,7 @@ ordered_json weigh_json(const Plan& plan, const Table& table) {
         entry["assay"] = reagent.assay.known() ? reagent.assay.value : 1.0;
         entry["mass_g"] = item.mass.g();
         entry["role"] = purpose_code(item.purpose);
-        entry["shelf_id"] = nullptr;
+        add_bottle(entry, item.bottle);
         list.push_back(std::move(entry));
     }
     return list;
@@ -164,8 +231,22 @@ ordered_json measure_json(const Plan& plan, const Table& table) {
         entry["concentration_mol_per_L"] = item.strength.mol_per_L();
         entry["volume_mL"] = item.volume.mL();
         entry["role"] = purpose_code(item.purpose);
-        entry["shelf_id"] = nullptr;
+        if (item.vessel) {
+            entry["vessel"] = table.vessels[*item.vessel].name;
+        }
+        if (item.stock) {
+            entry["stock"] = *item.stock;
+        }
+        add_bottle(entry, item.bottle);
         list.push_back(std::move(entry));
+    }
+    return list;
+}
+
+ordered_json ways_json(const Plan& plan) {
+    ordered_json list = ordered_json::array();
+    for (const Way& way : plan.ways) {
+        list.push_back({{"route", route_word(way.route)}, {"possible", way.possible}, {"reason", way.reason}});
     }
     return list;
 }
@@ -221,6 +302,7 @@ ordered_json prediction_json(const Prediction& prediction, const Table& table) {
                         {"pH", prediction.ph.value()},
                         {"ionic_strength_mol_per_kg", prediction.ionic_strength.mol_per_kg()},
                         {"buffer_value_mol_per_kg", prediction.buffer_value.mol_per_kg()},
+                        {"osmolality_ideal_osmol_per_kg", prediction.particles.mol_per_kg()},
                         {"charge_residual_mol_per_kg", prediction.charge_residual.mol_per_kg()}};
     record["hand_estimate_pH"] =
         prediction.hand_estimate ? ordered_json(prediction.hand_estimate->value()) : ordered_json(nullptr);
@@ -240,6 +322,9 @@ ordered_json prediction_json(const Prediction& prediction, const Table& table) {
 std::string recipe_id(const Plan& plan, const Table& table) {
     json canonical = canonical_request(plan, table);
     canonical["constants_sha256"] = table.sha256;
+    if (!plan.shelf_sha256.empty()) {
+        canonical["shelf_sha256"] = plan.shelf_sha256;
+    }
     return sha256_hex(canonical.dump());
 }
 
@@ -256,12 +341,28 @@ ordered_json recipe_json(const Plan& plan, const Table& table) {
     record["prepare_at_C"] = request.prepare_at.celsius();
     record["route"] = route_word(plan.route);
     record["counter_ions"] = counter_ions_json(plan, table);
+    if (request.strength != 1) {
+        record["strength"] = request.strength;
+        record["working_volume_mL"] = request.strength * request.volume.mL();
+    }
+    if (!plan.stocks.empty()) {
+        record["make_first"] = stocks_json(plan, table);
+    }
     record["weigh"] = weigh_json(plan, table);
     record["measure"] = measure_json(plan, table);
     record["fill_to_mL"] = request.volume.mL();
     record["readings"] = readings_json(plan);
     record["steps"] = steps_of(plan, table);
     record["predicted"] = prediction_json(plan.predicted, table);
+    if (plan.as_bottled) {
+        record["as_bottled"] = prediction_json(*plan.as_bottled, table);
+    }
+    if (plan.rounding) {
+        record["rounding"] = {{"pH_change", plan.rounding->ph},
+                              {"largest_relative_change", plan.rounding->largest_relative},
+                              {"reagent", table.reagents[plan.rounding->largest_reagent].name}};
+    }
+    record["ways"] = ways_json(plan);
     add_cautions(record, plan, table);
     record["warnings"] = warnings_json(plan.warnings);
     record["program"] = program_json(table);

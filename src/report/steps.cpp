@@ -1,5 +1,6 @@
 #include "report/steps.h"
 
+#include <algorithm>
 #include <cmath>
 
 #include <fmt/format.h>
@@ -25,12 +26,17 @@ Volume roughly(Volume volume) {
     return Volume::millilitres(std::round(volume.mL() / digit) * digit);
 }
 
+std::string from_bottle(const Bottle* bottle) {
+    return bottle == nullptr ? std::string() : fmt::format(" ({})", bottle->id);
+}
+
 /// The weighed solids: those that go in at the start, or those that go in after the pH is set.
 std::vector<std::string> solids_to_dissolve(const Plan& plan, const Table& table, bool last) {
     std::vector<std::string> parts;
     for (const Weighing& item : plan.weigh) {
         if (item.purpose != Purpose::titrant && goes_in_last(table.reagents[item.reagent], table) == last) {
-            parts.push_back(fmt::format("{} of {}", mass_text(item.mass), table.reagents[item.reagent].name));
+            parts.push_back(fmt::format("{} of {}{}", mass_text(item.mass), table.reagents[item.reagent].name,
+                                        from_bottle(item.bottle)));
         }
     }
     return parts;
@@ -40,7 +46,8 @@ std::vector<std::string> liquids_to_add(const Plan& plan, const Table& table) {
     std::vector<std::string> parts;
     for (const Measurement& item : plan.measure) {
         if (item.purpose != Purpose::titrant) {
-            parts.push_back(fmt::format("{} of {}", volume_text(item.volume), table.reagents[item.reagent].name));
+            parts.push_back(fmt::format("{} of {}{}", volume_text(item.volume), source_of(item, plan, table),
+                                        from_bottle(item.bottle)));
         }
     }
     return parts;
@@ -67,16 +74,39 @@ Titrant titrant_of(const Plan& plan, const Table& table) {
     return {};
 }
 
+const Reading& reading_at(const Plan& plan, Stage stage) {
+    return *std::find_if(plan.readings.begin(), plan.readings.end(),
+                         [&](const Reading& reading) { return reading.stage == stage; });
+}
+
+std::string stock_step(const Stock& stock, const Table& table) {
+    const Reagent& reagent = table.reagents[stock.reagent];
+    const bool solid = stock.mass.g() > 0;
+    return fmt::format("Make a stock first: {} of {}{} in purified water to {} ({}). Mix and label it.",
+                       solid ? mass_text(stock.mass) : volume_text(stock.liquid), reagent.name,
+                       from_bottle(stock.bottle), vessel_text(stock.volume), strength_text(stock.strength));
+}
+
 }  // namespace
+
+std::string source_of(const Measurement& item, const Plan& plan, const Table& table) {
+    const Reagent& reagent = table.reagents[item.reagent];
+    return item.stock ? fmt::format("{} stock {}", reagent.name, strength_text(plan.stocks[*item.stock].strength))
+                      : std::string(reagent.name);
+}
 
 std::string_view stage_word(Stage stage) {
     switch (stage) {
         case Stage::dissolved:
             return "solids dissolved";
+        case Stage::nearly:
+            return "nine tenths of the titrant";
         case Stage::titrated:
             return "titrant";
         case Stage::filled:
             return "filled to mark";
+        case Stage::diluted:
+            return "diluted to working strength";
     }
     return {};
 }
@@ -89,24 +119,32 @@ std::vector<std::string> steps_of(const Plan& plan, const Table& table) {
     const Titrant titrant = titrant_of(plan, table);
     std::vector<std::string> steps;
 
-    steps.push_back(fmt::format("Start with about {} of purified water in the vessel, stirring.",
-                                vessel_text(roughly(0.875 * plan.dissolve_in))));
+    for (const Stock& stock : plan.stocks) {
+        steps.push_back(stock_step(stock, table));
+    }
+    if (plan.start_with.mL() > 0.02 * plan.request.volume.mL()) {
+        steps.push_back(fmt::format("Start with about {} of purified water in the vessel, stirring.",
+                                    vessel_text(roughly(plan.start_with))));
+    }
     if (!liquids.empty()) {
         steps.push_back(fmt::format("Add {}.", joined(liquids)));
     }
     if (!solids.empty()) {
         steps.push_back(fmt::format("Weigh {}; add and stir until dissolved.", joined(solids)));
     }
-    steps.push_back(fmt::format("Add water to about {} and let it come to {}. The meter should read about {}.",
-                                volume_text(plan.dissolve_in), bench, ph_text(plan.readings.front().ph)));
+    if (titrant.name.empty() && solids.empty()) {  // only solutions: nothing to wait for
+    } else {
+        steps.push_back(fmt::format("Add water to about {} and let it come to {}. The meter should read about {}.",
+                                    volume_text(plan.dissolve_in), bench, ph_text(plan.readings.front().ph)));
+    }
     if (!titrant.name.empty()) {
-        const PH target = plan.readings[1].ph;
+        const PH target = reading_at(plan, Stage::titrated).ph;
         steps.push_back(
             fmt::format("Calibrate the meter at {} with two standards that bracket pH {}.", bench, ph_text(target)));
-        steps.push_back(
-            fmt::format("Add {}: about {} at once, then the rest in small portions until the meter reads {} "
-                        "(about {} in all). Let any heat go before you read.",
-                        titrant.name, titrant.most, ph_text(target), titrant.all));
+        steps.push_back(fmt::format(
+            "Add {}: about {} at once, which brings the meter to about {}; then the rest in small portions "
+            "until it reads {} (about {} in all). Let any heat go before you read.",
+            titrant.name, titrant.most, ph_text(reading_at(plan, Stage::nearly).ph), ph_text(target), titrant.all));
     }
     if (!last_solids.empty()) {
         steps.push_back(
@@ -114,13 +152,21 @@ std::vector<std::string> steps_of(const Plan& plan, const Table& table) {
                         joined(last_solids)));
     }
     steps.push_back(fmt::format("Transfer with rinsing, fill to {} at {} and mix. The meter should read {}.",
-                                vessel_text(plan.request.volume), bench, ph_text(plan.readings.back().ph)));
-    if (plan.request.use_at != plan.request.prepare_at) {
-        steps.push_back(fmt::format("Do not correct it further: at {} this buffer has pH {}.",
-                                    temperature_text(plan.request.use_at), ph_text(plan.predicted.ph)));
+                                vessel_text(plan.request.volume), bench, ph_text(reading_at(plan, Stage::filled).ph)));
+    const std::string use = temperature_text(plan.request.use_at);
+    if (plan.request.strength != 1) {
+        steps.push_back(fmt::format("Do not correct the stock: diluted {:g} times it reads {} at {}{}.",
+                                    plan.request.strength, ph_text(reading_at(plan, Stage::diluted).ph), bench,
+                                    plan.request.use_at == plan.request.prepare_at
+                                        ? std::string()
+                                        : fmt::format(" and has pH {} at {}", ph_text(plan.predicted.ph), use)));
+    } else if (plan.request.use_at != plan.request.prepare_at) {
+        steps.push_back(
+            fmt::format("Do not correct it further: at {} this buffer has pH {}.", use, ph_text(plan.predicted.ph)));
     }
-    steps.push_back(fmt::format("Label: contents, pH {} at {}, date, initials, lots, expiry, hazards.",
-                                ph_text(plan.predicted.ph), temperature_text(plan.request.use_at)));
+    steps.push_back(fmt::format(
+        "Label: contents, pH {} at {}{}, date, initials, lots, expiry, hazards.", ph_text(plan.predicted.ph), use,
+        plan.request.strength != 1 ? fmt::format(" when diluted {:g} times", plan.request.strength) : std::string()));
     return steps;
 }
 

@@ -92,7 +92,7 @@ TEST_CASE("bad input: labels and mixtures at the shell", "[cli][bad-input]") {
         {"50 mm Tris-HCl, pH 7.5", "did you mean mM"},
         {"50 mM Tris-HCl, pH 7.5, pH 8", "second pH"},
         {"10x phosphate-buffered saline, pH 7.4", "named formula"},
-        {"50 mM Tris-HCl,, pH 8", "between the commas"},
+        {"50 mM Tris-HCl,, pH 8", "beside this separator"},
         {"\xff\xfe", "UTF-8"},
         {"50 mM Tris-HCl\npH 8", "control character"},
         {std::string(70000, 'x'), "bytes"}};

@@ -48,7 +48,7 @@ TEST_CASE("recipe: the label of the contract", "[cli][recipe]") {
     CHECK(record.at("measure").size() == 1);
     CHECK(record.at("measure").at(0).at("role") == "titrant");
     CHECK(record.at("fill_to_mL") == 2000);
-    REQUIRE(record.at("readings").size() == 3);
+    REQUIRE(record.at("readings").size() == 4);
     CHECK(record.at("readings").at(0).at("volume_mL") == 1600);
     CHECK(record.at("predicted").at("pH").get<double>() == Approx(7.5).margin(1e-9));
     CHECK(record.at("predicted").at("temperature_C") == 4);

@@ -70,10 +70,36 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
             add("prediction.schema.json", output_of({"predict", mixture, "--activity", model}));
         }
     }
+    for (const std::vector<std::string>& batch :
+         {std::vector<std::string>{"0.1 M sodium phosphate, pH 7.2", "--reading", "6.9", "--with", "NaOH 10 mol/L"},
+          {"50 mM Tris-HCl, pH 7.5 at 4 C", "--reading", "7.5", "--with", "1 M HCl", "--prepare-at", "22 C"},
+          {"50 mM Tris-HCl, pH 8", "--reading", "8.01", "--with", "1 M HCl"},
+          {"50 mM Tris-HCl, pH 8", "--reading", "8.3", "--with", "1 M NaOH", "--not-filled", "900 mL"},
+          {"0.2 M sodium acetate, pH 5", "--reading", "4.4", "--with", "NaOH"},
+          {"50 mM sodium citrate, pH 5.5", "--reading", "9.9", "--with", "acetic acid"}}) {
+        std::vector<std::string> arguments{"adjust", "--volume", "1L"};
+        arguments.insert(arguments.end(), batch.begin(), batch.end());
+        add("adjustment.schema.json", output_of(arguments));
+    }
     for (const char* label : {"50 mM Trsi-HCl, pH 7.5", "50 mM sodium acetate, pH 2", ""}) {
         const auto run = run_carboy({"recipe", label, "--volume", "1L", "--format", "json"});
         add("error.schema.json", json::parse(run.err));
     }
+    const std::string shelf = std::string(CARBOY_SOURCE_DIR) + "/examples/saltmarsh/shelf.json";
+    add("shelf.schema.json", json::parse(carboy::test::project_file("examples/saltmarsh/shelf.json")));
+    for (const std::vector<std::string>& more : {std::vector<std::string>{"--shelf", shelf},
+                                                 {"--balance", "1 mg"},
+                                                 {"--balance", "0.1 g", "--shelf", shelf},
+                                                 {"--route", "stocks"},
+                                                 {"--stock", "1 M Tris-HCl, pH 8"},
+                                                 {"--hold", "Na+ = 0.2 M"}}) {
+        std::vector<std::string> arguments{"recipe", "50 mM Tris-HCl, 0.2 mM EDTA, pH 8", "--volume", "200 mL"};
+        arguments.insert(arguments.end(), more.begin(), more.end());
+        add("recipe.schema.json", output_of(arguments));
+    }
+    add("series.schema.json", output_of({"series", "50 mM sodium phosphate, 5 mM EDTA", "--ph", "6:8:0.5"}));
+    add("series.schema.json",
+        output_of({"series", "20 mM HEPES-KOH, ionic strength 0.1 mol/kg", "--ph", "7:8", "--at", "4 C"}));
     add("request.schema.json", json::parse(carboy::test::project_file("examples/saltmarsh/request.json")));
     add("constants.schema.json", json::parse(carboy::test::project_file("examples/saltmarsh/own-constants.json")));
     for (const auto& file : std::filesystem::directory_iterator(std::string(CARBOY_DATA_DIR) + "/constants")) {
@@ -82,7 +108,8 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
     }
     for (const std::vector<std::string>& demands :
          {std::vector<std::string>{"--ph", "7.4", "--at", "37C"},
-          {"--ph", "8", "--range", "4C:37C", "--acid", "5mM", "--hold", "0.3", "--avoid", "amine", "--clear-at", "230"},
+          {"--ph", "8", "--range", "4C:37C", "--acid", "5mM", "--stay-within", "0.3", "--avoid", "amine", "--clear-at",
+           "230"},
           {"--ph", "8", "--want", "volatile", "--ionic-strength", "100mM", "--concentration", "20 mmol/kg"},
           {"--ph", "5:9"}}) {
         std::vector<std::string> words{"select"};

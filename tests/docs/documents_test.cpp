@@ -1,4 +1,5 @@
 #include <iostream>
+#include <memory>
 #include <regex>
 #include <sstream>
 
@@ -19,17 +20,20 @@ namespace {
 struct Example {
     std::string command;
     std::string shown;
+    std::size_t block = 0;  ///< the examples of a block follow one upon the other, in one folder
 };
 
 std::vector<Example> examples_of(const std::string& document) {
     std::vector<Example> examples;
     std::istringstream lines(document);
     bool inside = false;
+    std::size_t blocks = 0;
     for (std::string line; std::getline(lines, line);) {
         if (line.starts_with("```")) {
             inside = line == "```console";
+            blocks += inside ? 1 : 0;
         } else if (inside && line.starts_with("$ ")) {
-            examples.push_back({line.substr(2), {}});
+            examples.push_back({line.substr(2), {}, blocks});
         } else if (inside && !examples.empty()) {
             examples.back().shown += line + "\n";
         }
@@ -37,15 +41,20 @@ std::vector<Example> examples_of(const std::string& document) {
     return examples;
 }
 
-/// Runs a command line in a folder that holds the demo's files, with the built program first on the path.
-carboy::test::Run run_in_demo(const std::string& command) {
-    const std::string program = CARBOY_PROGRAM;
-    const std::string folder = program.substr(0, program.find_last_of('/'));
-    const TemporaryFolder scratch;
-    const std::string setup = "cp -r '" CARBOY_SOURCE_DIR "/examples/saltmarsh/.' . && ";
-    return run_program(
-        "bash", {"-c", "cd '" + scratch.path(".") + "' && export PATH='" + folder + "':$PATH && " + setup + command});
-}
+/// A folder that holds the demo's files, in which command lines run with the built program first on the path.
+class Demo {
+public:
+    Demo() { REQUIRE(run("cp -r '" CARBOY_SOURCE_DIR "/examples/saltmarsh/.' .").status == 0); }
+    carboy::test::Run run(const std::string& command) const {
+        const std::string program = CARBOY_PROGRAM;
+        const std::string folder = program.substr(0, program.find_last_of('/'));
+        return run_program(
+            "bash", {"-c", "cd '" + scratch_.path(".") + "' && export PATH='" + folder + "':$PATH && " + command});
+    }
+
+private:
+    TemporaryFolder scratch_;
+};
 
 /// `...` on a line of its own stands for any number of lines.
 bool matches(const std::string& shown, const std::string& printed) {
@@ -70,16 +79,36 @@ std::string help_of(const std::string& command) {
     return run_carboy(words).out;
 }
 
-const std::vector<std::string> commands{
-    "", "recipe", "predict", "select", "fit", "constants", "constants list", "constants show", "constants check", "constants sources"};
+const std::vector<std::string> commands{"",
+                                        "recipe",
+                                        "predict",
+                                        "adjust",
+                                        "series",
+                                        "shelf",
+                                        "shelf check",
+                                        "shelf use",
+                                        "shelf undo",
+                                        "select",
+                                        "fit",
+                                        "constants",
+                                        "constants list",
+                                        "constants show",
+                                        "constants check",
+                                        "constants sources"};
 
 }  // namespace
 
 TEST_CASE("README: every example prints what it shows", "[docs]") {
     const auto examples = examples_of(project_file("README.md"));
     CHECK(examples.size() >= 5);
+    std::unique_ptr<Demo> demo;
+    std::size_t block = 0;
     for (const Example& example : examples) {
-        const auto run = run_in_demo(example.command + " 2>&1");
+        if (example.block != block) {
+            demo = std::make_unique<Demo>();
+            block = example.block;
+        }
+        const auto run = demo->run("{ " + example.command + "; } 2>&1");
         INFO("$ " << example.command << "\n" << run.out);
         CHECK(matches(example.shown, run.out));
     }
@@ -89,6 +118,7 @@ TEST_CASE("help: every example runs", "[docs]") {
     int ran = 0;
     for (const std::string& command : commands) {
         std::istringstream lines(help_of(command));
+        const Demo demo;
         std::string pending;
         for (std::string line; std::getline(lines, line);) {
             const auto text = line.find_first_not_of(' ');
@@ -100,7 +130,7 @@ TEST_CASE("help: every example runs", "[docs]") {
                 pending.pop_back();
                 continue;
             }
-            const auto run = run_in_demo(pending);
+            const auto run = demo.run(pending);
             INFO(pending << "\n" << run.err);
             CHECK(run.status == 0);
             pending.clear();

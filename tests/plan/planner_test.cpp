@@ -9,7 +9,7 @@
 #include "carboy/request_json.h"
 
 #include "catch_shim.h"
-#include "plan/articles.h"
+#include "plan/stockroom.h"
 
 using namespace carboy;
 
@@ -67,7 +67,7 @@ TEST_CASE("plan: titrated and salts are the same composition", "[plan]") {
         const Plan salts = planned(label, 1.0, Route::salts);
         CHECK(titrated.route == Route::titrated);
         CHECK(salts.route == Route::salts);
-        CHECK(titrated.readings.size() == 3);
+        CHECK(titrated.readings.size() == 4);
         CHECK(salts.readings.size() == 2);
         CHECK(salts.predicted.ph.value() == Approx(titrated.predicted.ph.value()).margin(1e-9));
         CHECK(salts.predicted.ionic_strength.mol_per_kg() ==
@@ -217,10 +217,12 @@ TEST_CASE("plan: Tris made warm for use in the cold reads as much lower as its p
 
 TEST_CASE("plan: titrants that fit the volume", "[plan]") {
     const Table& table = bundled_table();
-    const Chemistry hydrochloric = alone(table, id_of(table, *find_spectator(table, "Cl-"))).value();
+    const Stockroom stockroom(table, {}, nullptr);
+    const Chemistry hydrochloric = stockroom.alone(id_of(table, *find_spectator(table, "Cl-"))).value();
     const auto strength = [&](double mol, double litres) {
-        return table.reagents[article_to_titrate_with(table, hydrochloric, Amount::mol(mol), Volume::litres(litres))]
-            .strength_mol_per_L.value;
+        const auto shares =
+            stockroom.shares(hydrochloric, Amount::mol(mol), Stockroom::Wanted::titrant, Volume::litres(litres), {});
+        return table.reagents[shares.at(0).reagent].strength_mol_per_L.value;
     };
     CHECK(strength(0.05, 1) == 1);     // 50 mL of a litre
     CHECK(strength(0.0002, 1) < 0.5);  // 1 mol/L would be a fifth of a millilitre
