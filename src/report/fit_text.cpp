@@ -63,6 +63,16 @@ void found(Page& page, const Fit& fit, const Table& table) {
                   fmt::format("{:.4g}", p.start)},
                  true);
     }
+    for (const FittedParameter& p : fit.parameters) {
+        if (p.stated && p.parameter.unknown == Unknown::titrant_strength) {
+            page.paragraph(fmt::format("The titrant is {:.5g} ± {:.2g} mol/L.", p.value * *p.stated,
+                                       p.standard_error * *p.stated));
+        } else if (p.stated) {
+            page.paragraph(fmt::format("There are {:.5g} ± {:.2g} mmol of {} in the vessel.",
+                                       1000 * p.value * *p.stated, 1000 * p.standard_error * *p.stated,
+                                       table.reagents[p.parameter.reagent].name));
+        }
+    }
     page.paragraph(
         fit.scaled_by_scatter
             ? fmt::format(
