@@ -64,14 +64,17 @@ void found(Page& page, const Fit& fit, const Table& table) {
                  true);
     }
     for (const FittedParameter& p : fit.parameters) {
-        if (p.stated && p.parameter.unknown == Unknown::titrant_strength) {
-            page.paragraph(fmt::format("The titrant is {:.5g} ± {:.2g} mol/L.", p.value * *p.stated,
-                                       p.standard_error * *p.stated));
-        } else if (p.stated) {
-            page.paragraph(fmt::format("There are {:.5g} ± {:.2g} mmol of {} in the vessel.",
-                                       1000 * p.value * *p.stated, 1000 * p.standard_error * *p.stated,
-                                       table.reagents[p.parameter.reagent].name));
+        if (!p.stated) {
+            continue;
         }
+        const bool titrant = p.parameter.unknown == Unknown::titrant_strength;
+        const double unit = titrant ? *p.stated : 1000 * *p.stated;
+        const int decimals = decimals_for(p.standard_error * unit);
+        const std::string found_amount =
+            with_decimals(p.value * unit, decimals) + " ± " + with_decimals(p.standard_error * unit, decimals);
+        page.paragraph(titrant ? fmt::format("The titrant is {} mol/L.", found_amount)
+                               : fmt::format("There are {} mmol of {} in the vessel.", found_amount,
+                                             table.reagents[p.parameter.reagent].name));
     }
     page.paragraph(
         fit.scaled_by_scatter
