@@ -124,11 +124,11 @@ void correlations(Page& page, const Fit& fit, const Table& table) {
 
 /// Where a residual lies, from -3 to +3 uncertainties; beyond them at the edge.
 std::string strip(double weighted) {
-    constexpr int half = 9;
-    std::string cells(std::size_t{2} * half + 1, '.');
+    constexpr std::size_t half = 9;
+    std::string cells(2 * half + 1, '.');
     cells[half] = '|';
-    const int at = static_cast<int>(std::lround(std::clamp(weighted, -3.0, 3.0) / 3.0 * half));
-    cells[static_cast<std::size_t>(half + at)] = 'o';
+    const double at = std::round((std::clamp(weighted, -3.0, 3.0) / 3.0 + 1) * half);
+    cells[static_cast<std::size_t>(at)] = 'o';
     return cells;
 }
 
