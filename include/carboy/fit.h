@@ -62,6 +62,9 @@ struct FittedParameter {
     double lower_95 = 0;
     double upper_95 = 0;
     double pK_25C = 0;  ///< of a pK: what the table would say at 25 °C, moved by the same
+    /// What the value multiplies: mol/L of the titrant, mol of a reagent in the vessel. None where points differ, or
+    /// the value is no multiple.
+    std::optional<double> stated{};
 };
 
 struct FitResidual {

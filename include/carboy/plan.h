@@ -64,6 +64,7 @@ struct Reading {
     Stage stage = Stage::filled;
     Volume volume;
     PH ph;
+    double uncertainty_k2 = 0;  ///< expanded, of the activity model at this ionic strength
 };
 
 /// The counter-ion a buffer was made with.

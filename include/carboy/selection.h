@@ -12,6 +12,7 @@
 #include "carboy/constants.h"
 #include "carboy/quantity.h"
 #include "carboy/request.h"
+#include "carboy/shelf.h"
 
 namespace carboy {
 
@@ -60,7 +61,9 @@ struct Standing {
 /// A system that will not do, and by which fact.
 struct Excluded {
     std::uint16_t system = 0;
-    std::string code;    ///< `too_far_from_pK`, `trait`, `absorbs`, `no_recipe`, `moves_too_much`, `too_much_salt`
+    /// `too_far_from_pK`, `trait`, `trait_not_known`, `absorbs`, `drawback`, `moves_too_much`, `too_much_salt`,
+    /// `not_on_shelf`, `no_recipe`.
+    std::string code;
     std::string reason;  ///< in words
     std::string source;  ///< citation behind the fact
     Evidence evidence = Evidence::computed;
@@ -89,7 +92,7 @@ struct Selection {
 /// cooled, diluted, and with acid and base. Ranked by how far its pH moves in all, those with a doubt after those
 /// without, those with a drawback last. Without a stated load, 5 % of the concentration each way; without a temperature
 /// range, 5 K from the temperature of use.
-/// Error `temperature_out_of_range`, `bad_amount`, `bad_range` (input).
-Selection select_buffers(const Table& table, const Job& job, const ActivityModel& model);
+/// With a shelf, only what can be made from it. Error `temperature_out_of_range`, `bad_amount`, `bad_range` (input).
+Selection select_buffers(const Table& table, const Job& job, const ActivityModel& model, const Shelf* shelf = nullptr);
 
 }  // namespace carboy

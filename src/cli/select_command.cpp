@@ -22,10 +22,11 @@ namespace {
 constexpr auto examples = R"(
 Examples:
   carboy select --ph 7.4 --at 37C
-  carboy select --ph 8 --at 4C --concentration 50mM --acid 5mM --hold 0.2
+  carboy select --ph 8 --at 4C --concentration 50mM --acid 5mM --stay-within 0.2
   carboy select --ph 7.2 --range 4C:37C --avoid phosphate --avoid amine
   carboy select --ph 7.5 --clear-at 230 --avoid metal-binding --format csv
   carboy select --ph 8 --want volatile --format json | jq .ranked[0].system
+  carboy select --ph 7.5 --shelf shelf.json
   carboy select --ph 5:9 --avoid metal-binding
 
 Traits for --avoid and --want: phosphate, carboxylate, amine (primary or
@@ -47,6 +48,7 @@ struct Options {
     std::vector<std::string> want;
     std::string clear_at;
     bool all = false;
+    ShelfOptions shelf;
     SharedOptions shared;
 };
 
@@ -124,7 +126,7 @@ Job job_of(const Options& options) {
         job.base = released(options.base, "--base");
     }
     if (!options.hold.empty()) {
-        job.hold_ph = positive_number(options.hold, "--hold", "0.1");
+        job.hold_ph = positive_number(options.hold, "--stay-within", "0.1");
     }
     if (!options.ionic_strength.empty()) {
         const Concentration limit = read_concentration(options.ionic_strength, "--ionic-strength");
@@ -140,7 +142,9 @@ Job job_of(const Options& options) {
 
 int run(const Options& options) {
     const Table table = table_for(options.shared);
-    const Selection selection = select_buffers(table, job_of(options), options.shared.activity_model());
+    const ActivityModel& model = options.shared.activity_model();
+    const std::optional<Shelf> shelf = shelf_for(options.shelf, table, model);
+    const Selection selection = select_buffers(table, job_of(options), model, shelf ? &*shelf : nullptr);
     if (options.shared.json()) {
         write_result(selection_json(selection, table).dump() + "\n", options.shared.output_file);
     } else if (options.shared.format == "csv") {
@@ -167,7 +171,7 @@ Action declare_select(CLI::App& app, SharedOptions*& shared) {
     app.add_option("--range", options->range, "Used between these, as 4C:37C")->type_name("T:T");
     app.add_option("--acid", options->acid, "Strong acid set free in it, as 5mM")->type_name("C");
     app.add_option("--base", options->base, "Strong base set free in it")->type_name("C");
-    app.add_option("--hold", options->hold, "The load may move pH by no more")->type_name("PH");
+    app.add_option("--stay-within", options->hold, "The load may move pH by no more")->type_name("PH");
     app.add_option("--ionic-strength", options->ionic_strength, "Limit, as 100mM")->type_name("I");
     app.add_option("--avoid", options->avoid, "Leave out what has this trait")
         ->type_name("TRAIT")
@@ -177,6 +181,7 @@ Action declare_select(CLI::App& app, SharedOptions*& shared) {
         ->allow_extra_args(false);
     app.add_option("--clear-at", options->clear_at, "Wavelength it must not absorb at, nm")->type_name("NM");
     app.add_flag("--all", options->all, "Show all that rank, not ten");
+    add_shelf_options(app, options->shelf);
     add_computing_options(app, options->shared);
     add_output_options(app, options->shared, {"text", "json", "csv"});
     return [options] { return run(*options); };

@@ -74,6 +74,35 @@ LeastSquares least_squares(const FitProblem& problem, MeasuredCurve& curve, std:
     return squares;
 }
 
+/// Moles of a reagent in a preparation; none when it is not told in moles.
+std::optional<double> moles_of(const Preparation& preparation, std::uint16_t reagent) {
+    double mol = 0;
+    for (const Portion& portion : preparation.portions) {
+        if (portion.reagent == reagent) {
+            if (!portion.amount) {
+                return std::nullopt;
+            }
+            mol += portion.amount->mol();
+        }
+    }
+    return mol;
+}
+
+std::optional<double> stated(const FreeParameter& parameter, const FitProblem& problem) {
+    if (parameter.unknown == Unknown::titrant_strength) {
+        const auto mol = moles_of(*problem.titrant, problem.titrant->portions.front().reagent);
+        return mol ? std::optional(*mol / problem.titrant->filled_to->L()) : std::nullopt;
+    }
+    if (parameter.unknown != Unknown::amount) {
+        return std::nullopt;
+    }
+    const auto first = moles_of(problem.points.front().mixture, parameter.reagent);
+    const bool same = std::all_of(problem.points.begin(), problem.points.end(), [&](const Point& point) {
+        return moles_of(point.mixture, parameter.reagent) == first;
+    });
+    return same ? first : std::nullopt;
+}
+
 }  // namespace
 
 Fit fit_measurements(const Table& table, const FitProblem& problem, const ActivityModel& model) {
@@ -114,6 +143,7 @@ Fit fit_measurements(const Table& table, const FitProblem& problem, const Activi
         parameter.standard_error = scatter * std::sqrt(covariance[i][i]);
         parameter.lower_95 = parameter.value - fit.t_quantile * parameter.standard_error;
         parameter.upper_95 = parameter.value + fit.t_quantile * parameter.standard_error;
+        parameter.stated = stated(parameter.parameter, problem);
         if (parameter.parameter.unknown == Unknown::pK) {
             const Step& step = table.systems[parameter.parameter.system].steps[parameter.parameter.step];
             parameter.pK_25C = step.pK_25C.value + parameter.value - parameter.start;

@@ -29,7 +29,7 @@ Error not_in_the_mixture(const std::string& what, const std::string& help) {
 }
 
 /// Moles of each portion in the vessel, and its water: volumes add up, or the vessel was filled.
-struct VesselState {
+struct Content {
     std::vector<std::pair<std::uint16_t, double>> mixture;  ///< reagent, mol
     std::vector<std::pair<std::uint16_t, double>> titrant;
     double water_kg = 0;
@@ -43,8 +43,8 @@ void pour(std::vector<std::pair<std::uint16_t, double>>& into, const Preparation
     }
 }
 
-VesselState fill(const Table& table, const FitProblem& problem, const Point& point) {
-    VesselState vessel;
+Content fill(const Table& table, const FitProblem& problem, const Point& point) {
+    Content content;
     const double litres = point.titrant.L();
     if (problem.filled_to) {
         if (std::any_of(point.mixture.portions.begin(), point.mixture.portions.end(),
@@ -54,44 +54,44 @@ VesselState fill(const Table& table, const FitProblem& problem, const Point& poi
         }
         Preparation whole = point.mixture;
         whole.filled_to = problem.filled_to;
-        pour(vessel.mixture, point.mixture, 1, 0);
+        pour(content.mixture, point.mixture, 1, 0);
         if (problem.titrant) {
-            pour(vessel.titrant, *problem.titrant, litres / problem.titrant->filled_to->L(), 0);
-            for (const auto& [reagent, mol] : vessel.titrant) {
+            pour(content.titrant, *problem.titrant, litres / problem.titrant->filled_to->L(), 0);
+            for (const auto& [reagent, mol] : content.titrant) {
                 whole.portions.push_back({reagent, Amount::mol(mol), std::nullopt});
             }
         }
-        vessel.water_kg = compose(table, whole).water.kg();
-        return vessel;
+        content.water_kg = compose(table, whole).water.kg();
+        return content;
     }
-    vessel.water_kg = compose(table, point.mixture).water.kg();
-    pour(vessel.mixture, point.mixture, 1, vessel.water_kg);
+    content.water_kg = compose(table, point.mixture).water.kg();
+    pour(content.mixture, point.mixture, 1, content.water_kg);
     if (problem.titrant && litres > 0) {
         const double times = litres / problem.titrant->filled_to->L();
         const double water = compose(table, *problem.titrant).water.kg();
-        pour(vessel.titrant, *problem.titrant, times, water);
-        vessel.water_kg += water * times;
+        pour(content.titrant, *problem.titrant, times, water);
+        content.water_kg += water * times;
     }
-    return vessel;
+    return content;
 }
 
 }  // namespace
 
 void MeasuredCurve::take_point(const Table& table, const FitProblem& problem, const Point& point,
                                std::vector<std::pair<ComponentId, Share>>& shares) const {
-    const VesselState vessel = fill(table, problem, point);
+    const Content content = fill(table, problem, point);
     const auto add = [&](std::uint16_t reagent, double mol, std::size_t free, bool titrant) {
         for (const auto& [component, count] : table.reagents[reagent].supplies) {
-            shares.push_back({component, {0, mol * count / vessel.water_kg, free, titrant}});
+            shares.push_back({component, {0, mol * count / content.water_kg, free, titrant}});
         }
     };
-    for (const auto& [reagent, mol] : vessel.mixture) {
+    for (const auto& [reagent, mol] : content.mixture) {
         const FreeParameter wanted{Unknown::amount, 0, 0, reagent};
         const auto place = std::find(problem.free.begin(), problem.free.end(), wanted);
         add(reagent, mol, place == problem.free.end() ? fixed : static_cast<std::size_t>(place - problem.free.begin()),
             false);
     }
-    for (const auto& [reagent, mol] : vessel.titrant) {
+    for (const auto& [reagent, mol] : content.titrant) {
         add(reagent, mol, strength_, true);
     }
 }

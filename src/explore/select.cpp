@@ -73,7 +73,7 @@ Molality as_molality(const IonicStrengthTarget& limit, Temperature filled_at) {
 }
 
 void judge(Selection& selection, const Table& table, std::uint16_t system, const Load& load, const Span& span,
-           Molality most_salt, const ActivityModel& model) {
+           Molality most_salt, const ActivityModel& model, const Shelf* shelf) {
     const Job& job = selection.job;
     if (auto fact = excluded_by_fact(table, job, system)) {
         selection.excluded.push_back(std::move(*fact));
@@ -89,7 +89,7 @@ void judge(Selection& selection, const Table& table, std::uint16_t system, const
         return;
     }
     try {
-        Standing standing = try_system(table, job, system, load, span, model);
+        Standing standing = try_system(table, job, system, load, span, model, shelf);
         if (auto figure = excluded_by_figure(standing, job, most_salt)) {
             selection.excluded.push_back(std::move(*figure));
             return;
@@ -101,13 +101,15 @@ void judge(Selection& selection, const Table& table, std::uint16_t system, const
         if (error.kind() == ErrorKind::defect) {
             throw;
         }
-        selection.excluded.push_back({system, "no_recipe", error.message(), "computed", Evidence::computed});
+        const bool shelf_is_short = shelf != nullptr && error.code() == "short_on_shelf";
+        selection.excluded.push_back({system, shelf_is_short ? "not_on_shelf" : "no_recipe", error.message(),
+                                      shelf_is_short ? "the shelf" : "computed", Evidence::computed});
     }
 }
 
 }  // namespace
 
-Selection select_buffers(const Table& table, const Job& job, const ActivityModel& model) {
+Selection select_buffers(const Table& table, const Job& job, const ActivityModel& model, const Shelf* shelf) {
     check(job);
     Selection selection;
     selection.job = job;
@@ -130,7 +132,7 @@ Selection select_buffers(const Table& table, const Job& job, const ActivityModel
     for (std::size_t system = 0; system < table.systems.size(); ++system) {
         if (table.systems[system].role == Role::buffer) {
             judge(selection, table, static_cast<std::uint16_t>(system), {selection.acid, selection.base}, span,
-                  most_salt, model);
+                  most_salt, model, shelf);
         }
     }
     std::stable_sort(selection.ranked.begin(), selection.ranked.end(), [](const Standing& a, const Standing& b) {

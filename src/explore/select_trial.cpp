@@ -85,10 +85,13 @@ double share_of_best(const Table& table, const Job& job, std::uint16_t system, c
 }
 
 Standing try_system(const Table& table, const Job& job, std::uint16_t system, const Load& load, const Span& span,
-                    const ActivityModel& model) {
+                    const ActivityModel& model, const Shelf* shelf) {
     const ComponentId id{ComponentKind::system, system};
-    const Plan plan = plan_recipe(table, request_for(job, id), model);
-    const Composed composed = compose(table, plan.preparation);
+    const Request request = request_for(job, id);
+    const Plan plan = shelf != nullptr ? plan_recipe(*shelf, request, model) : plan_recipe(table, request, model);
+    // Bottles are reagents of the shelf's own table; systems keep their places in it.
+    const Table& used = shelf != nullptr ? shelf->table() : table;
+    const Composed composed = compose(used, plan.preparation);
     const Mixture& mixture = composed.mixture;
     EquilibriumSolver solver(table, mixture, job.at, model);
     solver.solve();
@@ -117,8 +120,8 @@ Standing try_system(const Table& table, const Job& job, std::uint16_t system, co
     standing.moves_by_dilution = std::abs(standing.ph_on_dilution);
     standing.moves = standing.moves_by_load + standing.moves_by_temperature + standing.moves_by_dilution;
     for (const std::uint16_t reagent : reagents_used(plan)) {
-        if (table.reagents[reagent].rarely_stocked) {
-            standing.drawbacks.push_back(fmt::format("few benches keep {}", table.reagents[reagent].name));
+        if (shelf == nullptr && used.reagents[reagent].rarely_stocked) {
+            standing.drawbacks.push_back(fmt::format("few benches keep {}", used.reagents[reagent].name));
         }
     }
     return standing;

@@ -130,6 +130,12 @@ bool same_chemistry(const Table& table, const Chemistry& chemistry, std::uint16_
 std::vector<Chemistry> forms_for(const Stockroom& stockroom, const BufferItem& buffer, ComponentId titrant) {
     const ComponentId ion = buffer.counter_ion.value_or(titrant);
     auto forms = stockroom.forms_of(buffer.system, ion);
+    if (buffer.named_form && stockroom.shelf() == nullptr) {  // of hydrates and isomers, the one that the label names
+        for (Chemistry& form : forms) {
+            const auto named = std::find(form.articles.begin(), form.articles.end(), *buffer.named_form);
+            std::rotate(form.articles.begin(), named, named == form.articles.end() ? named : named + 1);
+        }
+    }
     if (ion != titrant) {
         const auto without = [&](const Chemistry& form) {
             return count_of(stockroom.table().reagents[form.articles.front()], ion) == 0;

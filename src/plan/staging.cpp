@@ -26,6 +26,7 @@ constexpr double at_once = 0.9;
 /// The vessel at one moment of the work.
 struct Contents {
     PH ph;
+    double uncertainty_k2 = 0;
     double enthalpy_kJ = 0;
 };
 
@@ -33,11 +34,12 @@ Contents contents_of(const Table& table, const Preparation& preparation, const A
     const Composed composed = compose(table, preparation);
     EquilibriumSolver solver(table, composed.mixture, preparation.filled_at, model);
     solver.solve();
-    return {solver.ph(), composed.water.kg() * reaction_enthalpy_kJ_per_kg(table, solver)};
+    return {solver.ph(), 2 * model.ph_uncertainty(solver.ionic_strength()),
+            composed.water.kg() * reaction_enthalpy_kJ_per_kg(table, solver)};
 }
 
-PH reading_of(const Table& table, const Preparation& preparation, const ActivityModel& model) {
-    return contents_of(table, preparation, model).ph;
+Reading reading_of(Stage stage, const Preparation& preparation, const Contents& contents) {
+    return {stage, *preparation.filled_to, contents.ph, contents.uncertainty_k2};
 }
 
 bool is_titrant(const Plan& plan, std::size_t portion) {
@@ -101,7 +103,7 @@ void stage(Plan& plan, const Table& table, const ActivityModel& model) {
         }
     }
     const Contents dissolved = contents_of(table, stage, model);
-    plan.readings.push_back({Stage::dissolved, *stage.filled_to, dissolved.ph});
+    plan.readings.push_back(reading_of(Stage::dissolved, stage, dissolved));
     if (titrated) {
         const Portion all = plan.preparation.portions.back();
         for (const auto& [reached, share] : {std::pair(Stage::nearly, at_once), std::pair(Stage::titrated, 1.0)}) {
@@ -109,7 +111,7 @@ void stage(Plan& plan, const Table& table, const ActivityModel& model) {
             now.portions.push_back({all.reagent, share * *all.amount, std::nullopt});
             now.filled_to = plan.dissolve_in + share * titrant;
             const Contents reached_now = contents_of(table, now, model);
-            plan.readings.push_back({reached, *now.filled_to, reached_now.ph});
+            plan.readings.push_back(reading_of(reached, now, reached_now));
             if (reached == Stage::titrated) {
                 const double brought =
                     all.amount->mol() *
@@ -120,11 +122,11 @@ void stage(Plan& plan, const Table& table, const ActivityModel& model) {
             }
         }
     }
-    plan.readings.push_back({Stage::filled, total, reading_of(table, plan.preparation, model)});
+    plan.readings.push_back(reading_of(Stage::filled, plan.preparation, contents_of(table, plan.preparation, model)));
     if (plan.request.strength != 1) {
         Preparation working = plan.preparation;
         working.filled_to = plan.request.strength * total;
-        plan.readings.push_back({Stage::diluted, *working.filled_to, reading_of(table, working, model)});
+        plan.readings.push_back(reading_of(Stage::diluted, working, contents_of(table, working, model)));
     }
 }
 

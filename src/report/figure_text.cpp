@@ -97,6 +97,11 @@ std::string ph_text(PH ph) {
     return fmt::format("{:.2f}", ph.value());
 }
 
+std::string reading_text(PH ph, double uncertainty_k2) {
+    constexpr double worth_saying = 0.1;
+    return uncertainty_k2 > worth_saying ? fmt::format("{:.1f} ± {:.1f}", ph.value(), uncertainty_k2) : ph_text(ph);
+}
+
 std::string temperature_text(Temperature temperature) {
     return fmt::format("{:g} °C", temperature.celsius());
 }

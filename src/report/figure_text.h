@@ -26,6 +26,8 @@ std::string volume_range_text(Volume volume, double relative);
 std::string vessel_text(Volume volume);
 /// `7.50`: two decimals, as a meter shows.
 std::string ph_text(PH ph);
+/// What the meter shows; with its uncertainty where that is more than a tenth: `7.70 ± 0.4`.
+std::string reading_text(PH ph, double uncertainty_k2);
 /// `4 °C`.
 std::string temperature_text(Temperature temperature);
 /// `0.1000 mol/kg`, four significant digits.

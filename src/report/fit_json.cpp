@@ -48,6 +48,9 @@ ordered_json parameters_json(const Fit& fit, const Table& table) {
         one["standard_error"] = p.standard_error;
         one["lower_95"] = p.lower_95;
         one["upper_95"] = p.upper_95;
+        if (p.stated) {
+            one[p.parameter.unknown == Unknown::amount ? "amount_mol" : "strength_mol_per_L"] = p.value * *p.stated;
+        }
         list.push_back(std::move(one));
     }
     return list;

@@ -63,6 +63,19 @@ void found(Page& page, const Fit& fit, const Table& table) {
                   fmt::format("{:.4g}", p.start)},
                  true);
     }
+    for (const FittedParameter& p : fit.parameters) {
+        if (!p.stated) {
+            continue;
+        }
+        const bool titrant = p.parameter.unknown == Unknown::titrant_strength;
+        const double unit = titrant ? *p.stated : 1000 * *p.stated;
+        const int decimals = decimals_for(p.standard_error * unit);
+        const std::string found_amount =
+            with_decimals(p.value * unit, decimals) + " ± " + with_decimals(p.standard_error * unit, decimals);
+        page.paragraph(titrant ? fmt::format("The titrant is {} mol/L.", found_amount)
+                               : fmt::format("There are {} mmol of {} in the vessel.", found_amount,
+                                             table.reagents[p.parameter.reagent].name));
+    }
     page.paragraph(
         fit.scaled_by_scatter
             ? fmt::format(
@@ -111,11 +124,11 @@ void correlations(Page& page, const Fit& fit, const Table& table) {
 
 /// Where a residual lies, from -3 to +3 uncertainties; beyond them at the edge.
 std::string strip(double weighted) {
-    constexpr int half = 9;
-    std::string cells(std::size_t{2} * half + 1, '.');
+    constexpr std::size_t half = 9;
+    std::string cells(2 * half + 1, '.');
     cells[half] = '|';
-    const int at = static_cast<int>(std::lround(std::clamp(weighted, -3.0, 3.0) / 3.0 * half));
-    cells[static_cast<std::size_t>(half + at)] = 'o';
+    const double at = std::round((std::clamp(weighted, -3.0, 3.0) / 3.0 + 1) * half);
+    cells[static_cast<std::size_t>(at)] = 'o';
     return cells;
 }
 

@@ -116,6 +116,9 @@ json canonical_request(const Plan& plan, const Table& table) {
         if (item.counter_ion) {
             buffer["counter_ion"] = name_of(table, *item.counter_ion);
         }
+        if (item.named_form) {
+            buffer["named_form"] = table.reagents[*item.named_form].name;
+        }
         buffers.push_back(std::move(buffer));
     }
     json additives = json::array();
@@ -257,7 +260,8 @@ ordered_json readings_json(const Plan& plan) {
         list.push_back({{"after", stage_word(reading.stage)},
                         {"volume_mL", reading.volume.mL()},
                         {"temperature_C", plan.request.prepare_at.celsius()},
-                        {"pH", reading.ph.value()}});
+                        {"pH", reading.ph.value()},
+                        {"pH_expanded_k2", reading.uncertainty_k2}});
     }
     return list;
 }

@@ -107,7 +107,7 @@ void readings(Page& page, const Plan& plan) {
     for (const Reading& reading : plan.readings) {
         page.row(reading_columns,
                  {"", std::string(reading_words(reading.stage, titrated)), volume_text(reading.volume),
-                  "pH " + ph_text(reading.ph)},
+                  "pH " + reading_text(reading.ph, reading.uncertainty_k2)},
                  reading.stage != Stage::dissolved && reading.stage != Stage::nearly);
     }
 }

@@ -112,7 +112,7 @@ void exclusions(Page& page, const Selection& selection, const Table& table) {
         const bool far = one.code == "too_far_from_pK";
         std::string reason =
             far ? "more than one pH from every pK, with less than a third of the best buffer value" : one.reason;
-        if (!one.source.empty() && one.source != "computed") {
+        if (!one.source.empty() && one.source != "computed" && one.source != "the shelf") {
             const std::string_view citation(one.source);
             reason += fmt::format(" [{}{}]", citation.substr(0, citation.size() - (citation.ends_with('.') ? 1 : 0)),
                                   far || one.evidence == Evidence::common_practice

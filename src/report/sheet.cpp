@@ -100,9 +100,9 @@ void add_readings(Sheet& sheet, const Plan& plan) {
     for (const Reading& reading : plan.readings) {
         const bool act_on = reading.stage == Stage::titrated;
         sheet.readings.push_back({std::string(reading_words(reading.stage, titrated)), volume_text(reading.volume),
-                                  ph_text(reading.ph), act_on});
+                                  reading_text(reading.ph, reading.uncertainty_k2), act_on});
         if (act_on) {
-            sheet.stop_at = ph_text(reading.ph);
+            sheet.stop_at = reading_text(reading.ph, reading.uncertainty_k2);
         }
     }
 }

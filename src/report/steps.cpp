@@ -74,6 +74,10 @@ Titrant titrant_of(const Plan& plan, const Table& table) {
     return {};
 }
 
+std::string shown(const Reading& reading) {
+    return reading_text(reading.ph, reading.uncertainty_k2);
+}
+
 const Reading& reading_at(const Plan& plan, Stage stage) {
     return *std::find_if(plan.readings.begin(), plan.readings.end(),
                          [&](const Reading& reading) { return reading.stage == stage; });
@@ -148,19 +152,28 @@ std::vector<std::string> steps_of(const Plan& plan, const Table& table) {
     if (!solids.empty()) {
         steps.push_back(fmt::format("Weigh {}; add and stir until dissolved.", joined(solids)));
     }
-    if (titrant.name.empty() && solids.empty()) {  // only solutions: nothing to wait for
-    } else {
+    const bool solutions_only = titrant.name.empty() && solids.empty();  // nothing to wait for
+    if (!solutions_only) {
         steps.push_back(fmt::format("Add water to about {} and let it come to {}. The meter should read about {}.",
-                                    volume_text(plan.dissolve_in), bench, ph_text(plan.readings.front().ph)));
+                                    volume_text(plan.dissolve_in), bench, shown(plan.readings.front())));
     }
     if (!titrant.name.empty()) {
-        const PH target = reading_at(plan, Stage::titrated).ph;
+        const Reading& target = reading_at(plan, Stage::titrated);
         steps.push_back(
-            fmt::format("Calibrate the meter at {} with two standards that bracket pH {}.", bench, ph_text(target)));
+            fmt::format("Calibrate the meter at {} with two standards that bracket pH {}.", bench, ph_text(target.ph)));
         steps.push_back(fmt::format(
             "Add {}: about {} at once, which brings the meter to about {}; then the rest in small portions "
             "until it reads {} (about {} in all). Let any heat go before you read.",
-            titrant.name, titrant.most, ph_text(reading_at(plan, Stage::nearly).ph), ph_text(target), titrant.all));
+            titrant.name, titrant.most, shown(reading_at(plan, Stage::nearly)), shown(target), titrant.all));
+        constexpr double doubtful = 0.1;
+        if (plan.request.strength != 1 && target.uncertainty_k2 > doubtful) {
+            steps.push_back(
+                fmt::format("The stock's own reading is uncertain. Decide on a sample: 1 part of it with water to {:g} "
+                            "parts, as it "
+                            "will be in the end, should read {} at {}; correct the stock by that.",
+                            plan.request.strength * (plan.request.volume / target.volume),
+                            shown(reading_at(plan, Stage::diluted)), bench));
+        }
     }
     if (!last_solids.empty()) {
         steps.push_back(
@@ -168,11 +181,11 @@ std::vector<std::string> steps_of(const Plan& plan, const Table& table) {
                         joined(last_solids)));
     }
     steps.push_back(fmt::format("Transfer with rinsing, fill to {} at {} and mix. The meter should read {}.",
-                                vessel_text(plan.request.volume), bench, ph_text(reading_at(plan, Stage::filled).ph)));
+                                vessel_text(plan.request.volume), bench, shown(reading_at(plan, Stage::filled))));
     const std::string use = temperature_text(plan.request.use_at);
     if (plan.request.strength != 1) {
         steps.push_back(fmt::format("Do not correct the stock: diluted {:g} times it reads {} at {}{}.",
-                                    plan.request.strength, ph_text(reading_at(plan, Stage::diluted).ph), bench,
+                                    plan.request.strength, shown(reading_at(plan, Stage::diluted)), bench,
                                     plan.request.use_at == plan.request.prepare_at
                                         ? std::string()
                                         : fmt::format(" and has pH {} at {}", ph_text(plan.predicted.ph), use)));

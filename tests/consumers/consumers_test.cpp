@@ -108,7 +108,8 @@ TEST_CASE("every output is valid by its schema, by python3-jsonschema", "[consum
     }
     for (const std::vector<std::string>& demands :
          {std::vector<std::string>{"--ph", "7.4", "--at", "37C"},
-          {"--ph", "8", "--range", "4C:37C", "--acid", "5mM", "--hold", "0.3", "--avoid", "amine", "--clear-at", "230"},
+          {"--ph", "8", "--range", "4C:37C", "--acid", "5mM", "--stay-within", "0.3", "--avoid", "amine", "--clear-at",
+           "230"},
           {"--ph", "8", "--want", "volatile", "--ionic-strength", "100mM", "--concentration", "20 mmol/kg"},
           {"--ph", "5:9"}}) {
         std::vector<std::string> words{"select"};

@@ -79,9 +79,23 @@ std::string help_of(const std::string& command) {
     return run_carboy(words).out;
 }
 
-const std::vector<std::string> commands{
-    "",          "recipe",     "predict",   "adjust",         "series", "select", "fit",         "shelf",           "shelf check",
-    "shelf use", "shelf undo", "constants", "constants list", "constants show", "constants check", "constants sources"};
+const std::vector<std::string> commands{"",
+                                        "recipe",
+                                        "predict",
+                                        "adjust",
+                                        "select",
+                                        "series",
+                                        "fit",
+                                        "label",
+                                        "shelf",
+                                        "shelf check",
+                                        "shelf use",
+                                        "shelf undo",
+                                        "constants",
+                                        "constants list",
+                                        "constants show",
+                                        "constants check",
+                                        "constants sources"};
 
 }  // namespace
 

@@ -125,6 +125,8 @@ TEST_CASE("fit: data without noise give back what made them", "[fit]") {
         CHECK(std::abs(fit.parameters[p].value - truth[p]) < 1e-6);
     }
     CHECK(fit.chi_square < 1e-9);
+    CHECK(fit.parameters[1].stated.value() == Approx(0.0025));
+    CHECK(fit.parameters[2].stated.value() == Approx(0.1));
 }
 
 TEST_CASE("fit: 95 % intervals hold the truth in 93 to 97 % of 1,000 trials", "[fit][coverage]") {

@@ -2,6 +2,8 @@
 #include <cmath>
 #include <iostream>
 
+#include <nlohmann/json.hpp>
+
 #include "carboy/constants_file.h"
 #include "carboy/error.h"
 #include "carboy/plan.h"
@@ -171,6 +173,21 @@ TEST_CASE("traits: read, checked and laid over", "[select][constants]") {
     }
 }
 
+TEST_CASE("select: from a shelf, only what is there", "[select][cli]") {
+    const auto run = test::run_carboy({"select", "--ph", "7.5", "--format", "json", "--shelf",
+                                       std::string(CARBOY_SOURCE_DIR) + "/examples/saltmarsh/shelf.json"});
+    INFO(run.err);
+    REQUIRE(run.status == 0);
+    const auto record = nlohmann::json::parse(run.out);
+    CHECK(record.at("ranked").at(0).at("system") == "HEPES");
+    for (const auto& one : record.at("excluded")) {
+        if (one.at("system") == "MOPS") {
+            CHECK(one.at("code") == "not_on_shelf");
+        }
+        CHECK(one.at("system") != "HEPES");
+    }
+}
+
 TEST_CASE("select: bad input is told with its place", "[select][cli]") {
     for (const std::vector<std::string>& words : {std::vector<std::string>{"--ph", "7", "--avoid", "phosphat"},
                                                   {"--ph", "7", "--range", "37C:4C"},
@@ -178,7 +195,7 @@ TEST_CASE("select: bad input is told with its place", "[select][cli]") {
                                                   {"--ph", "7", "--range", "4C"},
                                                   {"--ph", "7", "--acid", "5 g/L"},
                                                   {"--ph", "7", "--at", "120C"},
-                                                  {"--ph", "7", "--hold", "-1"},
+                                                  {"--ph", "7", "--stay-within", "-1"},
                                                   {"--ph", "7", "--avoid", "uv-cutoff"}}) {
         std::vector<std::string> arguments{"select"};
         arguments.insert(arguments.end(), words.begin(), words.end());
