@@ -130,8 +130,9 @@ void hazards(Markup& svg, const BottleLabel& label, Box box) {
         box = set(svg, {{label.signal_word}, 3}, box, true);
     }
     Block block;
-    for (const std::string& words : hazard_words(label)) {
-        block = fitted(words, box.width, box.height, 2.3, 1.6, false);
+    const std::vector<std::string> all = hazard_words(label);
+    for (const std::string& words : all) {
+        block = fitted(words, box.width, box.height, 2.3, words == all.back() ? 1.2 : 1.6, false);
         if (block.height() <= box.height) {
             break;
         }
@@ -141,7 +142,7 @@ void hazards(Markup& svg, const BottleLabel& label, Box box) {
 
 /// A date or a line to write one on.
 std::string dated(std::string_view name, const std::string& date) {
-    return fmt::format("{} {}", name, date.empty() ? "______________" : date);
+    return fmt::format("{} {}", name, date.empty() ? "__________" : date);
 }
 
 void code(Markup& svg, const BottleLabel& label, double x, double y, double side) {
@@ -172,7 +173,7 @@ void draw(Markup& svg, const BottleLabel& label, const LabelStock& stock) {
     const std::string record =
         fmt::format("{} · {} · {}", label.volume, dated("Made", label.made), dated("Use by", label.expires));
     box = set(svg, fitted(record, beside, 0.14 * stock.height_mm, 2.6, 1.9, false), box, false);
-    box = set(svg, fitted("Initials ________ · Lot ______________", beside, 3, 2.6, 1.9, false), box, false);
+    box = set(svg, fitted("Initials ______ · Lot ____________", beside, 3, 2.6, 1.9, false), box, false);
     const double top = std::max(box.y + 0.8, margin + side + quiet + small * line_height);
     svg.empty("path", {{"d", fmt::format("M{} {}H{}", mm(margin), mm(top), mm(stock.width_mm - margin))},
                        {"stroke", "#000"},

@@ -112,7 +112,8 @@ void add_result(Sheet& sheet, const Plan& plan, const Table& table) {
     const std::string when = plan.request.strength == 1
                                  ? std::string()
                                  : fmt::format(", diluted {} times", number_text(plan.request.strength));
-    sheet.in_use = fmt::format("{} at {}", ph_with_uncertainty(predicted), temperature_text(predicted.temperature));
+    sheet.in_use =
+        fmt::format("{} at {}{}", ph_with_uncertainty(predicted), temperature_text(predicted.temperature), when);
     sheet.result.push_back(
         {fmt::format("pH at {}{}", temperature_text(predicted.temperature), when),
          fmt::format("{} ± {}", ph_text(predicted.ph), ph_text(PH(predicted.uncertainty.expanded_k2)))});

@@ -11,7 +11,8 @@ namespace {
 const std::vector<Page::Column> portion_columns{{2},  {31}, {1}, {10, Page::Align::right}, {2}, {10}, {2},
                                                 {10}, {2},  {10}};
 const std::vector<Page::Column> allowed_columns{{4}, {29}, {1}, {46}};
-const std::vector<Page::Column> reading_columns{{2}, {40}, {9, Page::Align::right}, {9, Page::Align::right}, {3}, {17}};
+const std::vector<Page::Column> reading_columns{{2}, {40}, {9, Page::Align::right}, {13, Page::Align::right},
+                                                {3}, {13}};
 const std::vector<Page::Column> result_columns{{2}, {37}, {41}};
 const std::vector<Page::Column> field_columns{{2}, {15}, {21}, {4}, {17}, {21}};
 constexpr auto blank = "__________";
