@@ -72,7 +72,7 @@ public:
         head();
         legend();
         for (std::size_t i = 0; i < plot_.panels.size(); ++i) {
-            cursor_ += i == 0 ? 30 : panel_gap;
+            cursor_ += i == 0 ? 40 : panel_gap;
             panel(plot_.panels[i], i + 1 == plot_.panels.size());
         }
         const double height = cursor_ + 52;
