@@ -79,18 +79,10 @@ std::string help_of(const std::string& command) {
     return run_carboy(words).out;
 }
 
-const std::vector<std::string> commands{"",
-                                        "recipe",
-                                        "predict",
-                                        "constants",
-                                        "constants list",
-                                        "constants show",
-                                        "constants check",
-                                        "constants sources",
-                                        "shelf",
-                                        "shelf check",
-                                        "shelf use",
-                                        "shelf undo"};
+const std::vector<std::string> commands{
+    "",          "recipe",         "predict",        "titrate",         "sweep",
+    "constants", "constants list", "constants show", "constants check", "constants sources",
+    "shelf",     "shelf check",    "shelf use",      "shelf undo"};
 
 }  // namespace
 
