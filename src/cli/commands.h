@@ -8,6 +8,8 @@ namespace carboy::cli {
 // options will be, so that errors can be told in the format asked for.
 Action declare_recipe(CLI::App& app, SharedOptions*& shared);
 Action declare_predict(CLI::App& app, SharedOptions*& shared);
+Action declare_titrate(CLI::App& app, SharedOptions*& shared);
+Action declare_sweep(CLI::App& app, SharedOptions*& shared);
 Action declare_series(CLI::App& app, SharedOptions*& shared);
 Action declare_shelf(CLI::App& app, SharedOptions*& shared);
 Action declare_adjust(CLI::App& app, SharedOptions*& shared);

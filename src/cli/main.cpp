@@ -35,6 +35,8 @@ struct Command {
 constexpr std::array commands{
     Command{"recipe", "From a label to what to weigh, measure and read", carboy::cli::declare_recipe},
     Command{"predict", "The pH and the species of a mixture as made", carboy::cli::declare_predict},
+    Command{"titrate", "pH and buffer value against titrant added", carboy::cli::declare_titrate},
+    Command{"sweep", "pH against temperature, dilution, salt or strength", carboy::cli::declare_sweep},
     Command{"series", "A set of buffers across pH, from the same stocks", carboy::cli::declare_series},
     Command{"shelf", "Check what is on the shelf, and book it off", carboy::cli::declare_shelf},
     Command{"adjust", "What to do with a batch whose pH is off", carboy::cli::declare_adjust},

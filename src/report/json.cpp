@@ -11,8 +11,6 @@ namespace carboy {
 using nlohmann::json;
 using nlohmann::ordered_json;
 
-namespace {
-
 ordered_json program_json(const Table& table) {
     return {{"name", "carboy"},
             {"version", CARBOY_VERSION},
@@ -27,6 +25,8 @@ ordered_json warnings_json(const std::vector<Warning>& warnings) {
     }
     return list;
 }
+
+namespace {
 
 ordered_json species_json(const Prediction& prediction) {
     ordered_json list = ordered_json::array();

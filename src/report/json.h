@@ -16,6 +16,9 @@ namespace carboy {
 
 nlohmann::ordered_json prediction_json(const Prediction& prediction, const Table& table);
 nlohmann::ordered_json recipe_json(const Plan& plan, const Table& table);
+/// What every record ends with: which program and which constants made it.
+nlohmann::ordered_json program_json(const Table& table);
+nlohmann::ordered_json warnings_json(const std::vector<Warning>& warnings);
 /// `id` is the caller's; left out when empty.
 nlohmann::ordered_json error_json(const Error& error, std::string_view id);
 

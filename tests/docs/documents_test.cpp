@@ -80,9 +80,9 @@ std::string help_of(const std::string& command) {
 }
 
 const std::vector<std::string> commands{
-    "",          "recipe",         "predict",        "adjust",          "select",           "series",
-    "fit",       "label",          "shelf",          "shelf check",     "shelf use",        "shelf undo",
-    "constants", "constants list", "constants show", "constants check", "constants sources"};
+    "",           "recipe",    "predict",        "adjust",         "select",          "series",
+    "fit",        "titrate",   "sweep",          "shelf",          "shelf check",     "shelf use",
+    "shelf undo", "constants", "constants list", "constants show", "constants check", "constants sources"};
 
 }  // namespace
 
