@@ -18,7 +18,7 @@ namespace {
 const std::vector<Page::Column> ingredient_columns{{2}, {36}, {1}, {11, Page::Align::right}, {3}, {27}};
 const std::vector<Page::Column> result_columns{{2}, {37}, {41}};
 const std::vector<Page::Column> way_columns{{2}, {11}, {67}};
-const std::vector<Page::Column> reading_columns{{2}, {37}, {11, Page::Align::right}, {11, Page::Align::right}};
+const std::vector<Page::Column> reading_columns{{2}, {37}, {11, Page::Align::right}, {15, Page::Align::right}};
 
 std::string_view purpose_word(Purpose purpose) {
     switch (purpose) {
