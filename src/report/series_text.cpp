@@ -156,7 +156,7 @@ std::string series_csv(const Series& series) {
     for (const SeriesRow& row : series.rows) {
         text += fmt::format("{}", row.target.value());
         for (const Volume& volume : row.volumes) {
-            text += "," + graduated(volume, series.graduation);
+            text += fmt::format(",{}", graduated(volume, series.graduation));
         }
         text += fmt::format(",{},{:.4f},{:.4f},{:.4f},{:.6g},{:.6g}\r\n", series.request.volume.mL(), row.ph.value(),
                             row.uncertainty_k2, row.at_bench.value(), row.ionic_strength.mol_per_kg(),

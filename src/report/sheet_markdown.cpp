@@ -69,7 +69,7 @@ std::string portions(const std::vector<Sheet::Portion>& list) {
     for (const Sheet::Portion& portion : list) {
         std::string name = plain(portion.reagent);
         if (!portion.formula.empty()) {
-            name += " " + plain(portion.formula);
+            name += fmt::format(" {}", plain(portion.formula));
         }
         if (!portion.detail.empty()) {
             name += fmt::format(" ({})", plain(portion.detail));
