@@ -126,6 +126,9 @@ struct Reagent {
     Ghs ghs;
     std::span<const std::uint16_t> cautions;
     std::string_view note;
+
+    /// Mass fraction that weighing counts with; 1 where the table states none.
+    constexpr double counted_assay() const { return assay.known() ? assay.value : 1.0; }
 };
 
 struct HazardStatement {
@@ -373,5 +376,7 @@ std::vector<const PictogramRule*> pictograms_of(const Reagent& reagent, const Ta
 ComponentId id_of(const Table& table, const System& system);
 ComponentId id_of(const Table& table, const Spectator& spectator);
 std::string_view name_of(const Table& table, ComponentId id);
+/// The ion or solute of that name, else the system; none when the table knows neither.
+std::optional<ComponentId> find_component(const Table& table, std::string_view name);
 
 }  // namespace carboy

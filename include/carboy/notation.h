@@ -7,6 +7,7 @@
 
 #include "carboy/concentration.h"
 #include "carboy/constants.h"
+#include "carboy/date.h"
 #include "carboy/preparation.h"
 #include "carboy/quantity.h"
 #include "carboy/request.h"
@@ -25,6 +26,8 @@ Temperature read_temperature(std::string_view text, std::string_view where);
 Mass read_mass(std::string_view text, std::string_view where);
 /// `50 mM`, `0.1 mol/kg`, `0.9 % w/v`, `1 N`. Zero or positive and finite.
 Concentration read_concentration(std::string_view text, std::string_view where);
+/// `2026-12-01`, ISO 8601: a day of the calendar. Error `bad_date`.
+Date read_date(std::string_view text, std::string_view where);
 /// `7.4`. Finite, -2 to 16.
 PH read_ph(std::string_view text, std::string_view where);
 

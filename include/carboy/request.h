@@ -1,6 +1,7 @@
 #pragma once
 
 #include <optional>
+#include <span>
 #include <string>
 #include <vector>
 
@@ -41,6 +42,8 @@ enum class Route : std::uint8_t {
 };
 /// `any`, `titrated`, `salts`, `stocks`, `dilution`.
 std::string_view route_word(Route route);
+/// All the words, `any` first.
+std::span<const std::string_view> route_words();
 /// The route of that word; none when there is no such word.
 std::optional<Route> route_of(std::string_view word);
 

@@ -115,10 +115,7 @@ Action declare_adjust(CLI::App& app, SharedOptions*& shared) {
         ->check(CLI::Range(0.0, 100.0))
         ->type_name("PERCENT")
         ->capture_default_str();
-    app.add_option("--route", options->route, "How it was made, as for a recipe")
-        ->check(CLI::IsMember({"any", "titrated", "salts", "stocks", "dilution"}))
-        ->type_name("ROUTE")
-        ->capture_default_str();
+    add_route_option(app, options->route, "How it was made, as for a recipe");
     add_shelf_options(app, options->shelf);
     add_computing_options(app, options->shared);
     add_output_options(app, options->shared);

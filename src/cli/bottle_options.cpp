@@ -8,6 +8,7 @@
 #include <fmt/ranges.h>
 
 #include "carboy/error.h"
+#include "carboy/notation.h"
 
 #include "cli/file.h"
 
@@ -16,15 +17,7 @@ namespace carboy::cli {
 namespace {
 
 std::optional<Date> date_of(const std::string& text, const char* where) {
-    if (text.empty()) {
-        return std::nullopt;
-    }
-    const auto date = Date::read(text);
-    if (!date) {
-        throw Error(ErrorKind::input, "bad_date", fmt::format("'{}' is no date", text), where,
-                    "write it as 2026-12-31");
-    }
-    return date;
+    return text.empty() ? std::nullopt : std::optional(read_date(text, where));
 }
 
 const LabelStock& stock_of(const BottleOptions& options, const Table& table) {

@@ -10,6 +10,7 @@
 
 #include "cli/commands.h"
 #include "cli/file.h"
+#include "cli/subcommands.h"
 #include "report/constants_json.h"
 #include "report/constants_text.h"
 
@@ -127,30 +128,23 @@ int sources(const Options& options) {
 
 Action declare_constants(CLI::App& app, SharedOptions*& shared) {
     auto options = std::make_shared<Options>();
-    auto action = std::make_shared<int (*)(const Options&)>(nullptr);
     shared = &options->shared;
     app.footer(examples);
-    app.require_subcommand(1);
-    const auto declare = [&](const char* name, const char* summary, int (*run)(const Options&)) {
-        CLI::App* sub = app.add_subcommand(name, summary);
-        add_output_options(*sub, options->shared);
-        sub->callback([action, run] { *action = run; });
-        return sub;
-    };
-    declare("list", "List systems, reagents, ions or formulas", list)
+    Subcommands<Options> commands(app, options);
+    commands.add("list", "List systems, reagents, ions or formulas", list)
         ->add_option("what", options->listing, "systems, reagents, ions or formulas")
         ->check(CLI::IsMember({"systems", "reagents", "ions", "formulas"}))
         ->capture_default_str();
-    declare("show", "Show all that is held under a name", show)
+    commands.add("show", "Show all that is held under a name", show)
         ->add_option("name", options->name, "System, ion, reagent or formula")
         ->required()
         ->type_name("NAME");
-    declare("check", "Check a file to lay over: every fault", check)
+    commands.add("check", "Check a file to lay over: every fault", check)
         ->add_option("file", options->file, "Constants file ('-' for standard input)")
         ->required()
         ->type_name("FILE");
-    declare("sources", "List the publications behind it", sources);
-    return [options, action] { return (*action)(*options); };
+    commands.add("sources", "List the publications behind it", sources);
+    return commands.action();
 }
 
 }  // namespace carboy::cli

@@ -89,6 +89,14 @@ Table table_for(const SharedOptions& options) {
     return std::move(overlay.table);
 }
 
+void add_route_option(CLI::App& app, std::string& route, const char* text) {
+    const auto words = route_words();
+    app.add_option("--route", route, text)
+        ->check(CLI::IsMember(std::vector<std::string>(words.begin(), words.end())))
+        ->type_name("ROUTE")
+        ->capture_default_str();
+}
+
 void add_shelf_options(CLI::App& app, ShelfOptions& options) {
     app.add_option("--shelf", options.shelf_file, "Use only what FILE lists as there")->type_name("FILE");
     app.add_option("--stock", options.stocks, "A solution at hand, such as '0.2 M NaH2PO4'")
@@ -113,11 +121,7 @@ std::optional<Shelf> shelf_for(const ShelfOptions& options, const Table& table, 
         shelf = std::move(reading.shelf);
     }
     if (!options.today.empty()) {
-        const auto today = Date::read(options.today);
-        if (!today) {
-            throw Error(ErrorKind::input, "bad_date", fmt::format("'{}' is no date", options.today), "--on",
-                        "write it as 2026-12-31");
-        }
+        const Date today = read_date(options.today, "--on");
         if (!shelf) {
             throw Error(ErrorKind::input, "usage", "--on judges the dates of a shelf, and there is none", "--on",
                         "give --shelf too");

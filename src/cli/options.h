@@ -46,6 +46,9 @@ void add_computing_options(CLI::App& app, SharedOptions& options);
 /// unless quiet. Throws Error (file or data).
 Table table_for(const SharedOptions& options);
 
+/// --route, described by `text`.
+void add_route_option(CLI::App& app, std::string& route, const char* text);
+
 /// What is on the shelf, as typed.
 struct ShelfOptions {
     std::string shelf_file;

@@ -189,10 +189,7 @@ Action declare_recipe(CLI::App& app, SharedOptions*& shared) {
     app.footer(examples);
     app.add_option("label", options->label, "What is to stand on the bottle")->type_name("LABEL");
     app.add_option("--volume", options->volume, "Volume to make, such as 1L or '250 mL'")->type_name("V");
-    app.add_option("--route", options->route, "any, titrated, salts, stocks or dilution")
-        ->check(CLI::IsMember({"any", "titrated", "salts", "stocks", "dilution"}))
-        ->type_name("ROUTE")
-        ->capture_default_str();
+    add_route_option(app, options->route, "any, titrated, salts, stocks or dilution");
     add_shelf_options(app, options->shelf);
     const auto repeatable = [&](const char* name, std::vector<std::string>& values, const char* text,
                                 const char* type) {

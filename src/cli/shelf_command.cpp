@@ -8,10 +8,12 @@
 
 #include "carboy/booking.h"
 #include "carboy/error.h"
+#include "carboy/notation.h"
 #include "carboy/shelf_file.h"
 
 #include "cli/commands.h"
 #include "cli/file.h"
+#include "cli/subcommands.h"
 #include "report/shelf_text.h"
 
 namespace carboy::cli {
@@ -40,15 +42,7 @@ struct Options {
 };
 
 std::optional<Date> day(const Options& options) {
-    if (options.today.empty()) {
-        return std::nullopt;
-    }
-    const auto date = Date::read(options.today);
-    if (!date) {
-        throw Error(ErrorKind::input, "bad_date", fmt::format("'{}' is no date", options.today), "--on",
-                    "write it as 2026-12-31");
-    }
-    return date;
+    return options.today.empty() ? std::nullopt : std::optional(read_date(options.today, "--on"));
 }
 
 void write(const Options& options, const nlohmann::ordered_json& record, const std::string& text) {
@@ -109,15 +103,12 @@ int undo(const Options& options) {
 
 Action declare_shelf(CLI::App& app, SharedOptions*& shared) {
     auto options = std::make_shared<Options>();
-    auto action = std::make_shared<int (*)(const Options&)>(nullptr);
     shared = &options->shared;
     app.footer(examples);
-    app.require_subcommand(1);
+    Subcommands<Options> commands(app, options);
     const auto declare = [&](const char* name, const char* summary, int (*run)(const Options&)) {
-        CLI::App* sub = app.add_subcommand(name, summary);
+        CLI::App* sub = commands.add(name, summary, run);
         sub->add_option("file", options->file, "Shelf file")->required()->type_name("FILE");
-        add_output_options(*sub, options->shared);
-        sub->callback([action, run] { *action = run; });
         return sub;
     };
     declare("check", "Check a shelf file and list what it holds", check)
@@ -130,7 +121,7 @@ Action declare_shelf(CLI::App& app, SharedOptions*& shared) {
     using_up->add_option("--on", options->today, "Date for the journal, as 2026-12-31")->type_name("DATE");
     using_up->add_flag("--again", options->again, "Book recipes that are booked already once more");
     declare("undo", "Put back what the last booking took", undo);
-    return [options, action] { return (*action)(*options); };
+    return commands.action();
 }
 
 }  // namespace carboy::cli

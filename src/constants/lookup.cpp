@@ -90,6 +90,14 @@ ComponentId id_of(const Table& table, const Spectator& spectator) {
     return {ComponentKind::spectator, static_cast<std::uint16_t>(&spectator - table.spectators.data())};
 }
 
+std::optional<ComponentId> find_component(const Table& table, std::string_view name) {
+    if (const Spectator* spectator = find_spectator(table, name)) {
+        return id_of(table, *spectator);
+    }
+    const System* system = find_system(table, name);
+    return system != nullptr ? std::optional(id_of(table, *system)) : std::nullopt;
+}
+
 std::string_view name_of(const Table& table, ComponentId id) {
     return id.kind == ComponentKind::system ? table.systems[id.index].name : table.spectators[id.index].name;
 }

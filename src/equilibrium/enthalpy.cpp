@@ -44,8 +44,7 @@ double water_ionisation_enthalpy_kJ_per_mol(Temperature temperature) {
 double reaction_enthalpy_kJ_per_kg(const Table& table, const EquilibriumSolver& solver) {
     constexpr std::size_t hydroxide = 1;  // the solver's species begin with H+ and OH-
     const Temperature temperature = solver.water().temperature;
-    double sum =
-        solver.species(hydroxide).molality.mol_per_kg() * water_ionisation_enthalpy_kJ_per_mol(temperature);
+    double sum = solver.species(hydroxide).molality.mol_per_kg() * water_ionisation_enthalpy_kJ_per_mol(temperature);
     std::size_t index = 2;
     for (std::size_t part = 0; part < solver.part_count(); ++part) {
         const ComponentId id = solver.component(part);

@@ -18,13 +18,9 @@ Mistake of_kind(MistakeKind kind) {
     return mistake;
 }
 
-double assay_of(const Reagent& reagent) {
-    return reagent.assay.known() ? reagent.assay.value : 1.0;
-}
-
 /// Moles in the mass that was meant for another article.
 Amount amount_of(const Reagent& reagent, Mass mass) {
-    return Amount::mol(mass.g() * assay_of(reagent) / reagent.molar_mass_g_per_mol);
+    return Amount::mol(mass.g() * reagent.counted_assay() / reagent.molar_mass_g_per_mol);
 }
 
 bool supplies(const Reagent& reagent, ComponentId component) {
@@ -95,9 +91,7 @@ private:
         mistake.factor = factor;
         if (factor < 1) {
             const Amount missing = amount * (1 - factor);
-            mistake.to_weigh_in = Weighing{
-                article, Purpose::buffer, missing,
-                Mass::grams(missing.mol() * reagent(article).molar_mass_g_per_mol / assay_of(reagent(article)))};
+            mistake.to_weigh_in = Weighing{article, Purpose::buffer, missing, mass_of(reagent(article), missing)};
         }
         replaced(std::move(mistake), portion, article, amount * factor);
     }
@@ -184,9 +178,7 @@ private:
             mistake.factor = amount / item.amount;
             if (hydrate && amount < item.amount) {
                 const Amount missing = item.amount - amount;
-                mistake.to_weigh_in =
-                    Weighing{*mistake.taken, item.purpose, missing,
-                             Mass::grams(missing.mol() * article.molar_mass_g_per_mol / assay_of(article))};
+                mistake.to_weigh_in = Weighing{*mistake.taken, item.purpose, missing, mass_of(article, missing)};
             }
             replaced(std::move(mistake), portion, static_cast<std::uint16_t>(i), amount);
         }

@@ -11,6 +11,7 @@
 #include "plan/articles.h"
 #include "plan/candidates.h"
 #include "plan/linear_problem.h"
+#include "plan/stock.h"
 #include "plan/stockroom.h"
 
 namespace carboy {
@@ -165,8 +166,8 @@ Solution choose(Rows& rows, const std::vector<Candidate>& all, const std::vector
 }
 
 /// A stock of an article, strong enough for the row that takes most of it.
-Stock stock_of(const Table& table, std::uint16_t reagent, Amount most, Amount all, const Request& request,
-               double times_buffer) {
+Stock stock_for(const Table& table, std::uint16_t reagent, Amount most, Amount all, const Request& request,
+                double times_buffer) {
     constexpr double largest_share = 0.4;  // of the final volume, so that stocks and water have room
     const Reagent& article = table.reagents[reagent];
     const double needed = most.mol() / request.volume.L();  // mol/L in the buffer
@@ -183,26 +184,10 @@ Stock stock_of(const Table& table, std::uint16_t reagent, Amount most, Amount al
                     fmt::format("{} does not dissolve well enough for a stock to mix from", article.name), "label",
                     "ask for a lower concentration");
     }
-    Stock stock;
-    stock.reagent = reagent;
-    stock.strength = Molarity::mol_per_L(strength);
     // A tenth more than the rows take, in a flask that holds it.
-    const double spare_mL = 1.1e3 * all.mol() / strength;
-    std::optional<double> flask;
-    for (const Vessel& vessel : table.vessels) {
-        if (vessel.kind == VesselKind::flask && vessel.capacity_mL.value >= spare_mL) {
-            flask = std::min(flask.value_or(vessel.capacity_mL.value), vessel.capacity_mL.value);
-        }
-    }
-    stock.volume = Volume::millilitres(flask.value_or(1000 * std::ceil(spare_mL / 1000)));
-    stock.amount = Amount::mol(strength * stock.volume.L());
-    if (is_solution(article)) {
-        stock.liquid = Volume::litres(stock.amount.mol() / article.strength_mol_per_L.value);
-    } else {
-        const double assay = article.assay.known() ? article.assay.value : 1.0;
-        stock.mass = Mass::grams(stock.amount.mol() * article.molar_mass_g_per_mol / assay);
-    }
-    return stock;
+    const Volume spare = Volume::litres(1.1 * all.mol() / strength);
+    return stock_of(article, reagent, Molarity::mol_per_L(strength),
+                    flask_for(table, spare).value_or(Volume::litres(std::ceil(spare.L()))));
 }
 
 /// The least ionic strength that every row can have: the largest that a row has by itself, rounded up.
@@ -314,7 +299,7 @@ Series plan_series(const Table& table, const Request& request, const std::vector
             all_mol += mol;
         }
         series.stocks.push_back(
-            stock_of(table, reagent, most, Amount::mol(all_mol), request, 5 * round_up(buffer_mol_per_L)));
+            stock_for(table, reagent, most, Amount::mol(all_mol), request, 5 * round_up(buffer_mol_per_L)));
     };
     std::vector<std::size_t> used;  // columns that some row takes
     for (std::size_t c = 0; c < columns.size(); ++c) {

@@ -7,6 +7,9 @@
 #include "carboy/error.h"
 #include "carboy/notation.h"
 
+#include "notation/line.h"
+#include "notation/reagent_name.h"
+
 namespace carboy {
 
 namespace {
@@ -20,33 +23,17 @@ std::string did_you_mean(const std::vector<std::string>& near, const char* other
     return near.empty() ? otherwise : fmt::format("did you mean {}?", near.front());
 }
 
-std::string_view trimmed(std::string_view text) {
-    while (!text.empty() && text.front() == ' ') {
-        text.remove_prefix(1);
-    }
-    while (!text.empty() && text.back() == ' ') {
-        text.remove_suffix(1);
-    }
-    return text;
-}
-
 }  // namespace
 
 ComponentId read_ion(std::string_view name, const Table& table, std::string_view where) {
-    if (const Spectator* spectator = find_spectator(table, name)) {
-        return id_of(table, *spectator);
-    }
-    if (const System* system = find_system(table, name)) {
-        return id_of(table, *system);
+    if (const auto ion = find_component(table, name)) {
+        return *ion;
     }
     throw unknown("ion", name, where, did_you_mean(nearest_names(name, table, 1), "write it as Na+, Cl- or acetate"));
 }
 
 std::uint16_t read_reagent(std::string_view name, const Table& table, std::string_view where) {
-    const Reagent* reagent = find_reagent(table, name);
-    if (reagent == nullptr) {
-        reagent = find_reagent_by_cas(table, name);
-    }
+    const Reagent* reagent = reagent_named(table, name);
     if (reagent == nullptr) {
         throw unknown(
             "reagent", name, where,

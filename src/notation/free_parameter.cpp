@@ -7,6 +7,8 @@
 #include "carboy/measurements.h"
 #include "carboy/notation.h"
 
+#include "notation/line.h"
+
 namespace carboy {
 
 namespace {
@@ -15,16 +17,6 @@ constexpr auto choices = "one of 'pK2 phosphate', 'amount acetic acid', titrant-
 
 Error unreadable(const std::string& message, std::string help = choices) {
     return {ErrorKind::input, "unknown_parameter", message, "--free", std::move(help)};
-}
-
-std::string_view trimmed(std::string_view text) {
-    while (!text.empty() && text.front() == ' ') {
-        text.remove_prefix(1);
-    }
-    while (!text.empty() && text.back() == ' ') {
-        text.remove_suffix(1);
-    }
-    return text;
 }
 
 std::string suggestion(std::string_view name, const Table& table) {

@@ -100,6 +100,16 @@ std::size_t space_length(std::string_view text) {
     return found == fixed.end() ? 0 : found->size();
 }
 
+std::string_view trimmed(std::string_view text) {
+    while (!text.empty() && text.front() == ' ') {
+        text.remove_prefix(1);
+    }
+    while (!text.empty() && text.back() == ' ') {
+        text.remove_suffix(1);
+    }
+    return text;
+}
+
 Part trimmed(const Line& line, Part part) {
     while (!part.empty()) {
         const std::size_t length = space_length(text_of(line, part));

@@ -41,6 +41,8 @@ inline std::string_view text_of(const Line& line, Part part) {
 /// number and unit; 0 when there is none.
 std::size_t space_length(std::string_view text);
 
+/// The text without blanks around it.
+std::string_view trimmed(std::string_view text);
 /// The part without spaces around it.
 Part trimmed(const Line& line, Part part);
 

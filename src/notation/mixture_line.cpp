@@ -180,7 +180,7 @@ private:
             return reagent.mass_percent.value / 100.0 / reagent.molar_mass_g_per_mol;
         }
         if (reagent.state != State::solution) {
-            return (reagent.assay.known() ? reagent.assay.value : 1.0) / reagent.molar_mass_g_per_mol;
+            return reagent.counted_assay() / reagent.molar_mass_g_per_mol;
         }
         if (!reagent.strength_mol_per_L.known() || !reagent.density_g_per_mL.known()) {
             line_.fail("unusable_unit",

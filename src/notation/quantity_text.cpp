@@ -70,4 +70,13 @@ PH read_ph(std::string_view text, std::string_view where) {
     return ph;
 }
 
+Date read_date(std::string_view text, std::string_view where) {
+    const auto date = Date::read(text);
+    if (!date) {
+        throw Error(ErrorKind::input, "bad_date", fmt::format("'{}' is no date", text), std::string(where),
+                    "write it as 2026-12-31");
+    }
+    return *date;
+}
+
 }  // namespace carboy

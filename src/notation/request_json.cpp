@@ -87,11 +87,8 @@ private:
 
 ComponentId counter_ion(const Reader& reader, const char* key, const Table& table) {
     const std::string name = reader.text(key);
-    if (const Spectator* spectator = find_spectator(table, name)) {
-        return id_of(table, *spectator);
-    }
-    if (const System* system = find_system(table, name)) {
-        return id_of(table, *system);
+    if (const auto ion = find_component(table, name)) {
+        return *ion;
     }
     const auto near = nearest_names(name, table, 1);
     throw fault("unknown_name", fmt::format("the table has no ion called '{}'", name), reader.path_to(key),
@@ -145,20 +142,8 @@ BufferItem read_buffer(const json& value, const std::string& path, const Table& 
 
 AdditiveItem read_additive(const json& value, const std::string& path, const Table& table) {
     const Reader reader(value, path, {"reagent", "concentration"});
-    const std::string name = reader.text("reagent");
-    const Reagent* reagent = find_reagent(table, name);
-    if (reagent == nullptr) {
-        reagent = find_reagent_by_cas(table, name);
-    }
-    if (reagent == nullptr) {
-        const auto near = nearest_names(name, table, 1);
-        throw fault("unknown_name", fmt::format("the table has no reagent called '{}'", name),
-                    reader.path_to("reagent"),
-                    near.empty() ? "'carboy constants list reagents' shows every reagent"
-                                 : fmt::format("did you mean {}?", near.front()));
-    }
     AdditiveItem item;
-    item.reagent = static_cast<std::uint16_t>(reagent - table.reagents.data());
+    item.reagent = read_reagent(reader.text("reagent"), table, reader.path_to("reagent"));
     item.concentration = read_concentration(reader.text("concentration"), reader.path_to("concentration"));
     return item;
 }

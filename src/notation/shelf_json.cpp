@@ -12,6 +12,7 @@
 #include "constants/document_node.h"
 #include "constants/sha256.h"
 #include "json/strict_json.h"
+#include "notation/reagent_name.h"
 #include "notation/shelf_builder.h"
 
 namespace carboy {
@@ -100,10 +101,7 @@ private:
 
     std::optional<Reagent> read_article(const DocumentNode& node, Bottle& bottle) {
         const std::string name = node.required_text("reagent");
-        const Reagent* article = find_reagent(table_, name);
-        if (article == nullptr) {
-            article = find_reagent_by_cas(table_, name);
-        }
+        const Reagent* article = reagent_named(table_, name);
         if (article == nullptr) {
             if (!name.empty()) {
                 const auto near = nearest_names(name, table_, 1);

@@ -23,6 +23,10 @@ std::uint16_t usual_article(const Table& table, std::uint16_t reagent) {
     return reagent;
 }
 
+Mass mass_of(const Reagent& article, Amount amount) {
+    return Mass::grams(amount.mol() * article.molar_mass_g_per_mol / article.counted_assay());
+}
+
 double count_of(const Reagent& reagent, ComponentId component) {
     for (const Supply& supply : reagent.supplies) {
         if (supply.component == component) {

@@ -18,7 +18,7 @@ bool is_stock_solution(const Stockroom& stockroom, std::uint16_t reagent) {
 }
 
 bool is_mixed_stock(const Stockroom& stockroom, std::uint16_t reagent) {
-    const Bottle* bottle = stockroom.shelf() != nullptr ? stockroom.shelf()->bottle(reagent) : nullptr;
+    const Bottle* bottle = stockroom.bottle(reagent);
     return bottle != nullptr && !bottle->article;
 }
 
@@ -48,9 +48,8 @@ void weigh_up(Draft& draft, const Stockroom& stockroom) {
     constexpr int to_make = 5;
     const Table& table = stockroom.table();
     for (const Ingredient& item : draft.ingredients) {
-        const Bottle* bottle = stockroom.shelf() != nullptr ? stockroom.shelf()->bottle(item.reagent) : nullptr;
         const Reagent& article = table.reagents[item.reagent];
-        draft.expired += bottle != nullptr && stockroom.shelf()->expired(*bottle) ? 1 : 0;
+        draft.expired += stockroom.is_expired(item.reagent) ? 1 : 0;
         draft.rare += article.rarely_stocked ? 1 : 0;
         draft.harsh += article.ghs.signal_word == "Danger" ? 1 : 0;
         draft.total_mol += item.amount.mol();
@@ -106,11 +105,10 @@ std::optional<Draft> draft_of(const Stockroom& stockroom, const Request& request
         }
         auto shares = stockroom.shares(chemistry, amount, wanted, request.volume, taken);
         // Only bottles count as stock solutions: the table's own are concentrated articles.
-        const bool there =
-            wanted != Stockroom::Wanted::solution ||
-            (!shares.empty() && std::all_of(shares.begin(), shares.end(), [&](const Share& share) {
-                return stockroom.shelf() != nullptr && stockroom.shelf()->bottle(share.reagent) != nullptr;
-            }));
+        const bool there = wanted != Stockroom::Wanted::solution ||
+                           (!shares.empty() && std::all_of(shares.begin(), shares.end(), [&](const Share& share) {
+                               return stockroom.bottle(share.reagent) != nullptr;
+                           }));
         bool make = false;
         if (!there) {
             if (!may_make) {

@@ -184,9 +184,7 @@ private:
         }
         for (const std::uint16_t wanted : constraints.use) {
             const bool used = std::any_of(draft.ingredients.begin(), draft.ingredients.end(), [&](const auto& item) {
-                const Bottle* bottle =
-                    stockroom_.shelf() != nullptr ? stockroom_.shelf()->bottle(item.reagent) : nullptr;
-                return item.reagent == wanted || (bottle != nullptr && bottle->article == wanted);
+                return stockroom_.is_one_of(item.reagent, {&wanted, 1});
             });
             if (!used) {
                 lacked_use_ = true;
@@ -267,7 +265,8 @@ void offer_all(Choice& choice, LinearProblem& problem, const Stockroom& stockroo
     }
 }
 
-void plan_to_ph(Plan& plan, const Stockroom& stockroom, const Preparation& fixed, const ActivityModel& model) {
+/// The exact ingredients of the best recipe at the pH of the label.
+Draft plan_to_ph(Plan& plan, const Stockroom& stockroom, const Preparation& fixed, const ActivityModel& model) {
     const Request& request = plan.request;
     const Table& table = stockroom.table();
     const auto sets = counter_ion_sets(stockroom, request);
@@ -323,11 +322,11 @@ void plan_to_ph(Plan& plan, const Stockroom& stockroom, const Preparation& fixed
     if (request.route == Route::automatic) {
         rank_ways(plan, choice, stockroom);
     }
-    portion(plan, draft, stockroom);
+    return draft;
 }
 
 /// A recipe without a pH target: everything is weighed as the label says.
-void plan_as_written(Plan& plan, const Stockroom& stockroom, const Preparation& fixed, const ActivityModel& model) {
+Draft plan_as_written(Plan& plan, const Stockroom& stockroom, const Preparation& fixed, const ActivityModel& model) {
     const auto moles = moles_of(fixed, compose(stockroom.table(), fixed).water);
     if (!plan.request.constraints.totals.empty()) {
         throw Error(ErrorKind::input, "missing_ph",
@@ -341,7 +340,7 @@ void plan_as_written(Plan& plan, const Stockroom& stockroom, const Preparation& 
     Draft draft;
     draft.ingredients = std::move(*additives);
     plan.route = Route::salts;
-    portion(plan, draft, stockroom);
+    return draft;
 }
 
 void check_room(const Plan& plan, const Table& table) {
@@ -367,12 +366,25 @@ void check_room(const Plan& plan, const Table& table) {
     }
 }
 
-/// What rounding changes: the exact recipe is planned beside it.
-void compare_with_exact(Plan& plan, const Table& table, const Preparation& exact, const ActivityModel& model) {
-    Rounding rounding;
-    const Composed composed = compose(table, exact);
-    EquilibriumSolver solver(table, composed.mixture, plan.request.use_at, model);
+Preparation diluted(const Preparation& preparation, double times) {
+    Preparation working = preparation;
+    working.filled_to = times * *preparation.filled_to;
+    return working;
+}
+
+/// What rounding changes: the ingredients of the draft are exact, and portioned in order.
+void compare_with_exact(Plan& plan, const Table& table, const Draft& draft, const ActivityModel& model) {
+    Preparation exact = plan.preparation;
+    exact.portions.clear();
+    for (const Ingredient& item : draft.ingredients) {
+        if (item.amount.mol() > 0) {
+            exact.portions.push_back({item.reagent, item.amount, std::nullopt});
+        }
+    }
+    const Mixture mixture = compose(table, diluted(exact, plan.request.strength)).mixture;
+    EquilibriumSolver solver(table, mixture, plan.request.use_at, model);
     solver.solve();
+    Rounding rounding;
     rounding.ph = plan.predicted.ph.value() - solver.ph().value();
     for (std::size_t i = 0; i < exact.portions.size(); ++i) {
         const double change = *plan.preparation.portions[i].amount / *exact.portions[i].amount - 1;
@@ -382,12 +394,6 @@ void compare_with_exact(Plan& plan, const Table& table, const Preparation& exact
         }
     }
     plan.rounding = rounding;
-}
-
-Preparation diluted(const Preparation& preparation, double times) {
-    Preparation working = preparation;
-    working.filled_to = times * *preparation.filled_to;
-    return working;
 }
 
 Plan plan_with(const Stockroom& stockroom, const Request& request, const ActivityModel& model) {
@@ -400,11 +406,9 @@ Plan plan_with(const Stockroom& stockroom, const Request& request, const Activit
     plan.preparation.filled_to = request.volume;
     plan.preparation.filled_at = request.prepare_at;
     const Preparation fixed = additives_of(stockroom, request);
-    if (request.ph) {
-        plan_to_ph(plan, stockroom, fixed, model);
-    } else {
-        plan_as_written(plan, stockroom, fixed, model);
-    }
+    const Draft draft =
+        request.ph ? plan_to_ph(plan, stockroom, fixed, model) : plan_as_written(plan, stockroom, fixed, model);
+    portion(plan, draft, stockroom);
     const Composed composed = compose(table, plan.preparation);
     check_room(plan, table);
     plan.volume_neglected = composed.volume_neglected;
@@ -416,11 +420,7 @@ Plan plan_with(const Stockroom& stockroom, const Request& request, const Activit
             predict(table, compose(table, diluted(plan.preparation, request.strength)).mixture, request.use_at, model);
     }
     if (request.balance || request.measure_with) {
-        Request exact = request;
-        exact.balance.reset();
-        exact.measure_with.reset();
-        const Plan unrounded = plan_with(stockroom, exact, model);
-        compare_with_exact(plan, table, diluted(unrounded.preparation, request.strength), model);
+        compare_with_exact(plan, table, draft, model);
     }
     stage(plan, table, model);
     warn_of_bottles(plan, stockroom);
@@ -430,16 +430,19 @@ Plan plan_with(const Stockroom& stockroom, const Request& request, const Activit
 
 }  // namespace
 
-constexpr std::array route_words{std::string_view("any"), std::string_view("titrated"), std::string_view("salts"),
-                                 std::string_view("stocks"), std::string_view("dilution")};
+std::span<const std::string_view> route_words() {
+    static constexpr std::array<std::string_view, 5> words{"any", "titrated", "salts", "stocks", "dilution"};
+    return words;
+}
 
 std::string_view route_word(Route route) {
-    return route_words[static_cast<std::size_t>(route)];
+    return route_words()[static_cast<std::size_t>(route)];
 }
 
 std::optional<Route> route_of(std::string_view word) {
-    const auto* const known = std::find(route_words.begin(), route_words.end(), word);
-    return known == route_words.end() ? std::nullopt : std::optional(static_cast<Route>(known - route_words.begin()));
+    const auto words = route_words();
+    const auto known = std::find(words.begin(), words.end(), word);
+    return known == words.end() ? std::nullopt : std::optional(static_cast<Route>(known - words.begin()));
 }
 
 Plan plan_recipe(const Table& table, const Request& request, const ActivityModel& model) {

@@ -9,22 +9,11 @@
 #include "carboy/error.h"
 
 #include "plan/articles.h"
+#include "plan/stock.h"
 
 namespace carboy {
 
 namespace {
-
-const Bottle* bottle_of(const Stockroom& stockroom, std::uint16_t reagent) {
-    return stockroom.shelf() != nullptr ? stockroom.shelf()->bottle(reagent) : nullptr;
-}
-
-double assay_of(const Reagent& article) {
-    return article.assay.known() ? article.assay.value : 1.0;
-}
-
-Mass mass_of(const Reagent& article, Amount amount) {
-    return Mass::grams(amount.mol() * article.molar_mass_g_per_mol / assay_of(article));
-}
 
 /// Nearest multiple of a graduation, at least one.
 double to_graduation(double value, double graduation) {
@@ -51,7 +40,7 @@ std::optional<std::uint16_t> vessel_for(const Table& table, const Request& reque
 
 void add_measurement(Plan& plan, const Stockroom& stockroom, Measurement item) {
     const Table& table = stockroom.table();
-    item.bottle = item.stock ? nullptr : bottle_of(stockroom, item.reagent);
+    item.bottle = item.stock ? nullptr : stockroom.bottle(item.reagent);
     const bool rounds = plan.request.balance || plan.request.measure_with;
     if (rounds && !item.vessel) {
         item.vessel = vessel_for(table, plan.request, item.volume);
@@ -109,7 +98,7 @@ double round_mass(const Plan& plan, double grams) {
 void weigh(Plan& plan, const Stockroom& stockroom, const Ingredient& item) {
     const Reagent& article = stockroom.table().reagents[item.reagent];
     Weighing weighing{item.reagent, item.purpose, item.amount, mass_of(article, item.amount),
-                      bottle_of(stockroom, item.reagent)};
+                      stockroom.bottle(item.reagent)};
     if (plan.request.balance) {
         const double rounded = round_mass(plan, weighing.mass.g());
         weighing.amount = weighing.amount * (rounded / weighing.mass.g());
@@ -132,15 +121,11 @@ void weigh(Plan& plan, const Stockroom& stockroom, const Ingredient& item) {
 void from_stock(Plan& plan, const Stockroom& stockroom, const Ingredient& item, Volume taken, Volume volume,
                 std::optional<std::uint16_t> pipette) {
     const Reagent& article = stockroom.table().reagents[item.reagent];
-    Stock stock;
-    stock.reagent = item.reagent;
-    stock.volume = volume;
-    stock.amount = item.amount * (volume / taken);
-    stock.bottle = bottle_of(stockroom, item.reagent);
-    if (is_solution(article)) {
-        stock.liquid = Volume::litres(stock.amount.mol() / article.strength_mol_per_L.value);
-    } else {
-        const Mass exact = mass_of(article, stock.amount);
+    const Molarity strength = Molarity::mol_per_L(item.amount.mol() / taken.L());
+    Stock stock = stock_of(article, item.reagent, strength, volume);
+    stock.bottle = stockroom.bottle(item.reagent);
+    if (!is_solution(article)) {
+        const Mass exact = stock.mass;
         stock.mass = Mass::grams(round_mass(plan, exact.g()));
         stock.amount = stock.amount * (stock.mass / exact);
     }
@@ -172,14 +157,9 @@ void make_route_stock(Plan& plan, const Stockroom& stockroom, const Ingredient& 
         strength = std::min(strength, article.strength_mol_per_L.value);
     }
     const Volume taken = Volume::litres(item.amount.mol() / strength);
-    double flask_mL = spare * taken.mL();
-    std::optional<double> fits;
-    for (const Vessel& vessel : table.vessels) {
-        if (vessel.kind == VesselKind::flask && vessel.capacity_mL.value >= flask_mL) {
-            fits = std::min(fits.value_or(vessel.capacity_mL.value), vessel.capacity_mL.value);
-        }
-    }
-    from_stock(plan, stockroom, item, taken, Volume::millilitres(fits.value_or(std::ceil(flask_mL))), std::nullopt);
+    const Volume least = spare * taken;
+    from_stock(plan, stockroom, item, taken,
+               flask_for(table, least).value_or(Volume::millilitres(std::ceil(least.mL()))), std::nullopt);
 }
 
 /// Too little for the balance: taken from a stock of which more is weighed.

@@ -8,8 +8,7 @@ std::optional<Amount> Shelf::left(const Bottle& bottle) const {
         return Amount::mol(bottle.volume_left->L() * article.strength_mol_per_L.value);
     }
     if (bottle.mass_left) {
-        const double assay = article.assay.known() ? article.assay.value : 1.0;
-        return Amount::mol(bottle.mass_left->g() * assay / article.molar_mass_g_per_mol);
+        return Amount::mol(bottle.mass_left->g() * article.counted_assay() / article.molar_mass_g_per_mol);
     }
     return std::nullopt;
 }

@@ -14,11 +14,6 @@ bool supplies(const Reagent& reagent, ComponentId component) {
     return count_of(reagent, component) != 0;
 }
 
-template <class T>
-bool contains(const std::vector<T>& list, const T& item) {
-    return std::find(list.begin(), list.end(), item) != list.end();
-}
-
 /// How badly the volume of a titrant suits the vessel; 0 is well.
 double awkwardness(const Reagent& reagent, Amount amount, Volume total) {
     constexpr double least = 0.005;  // common practice, no source: a titrant should be 0.5 to 10 % of the volume
@@ -41,27 +36,29 @@ Stockroom::Stockroom(const Table& table, const Constraints& constraints, const S
     forbidden_.assign(table_.reagents.size(), false);
     for (std::size_t i = 0; i < table_.reagents.size(); ++i) {
         const auto index = static_cast<std::uint16_t>(i);
-        const Bottle* bottle = shelf != nullptr ? shelf->bottle(index) : nullptr;
-        const bool avoided = contains(constraints.avoid, index) ||
-                             (bottle != nullptr && bottle->article && contains(constraints.avoid, *bottle->article));
+        const bool avoided = is_one_of(index, constraints.avoid);
         const bool brings_ion = std::any_of(constraints.without.begin(), constraints.without.end(),
                                             [&](const ComponentId& ion) { return supplies(table_.reagents[i], ion); });
-        forbidden_[i] = avoided || brings_ion || (bottles_only && bottle == nullptr);
+        forbidden_[i] = avoided || brings_ion || (bottles_only && bottle(index) == nullptr);
     }
+}
+
+bool Stockroom::is_one_of(std::uint16_t reagent, std::span<const std::uint16_t> articles) const {
+    const Bottle* of = bottle(reagent);
+    return std::any_of(articles.begin(), articles.end(), [&](std::uint16_t article) {
+        return reagent == article || (of != nullptr && of->article == article);
+    });
 }
 
 /// Which of two articles of one chemistry to reach for: what was asked for, what is on the shelf and not expired, open
 /// before closed, the one that expires first; of the table the usual one.
 bool Stockroom::preferred(std::uint16_t a, std::uint16_t b) const {
     const auto key = [&](std::uint16_t index) {
-        const Bottle* bottle = shelf_ != nullptr ? shelf_->bottle(index) : nullptr;
-        const bool asked = contains(used_first_, index) ||
-                           (bottle != nullptr && bottle->article && contains(used_first_, *bottle->article));
-        const bool expired = bottle != nullptr && shelf_->expired(*bottle);
-        const bool never = bottle == nullptr || !bottle->expires;
-        const std::string expires = never ? std::string() : bottle->expires->text();
-        return std::tuple(!asked, bottle == nullptr, expired, bottle == nullptr || !bottle->opened, never, expires,
-                          bottle == nullptr && !table_.reagents[index].usual, index);
+        const Bottle* from = bottle(index);
+        const bool never = from == nullptr || !from->expires;
+        return std::tuple(!is_one_of(index, used_first_), from == nullptr, is_expired(index),
+                          from == nullptr || !from->opened, never, never ? std::string() : from->expires->text(),
+                          from == nullptr && !table_.reagents[index].usual, index);
     };
     return key(a) < key(b);
 }
@@ -155,8 +152,8 @@ Share Stockroom::stand_in(const Share& additive, Volume total) const {
 }
 
 std::optional<Amount> Stockroom::left(std::uint16_t reagent, const std::vector<Share>& taken) const {
-    const Bottle* bottle = shelf_ != nullptr ? shelf_->bottle(reagent) : nullptr;
-    auto amount = bottle != nullptr ? shelf_->left(*bottle) : std::nullopt;
+    const Bottle* from = bottle(reagent);
+    auto amount = from != nullptr ? shelf_->left(*from) : std::nullopt;
     if (amount) {
         for (const Share& share : taken) {
             if (share.reagent == reagent) {
@@ -181,18 +178,11 @@ std::vector<Share> Stockroom::shares(const Chemistry& chemistry, Amount amount, 
     if (shelf_ == nullptr && wanted != Wanted::titrant) {
         return {{suitable.front(), amount}};
     }
-    const auto expired = [&](std::uint16_t article) {
-        const Bottle* bottle = shelf_ != nullptr ? shelf_->bottle(article) : nullptr;
-        return bottle != nullptr && shelf_->expired(*bottle);
-    };
-    const auto on_shelf = [&](std::uint16_t article) {
-        return shelf_ != nullptr && shelf_->bottle(article) != nullptr;
-    };
     std::stable_sort(suitable.begin(), suitable.end(), [&](std::uint16_t a, std::uint16_t b) {
         const auto key = [&](std::uint16_t article) {
             const bool solution = is_solution(table_.reagents[article]);
             // To weigh is more exact than to measure a stock; a titrant is measured, at a strength that suits.
-            return std::tuple(expired(article), !on_shelf(article),
+            return std::tuple(is_expired(article), bottle(article) == nullptr,
                               wanted == Wanted::any && solution && table_.reagents[article].state == State::solution,
                               wanted == Wanted::titrant ? awkwardness(table_.reagents[article], amount, total) : 0.0);
         };

@@ -2,6 +2,7 @@
 
 #include <cstdint>
 #include <optional>
+#include <span>
 #include <vector>
 
 #include "carboy/constants.h"
@@ -31,6 +32,14 @@ public:
 
     const Table& table() const { return table_; }
     const Shelf* shelf() const { return shelf_; }
+    /// The bottle that an article is; nullptr for one of the constants table.
+    const Bottle* bottle(std::uint16_t reagent) const { return shelf_ != nullptr ? shelf_->bottle(reagent) : nullptr; }
+    /// True when it is one of these articles of the table, or a bottle of one.
+    bool is_one_of(std::uint16_t reagent, std::span<const std::uint16_t> articles) const;
+    bool is_expired(std::uint16_t reagent) const {
+        const Bottle* from = bottle(reagent);
+        return from != nullptr && shelf_->expired(*from);
+    }
     bool allows(std::uint16_t reagent) const { return forbidden_.empty() || !forbidden_[reagent]; }
 
     /// Chemistries that bring `system`, with nothing beside it but, possibly, `counter_ion`.

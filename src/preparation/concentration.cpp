@@ -16,9 +16,7 @@ Error unusable(const std::string& message, std::string help) {
 
 /// Mass fraction of the substance in the article.
 double purity(const Reagent& reagent) {
-    return reagent.mass_percent.known() ? reagent.mass_percent.value / 100.0
-           : reagent.assay.known()      ? reagent.assay.value
-                                        : 1.0;
+    return reagent.mass_percent.known() ? reagent.mass_percent.value / 100.0 : reagent.counted_assay();
 }
 
 }  // namespace

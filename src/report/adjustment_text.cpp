@@ -188,41 +188,18 @@ void causes(Page& page, const Adjustment& adjustment, const Table& table) {
 }
 
 void notes(Page& page, const Adjustment& adjustment, const TextStyle& style) {
-    if (adjustment.warnings.empty() && !style.bench_temperature_assumed) {
-        return;
-    }
-    page.heading("TAKE NOTE");
-    for (const Warning& warning : adjustment.warnings) {
-        page.notice(warning.message, "  - ");
-    }
-    if (style.bench_temperature_assumed) {
-        page.paragraph(
-            "The temperature at the meter was not given; 25 °C is assumed (--prepare-at sets it). A buffer read warm "
-            "or cold reads differently.",
-            "  - ");
-    }
+    print_warnings(
+        page, adjustment.warnings,
+        style.bench_temperature_assumed
+            ? "The temperature at the meter was not given; 25 °C is assumed (--prepare-at sets it). A buffer "
+              "read warm or cold reads differently."
+            : "");
 }
 
 void cautions(Page& page, const Adjustment& adjustment, const Table& table) {
-    if (!adjustment.correction) {
-        return;
-    }
-    // Only the titrant is new to the vessel; the recipe's sheet has the rest.
-    Plan titrant_alone;
-    titrant_alone.preparation.portions.push_back({adjustment.correction->titrant.reagent, {}, {}});
-    const Cautions all = cautions_of(titrant_alone, table);
-    page.heading("CAUTIONS");
-    for (const std::uint16_t index : all.hazardous) {
-        const Reagent& reagent = table.reagents[index];
-        std::string text =
-            fmt::format("{}: {}.", reagent.name, reagent.ghs.signal_word.empty() ? "Caution" : reagent.ghs.signal_word);
-        for (const std::uint16_t statement : reagent.ghs.statements) {
-            text += fmt::format(" {} {}.", table.hazards[statement].code, table.hazards[statement].text);
-        }
-        page.paragraph(text);
-    }
-    for (const Advice& advice : all.advice) {
-        page.paragraph(advice_text(advice, table));
+    if (adjustment.correction) {
+        // Only the titrant is new to the vessel; the recipe's sheet has the rest.
+        print_cautions(page, cautions_of({&adjustment.correction->titrant.reagent, 1}, table), table);
     }
 }
 

@@ -2,6 +2,8 @@
 
 #include <algorithm>
 
+#include <fmt/format.h>
+
 namespace carboy {
 
 namespace {
@@ -22,9 +24,9 @@ void advise(std::vector<Advice>& list, std::span<const std::uint16_t> cautions, 
 
 }  // namespace
 
-Cautions cautions_of(const Plan& plan, const Table& table) {
+Cautions cautions_of(std::span<const std::uint16_t> reagents, const Table& table) {
     Cautions cautions;
-    for (const std::uint16_t index : reagents_used(plan)) {
+    for (const std::uint16_t index : reagents) {
         const Reagent& reagent = table.reagents[index];
         if (!reagent.ghs.statements.empty()) {
             cautions.hazardous.push_back(index);
@@ -43,6 +45,39 @@ Cautions cautions_of(const Plan& plan, const Table& table) {
         }
     }
     return cautions;
+}
+
+Cautions cautions_of(const Plan& plan, const Table& table) {
+    return cautions_of(reagents_used(plan), table);
+}
+
+void print_cautions(Page& page, const Cautions& cautions, const Table& table) {
+    page.heading("CAUTIONS");
+    for (const std::uint16_t index : cautions.hazardous) {
+        const Reagent& reagent = table.reagents[index];
+        std::string text =
+            fmt::format("{}: {}.", reagent.name, reagent.ghs.signal_word.empty() ? "Caution" : reagent.ghs.signal_word);
+        for (const std::uint16_t statement : reagent.ghs.statements) {
+            text += fmt::format(" {} {}.", table.hazards[statement].code, table.hazards[statement].text);
+        }
+        page.paragraph(text);
+    }
+    for (const Advice& advice : cautions.advice) {
+        page.paragraph(advice_text(advice, table));
+    }
+}
+
+void print_warnings(Page& page, const std::vector<Warning>& warnings, std::string_view assumed) {
+    if (warnings.empty() && assumed.empty()) {
+        return;
+    }
+    page.heading("TAKE NOTE");
+    for (const Warning& warning : warnings) {
+        page.notice(warning.message, "  - ");
+    }
+    if (!assumed.empty()) {
+        page.paragraph(assumed, "  - ");
+    }
 }
 
 std::string advice_text(const Advice& advice, const Table& table) {

@@ -1,12 +1,15 @@
 #pragma once
 
 #include <cstdint>
+#include <span>
 #include <string>
 #include <string_view>
 #include <vector>
 
 #include "carboy/constants.h"
 #include "carboy/plan.h"
+
+#include "report/page.h"
 
 namespace carboy {
 
@@ -22,9 +25,16 @@ struct Cautions {
     std::vector<std::uint16_t> hazardous;  ///< indices into Table::reagents
     std::vector<Advice> advice;
 };
+Cautions cautions_of(std::span<const std::uint16_t> reagents, const Table& table);
+/// Of all that a recipe uses.
 Cautions cautions_of(const Plan& plan, const Table& table);
 
 /// `Tris, glycine: ...`
 std::string advice_text(const Advice& advice, const Table& table);
+
+/// The part of a page that every sheet ends with.
+void print_cautions(Page& page, const Cautions& cautions, const Table& table);
+/// TAKE NOTE: warnings, and last a word on a temperature that was assumed (empty: none was). Nothing without either.
+void print_warnings(Page& page, const std::vector<Warning>& warnings, std::string_view assumed);
 
 }  // namespace carboy

@@ -4,6 +4,8 @@
 
 #include <fmt/format.h>
 
+#include "report/json.h"
+
 namespace carboy {
 
 using nlohmann::ordered_json;
@@ -81,15 +83,8 @@ ordered_json fit_json(const Fit& fit, const Table& table, std::string_view what)
     record["activity_model"] = fit.activity_model;
     record["pH_from_activity_model"] = fit.model_uncertainty;
     record["iterations"] = fit.iterations;
-    ordered_json warnings = ordered_json::array();
-    for (const Warning& warning : fit.warnings) {
-        warnings.push_back({{"code", warning.code}, {"message", warning.message}});
-    }
-    record["warnings"] = std::move(warnings);
-    record["program"] = {{"name", "carboy"},
-                         {"version", CARBOY_VERSION},
-                         {"constants_version", table.version},
-                         {"constants_sha256", table.sha256}};
+    record["warnings"] = warnings_json(fit.warnings);
+    record["program"] = program_json(table);
     return record;
 }
 

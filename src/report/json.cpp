@@ -218,7 +218,7 @@ ordered_json weigh_json(const Plan& plan, const Table& table) {
     for (const Weighing& item : plan.weigh) {
         const Reagent& reagent = table.reagents[item.reagent];
         ordered_json entry = article_json(reagent);
-        entry["assay"] = reagent.assay.known() ? reagent.assay.value : 1.0;
+        entry["assay"] = reagent.counted_assay();
         entry["mass_g"] = item.mass.g();
         entry["role"] = purpose_code(item.purpose);
         add_bottle(entry, item.bottle);

@@ -23,8 +23,7 @@ Volume titrant_volume(const Titrant& titrant, Amount amount) {
 
 Mass titrant_mass(const Titrant& titrant, Amount amount, const Table& table) {
     const Reagent& reagent = table.reagents[titrant.reagent];
-    const double assay = reagent.assay.known() ? reagent.assay.value : 1.0;
-    return Mass::grams(amount.mol() * reagent.molar_mass_g_per_mol / assay);
+    return Mass::grams(amount.mol() * reagent.molar_mass_g_per_mol / reagent.counted_assay());
 }
 
 std::string titrant_amount_text(const Titrant& titrant, Amount amount, const Table& table) {

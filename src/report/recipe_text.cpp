@@ -159,39 +159,6 @@ void other_ways(Page& page, const Plan& plan) {
     }
 }
 
-void cautions(Page& page, const Plan& plan, const Table& table) {
-    const Cautions all = cautions_of(plan, table);
-    page.heading("CAUTIONS");
-    for (const std::uint16_t index : all.hazardous) {
-        const Reagent& reagent = table.reagents[index];
-        std::string text =
-            fmt::format("{}: {}.", reagent.name, reagent.ghs.signal_word.empty() ? "Caution" : reagent.ghs.signal_word);
-        for (const std::uint16_t statement : reagent.ghs.statements) {
-            text += fmt::format(" {} {}.", table.hazards[statement].code, table.hazards[statement].text);
-        }
-        page.paragraph(text);
-    }
-    for (const Advice& advice : all.advice) {
-        page.paragraph(advice_text(advice, table));
-    }
-}
-
-void warnings(Page& page, const Plan& plan, const TextStyle& style) {
-    if (plan.warnings.empty() && !style.bench_temperature_assumed) {
-        return;
-    }
-    page.heading("TAKE NOTE");
-    for (const Warning& warning : plan.warnings) {
-        page.notice(warning.message, "  - ");
-    }
-    if (style.bench_temperature_assumed) {
-        page.paragraph(
-            "The bench temperature was not given; 25 °C is assumed for the volumes and the meter "
-            "(--prepare-at sets it).",
-            "  - ");
-    }
-}
-
 }  // namespace
 
 std::string recipe_text(const Plan& plan, const Table& table, const TextStyle& style) {
@@ -200,14 +167,17 @@ std::string recipe_text(const Plan& plan, const Table& table, const TextStyle& s
     ingredients(page, plan, table);
     readings(page, plan);
     result(page, plan, table);
-    warnings(page, plan, style);
+    print_warnings(page, plan.warnings,
+                   style.bench_temperature_assumed ? "The bench temperature was not given; 25 °C is assumed for the "
+                                                     "volumes and the meter (--prepare-at sets it)."
+                                                   : "");
     page.heading("STEPS");
     int number = 0;
     for (const std::string& step : steps_of(plan, table)) {
         page.paragraph(step, fmt::format("{:3}. ", ++number));
     }
     other_ways(page, plan);
-    cautions(page, plan, table);
+    print_cautions(page, cautions_of(plan, table), table);
     if (style.explain) {
         explain_recipe(page, plan, table);
     }

@@ -2,6 +2,8 @@
 
 #include <fmt/format.h>
 
+#include "report/json.h"
+
 namespace carboy {
 
 using nlohmann::ordered_json;
@@ -129,10 +131,7 @@ ordered_json selection_json(const Selection& selection, const Table& table) {
     }
     record["excluded"] = std::move(excluded);
     record["activity_model"] = selection.activity_model;
-    record["program"] = {{"name", "carboy"},
-                         {"version", CARBOY_VERSION},
-                         {"constants_version", table.version},
-                         {"constants_sha256", table.sha256}};
+    record["program"] = program_json(table);
     return record;
 }
 

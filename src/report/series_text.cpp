@@ -5,6 +5,7 @@
 #include <fmt/format.h>
 
 #include "report/figure_text.h"
+#include "report/json.h"
 #include "report/page.h"
 
 namespace carboy {
@@ -140,11 +141,7 @@ ordered_json series_json(const Series& series, const Table& table) {
             {"graduation_mL", series.graduation.mL()},
             {"stocks", std::move(stocks)},
             {"rows", std::move(rows)},
-            {"program",
-             {{"name", "carboy"},
-              {"version", CARBOY_VERSION},
-              {"constants_version", table.version},
-              {"constants_sha256", table.sha256}}}};
+            {"program", program_json(table)}};
 }
 
 std::string series_csv(const Series& series) {
