@@ -1,7 +1,5 @@
 #include <filesystem>
-#include <fstream>
 #include <random>
-#include <sstream>
 
 #include <fmt/format.h>
 #include <nlohmann/json.hpp>
@@ -10,6 +8,7 @@
 #include "support/document.h"
 #include "support/run_program.h"
 
+using carboy::test::file_content;
 using carboy::test::run_carboy;
 using carboy::test::run_program;
 using carboy::test::TemporaryFolder;
@@ -17,15 +16,8 @@ using nlohmann::json;
 
 namespace {
 
-std::string content(const std::string& path) {
-    std::ifstream file(path, std::ios::binary);
-    std::ostringstream text;
-    text << file.rdbuf();
-    return text.str();
-}
-
 double left(const std::string& shelf, const std::string& id) {
-    const json document = json::parse(content(shelf));
+    const json document = json::parse(file_content(shelf));
     for (const json& bottle : document.at("bottles")) {
         if (bottle.at("id") == id) {
             return std::stod(bottle.at("left").get<std::string>());
@@ -72,7 +64,7 @@ TEST_CASE("shelf use: booked once, undone once, and all or nothing", "[cli][shel
     const TemporaryFolder folder;
     const std::string shelf = folder.write("shelf.json", shelf_text);
     const std::string made = recipe(shelf, "2L", folder.path("recipe.json"));
-    const double tris = json::parse(content(made)).at("weigh").at(0).at("mass_g").get<double>();
+    const double tris = json::parse(file_content(made)).at("weigh").at(0).at("mass_g").get<double>();
 
     CHECK(run_carboy({"shelf", "use", shelf, made, "--on", "2026-12-01"}).status == 0);
     CHECK(left(shelf, "T") == Approx(100 - tris).margin(1e-5));
@@ -90,22 +82,22 @@ TEST_CASE("shelf use: booked once, undone once, and all or nothing", "[cli][shel
     CHECK(run_carboy({"shelf", "check", shelf}).status == 0);
 
     // Sixty litres would take more than there is: nothing is booked.
-    json greedy = json::parse(content(made));
+    json greedy = json::parse(file_content(made));
     greedy["weigh"][0]["mass_g"] = 101;
-    const std::string before = content(shelf);
+    const std::string before = file_content(shelf);
     const auto refused = run_carboy({"shelf", "use", shelf, folder.write("greedy.json", greedy.dump())});
     CHECK(refused.status == 1);
-    CHECK(content(shelf) == before);
+    CHECK(file_content(shelf) == before);
     CHECK(run_carboy({"shelf", "use", shelf, folder.write("none.json", R"({"kind":"error"})")}).status == 2);
     CHECK(run_carboy({"shelf", "use", shelf, folder.write("broken.json", "{")}).status == 2);
-    CHECK(content(shelf) == before);
+    CHECK(file_content(shelf) == before);
 }
 
 TEST_CASE("shelf use: killed at any moment, nothing is lost or booked twice", "[cli][shelf][faults]") {
     const TemporaryFolder folder;
     const std::string shelf = folder.write("shelf.json", shelf_text);
     const std::string made = recipe(shelf, "100 mL", folder.path("recipe.json"));
-    const double tris = json::parse(content(made)).at("weigh").at(0).at("mass_g").get<double>();
+    const double tris = json::parse(file_content(made)).at("weigh").at(0).at("mass_g").get<double>();
     std::mt19937_64 random(20261205);
     int killed_before = 0;
     int booked = 0;
@@ -114,14 +106,14 @@ TEST_CASE("shelf use: killed at any moment, nothing is lost or booked twice", "[
         const double seconds = std::uniform_real_distribution<double>(0.0002, 0.006)(random);
         run_program("timeout",
                     {"-s", "KILL", fmt::format("{:.5f}", seconds), CARBOY_PROGRAM, "shelf", "use", shelf, made});
-        const json document = json::parse(content(shelf));  // never half a file
+        const json document = json::parse(file_content(shelf));  // never half a file
         const bool done = document.contains("journal");
         CHECK(left(shelf, "T") == Approx(done ? 100 - tris : 100).margin(1e-5));
         (done ? booked : killed_before) += 1;
         // The script simply runs it again.
         REQUIRE(run_carboy({"shelf", "use", shelf, made}).status == 0);
         CHECK(left(shelf, "T") == Approx(100 - tris).margin(1e-5));
-        CHECK(json::parse(content(shelf)).at("journal").size() == 1);
+        CHECK(json::parse(file_content(shelf)).at("journal").size() == 1);
     }
     INFO(killed_before << " killed before, " << booked << " booked");
     CHECK(killed_before > 0);
@@ -137,9 +129,10 @@ TEST_CASE("shelf use: two at a time, both are booked", "[cli][shelf][faults]") {
         commands += fmt::format("'{}' shelf use '{}' '{}' > /dev/null & ", CARBOY_PROGRAM, shelf, made);
     }
     REQUIRE(run_program("bash", {"-c", commands + "wait"}).status == 0);
-    CHECK(json::parse(content(shelf)).at("journal").size() == 8);
+    CHECK(json::parse(file_content(shelf)).at("journal").size() == 8);
     // 3.6 L in all at 50 mmol/L, 121.14 g/mol.
-    const double assay = 1 / (json::parse(content(folder.path("1.json"))).at("weigh").at(0).at("assay").get<double>());
+    const double assay =
+        1 / (json::parse(file_content(folder.path("1.json"))).at("weigh").at(0).at("assay").get<double>());
     CHECK(left(shelf, "T") == Approx(100 - 3.6 * 0.05 * 121.14 * assay).margin(2e-3));
 }
 

@@ -11,23 +11,15 @@
 // What the program writes, in the hands of programs that nobody here wrote. Where one is missing the test is skipped,
 // and says so loudly; tests/run installs them all.
 
+using carboy::test::missing;
 using carboy::test::run_carboy;
 using carboy::test::run_program;
 using nlohmann::json;
 
 namespace {
 
-constexpr int not_installed = 77;
 const std::string python = "/usr/bin/python3";
 const std::string here = std::string(CARBOY_SOURCE_DIR) + "/tests/consumers/";
-
-bool missing(int status, const std::string& package) {
-    if (status != not_installed && status != 127) {
-        return false;
-    }
-    std::cerr << "\n*** SKIPPED: " << package << " is not installed; this check did not run ***\n\n";
-    return true;
-}
 
 json output_of(std::vector<std::string> arguments) {
     arguments.insert(arguments.end(), {"--format", "json"});

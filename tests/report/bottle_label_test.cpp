@@ -10,12 +10,15 @@
 
 #include "catch_shim.h"
 #include "report/text_width.h"
+#include "support/document.h"
 #include "support/run_program.h"
 
 // Bottle labels: what stands on them, that it stays on them, and that a reader of QR codes which nobody here wrote
 // reads them back from the rendered picture.
 
 using namespace carboy;
+using carboy::test::file_content;
+using carboy::test::missing;
 using carboy::test::run_carboy;
 using carboy::test::run_program;
 using carboy::test::TemporaryFolder;
@@ -28,13 +31,6 @@ const std::vector<std::string> labels{
     "0.1 M Tris-HCl, 0.5 M NaCl, 10 mM MgCl2, 1 mM DTT, 1 mM EDTA, 0.02 % w/v sodium azide, 20 mM imidazole, "
     "pH 8 at 4 C"};
 
-bool missing(int status, const std::string& package) {
-    if (status == 127) {
-        std::cerr << "\n*** SKIPPED: " << package << " is not installed; this check did not run ***\n\n";
-    }
-    return status == 127;
-}
-
 /// Makes the label and returns the recipe's JSON record.
 json made(const std::string& label, const std::string& file, std::vector<std::string> more = {}) {
     std::vector<std::string> arguments{"recipe",   label,  "--volume",       "1L", "--prepare-at", "22C",
@@ -44,10 +40,6 @@ json made(const std::string& label, const std::string& file, std::vector<std::st
     INFO(run.err);
     REQUIRE(run.status == 0);
     return json::parse(run.out);
-}
-
-std::string content(const std::string& file) {
-    return run_program("cat", {file}).out;
 }
 
 std::vector<std::string> codes_of(const char* reagent) {
@@ -160,7 +152,7 @@ TEST_CASE("bottle label: says what the GHS asks for, and that the solution is no
     const TemporaryFolder folder;
     const std::string file = folder.path("label.svg");
     made(labels[1], file, {"--made", "2026-12-01", "--expires", "2027-03-01", "--label-size", "105x74"});
-    const std::string svg = content(file);
+    const std::string svg = file_content(file);
     for (const char* words :
          {"pH 7.50 ± 0.0", "at 4 °C", "2026-12-01", "2027-03-01", ">Warning", "GHS05", "GHS07", "GHS08",
           "Initials ____", "H290 May be", "Contains, hazards as supplied:", "not classified."}) {
@@ -168,8 +160,8 @@ TEST_CASE("bottle label: says what the GHS asks for, and that the solution is no
         CHECK(std::regex_replace(svg, std::regex("</text>\\s*<text[^>]*>"), " ").find(words) != std::string::npos);
     }
     made(labels[0], file);
-    CHECK(content(file).find("No ingredient is classified") != std::string::npos);
-    CHECK(content(file).find("Made ______") != std::string::npos);
+    CHECK(file_content(file).find("No ingredient is classified") != std::string::npos);
+    CHECK(file_content(file).find("Made ______") != std::string::npos);
 }
 
 TEST_CASE("bottle label: everything stays on the label, whatever its size", "[labels]") {
@@ -213,7 +205,7 @@ TEST_CASE("bottle label: what is wrong is told before anything is written", "[la
         CHECK(run.status == 2);
         CHECK(run.err.find(words) != std::string::npos);
         CHECK(run.out.empty());
-        CHECK(content(file).empty());
+        CHECK(file_content(file).empty());
     };
     refused({"--bottle-label", file, "--made", "1 December 2026"}, "write it as 2026-12-31");
     refused({"--bottle-label", file, "--made", "2026-02-30"}, "'2026-02-30' is no date");

@@ -18,6 +18,7 @@
 // nobody here wrote. Where a program is missing its check is skipped, loudly; tests/run installs them.
 
 using namespace carboy;
+using carboy::test::missing;
 using carboy::test::run_carboy;
 using carboy::test::run_program;
 using carboy::test::TemporaryFolder;
@@ -27,14 +28,6 @@ namespace {
 
 const std::string here = std::string(CARBOY_SOURCE_DIR) + "/tests/report/";
 const std::string python = "/usr/bin/python3";
-
-bool missing(int status, const std::string& package) {
-    if (status == 77 || status == 127) {
-        std::cerr << "\n*** SKIPPED: " << package << " is not installed; this check did not run ***\n\n";
-        return true;
-    }
-    return false;
-}
 
 const std::vector<std::vector<std::string>> recipes{
     {"50 mM Tris-HCl, 150 mM NaCl, 1 mM EDTA, pH 7.5 at 4 C", "--volume", "2L", "--prepare-at", "22 C"},

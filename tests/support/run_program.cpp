@@ -7,6 +7,8 @@
 #include <fcntl.h>
 #include <filesystem>
 #include <fstream>
+#include <iostream>
+#include <iostream>
 #include <poll.h>
 #include <stdexcept>
 #include <sys/wait.h>
@@ -97,6 +99,16 @@ Run run_program(const std::string& program, const std::vector<std::string>& argu
 
 Run run_carboy(const std::vector<std::string>& arguments, const std::string& input) {
     return run_program(CARBOY_PROGRAM, arguments, input);
+}
+
+bool missing(int status, const std::string& package) {
+    constexpr int not_installed = 77;
+    constexpr int no_such_program = 127;
+    if (status != not_installed && status != no_such_program) {
+        return false;
+    }
+    std::cerr << "\n*** SKIPPED: " << package << " is not installed; this check did not run ***\n\n";
+    return true;
 }
 
 TemporaryFolder::TemporaryFolder() {

@@ -17,6 +17,10 @@ Run run_carboy(const std::vector<std::string>& arguments, const std::string& inp
 /// Runs any program of the machine the same way; status 127 when it is not there.
 Run run_program(const std::string& program, const std::vector<std::string>& arguments, const std::string& input = {});
 
+/// True when a program that a check needs is not there: it ended with 127, or with 77 for a library it wants. Then says
+/// loudly that the check did not run; tests/run installs them all.
+bool missing(int status, const std::string& package);
+
 /// A folder that is gone again at the end of the scope.
 class TemporaryFolder {
 public:
