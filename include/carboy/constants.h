@@ -321,7 +321,7 @@ struct Element {
     Figure standard_atomic_weight;
 };
 
-enum class EntryKind : std::uint8_t { system, spectator, reagent };
+enum class EntryKind : std::uint8_t { system, spectator, reagent, formula, vessel };
 
 /// One way of writing a name, folded by `fold_name`; the table keeps them sorted by key.
 struct NameEntry {

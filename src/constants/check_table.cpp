@@ -108,7 +108,9 @@ void TableBuilder::index_names() {
             const auto name_at = [&](std::size_t i) {
                 return kind == EntryKind::system      ? systems_[i].name
                        : kind == EntryKind::spectator ? spectators_[i].name
-                                                      : reagents_[i].name;
+                       : kind == EntryKind::reagent   ? reagents_[i].name
+                       : kind == EntryKind::formula   ? formulas_[i].name
+                                                      : vessels_[i].name;
             };
             faults.push_back({path_of(word, name_at(index)),
                               fmt::format("'{}' is also a name of {} '{}'", name, word, name_at(owner->second)),
@@ -126,6 +128,8 @@ void TableBuilder::index_names() {
     enter_all(EntryKind::system, "system", systems_);
     enter_all(EntryKind::spectator, "spectator", spectators_);
     enter_all(EntryKind::reagent, "reagent", reagents_);
+    enter_all(EntryKind::formula, "formula", formulas_);
+    enter_all(EntryKind::vessel, "vessel", vessels_);
     std::sort(names_.begin(), names_.end(),
               [](const NameEntry& a, const NameEntry& b) { return a.key != b.key ? a.key < b.key : a.kind < b.kind; });
 }

@@ -60,26 +60,13 @@ const Reagent* find_reagent_by_cas(const Table& table, std::string_view cas) {
 }
 
 const Vessel* find_vessel(const Table& table, std::string_view name) {
-    const std::string folded = fold_name(name);
-    for (const Vessel& vessel : table.vessels) {
-        const bool other = std::any_of(vessel.names.begin(), vessel.names.end(),
-                                       [&](std::string_view also) { return fold_name(also) == folded; });
-        if (other || fold_name(vessel.name) == folded) {
-            return &vessel;
-        }
-    }
-    return nullptr;
+    const int index = find(table, EntryKind::vessel, name);
+    return index < 0 ? nullptr : &table.vessels[static_cast<std::size_t>(index)];
 }
 
 const NamedFormula* find_named_formula(const Table& table, std::string_view name) {
-    const std::string folded = fold_name(name);
-    const auto has_name = [&](const NamedFormula& formula) {
-        return fold_name(formula.name) == folded ||
-               std::any_of(formula.names.begin(), formula.names.end(),
-                           [&](std::string_view other) { return fold_name(other) == folded; });
-    };
-    const auto found = std::find_if(table.formulas.begin(), table.formulas.end(), has_name);
-    return found == table.formulas.end() ? nullptr : &*found;
+    const int index = find(table, EntryKind::formula, name);
+    return index < 0 ? nullptr : &table.formulas[static_cast<std::size_t>(index)];
 }
 
 ComponentId id_of(const Table& table, const System& system) {

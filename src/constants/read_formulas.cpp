@@ -86,24 +86,6 @@ std::optional<FormulaItem> TableBuilder::read_formula_item(const DocumentNode& n
     return item;
 }
 
-/// A label must be able to tell formulas apart.
-void TableBuilder::check_formula_names(const DocumentNode& node, const NamedFormula& formula) {
-    const auto taken = [&](std::string_view name) {
-        return std::find_if(formulas_.begin(), formulas_.end(), [&](const NamedFormula& other) {
-            return fold_name(other.name) != fold_name(formula.name) &&
-                   has_name(other.name, other.names, fold_name(name));
-        });
-    };
-    const auto check = [&](std::string_view name) {
-        if (const auto other = taken(name); other != formulas_.end()) {
-            node.fault(fmt::format("'{}' is also a name of formula '{}'", name, other->name),
-                       "a name may belong to one formula");
-        }
-    };
-    check(formula.name);
-    std::for_each(formula.names.begin(), formula.names.end(), check);
-}
-
 void TableBuilder::read_formulas(const DocumentNode& document) {
     if (!document.has("formulas")) {
         return;
@@ -140,7 +122,6 @@ void TableBuilder::read_formulas(const DocumentNode& document) {
                        "give an item \"part\": \"buffer\"");
         }
         formula.items = keep_array(std::move(items));
-        check_formula_names(node, formula);
         paths_[fmt::format("formula {}", formula.name)] = node.path();
         place(formulas_, formula, &NamedFormula::name, "formula");
     }

@@ -74,7 +74,6 @@ private:
     void place_fact(const Fact& fact);
     void read_strength(const DocumentNode& entry, Reagent& reagent);
     std::optional<FormulaItem> read_formula_item(const DocumentNode& node);
-    void check_formula_names(const DocumentNode& node, const NamedFormula& formula);
     static std::optional<Formula> formula_at(const DocumentNode& node, const std::string& text);
     double molar_mass(const DocumentNode& node, const Formula& formula);
 

@@ -87,6 +87,10 @@ std::string spelling(const Table& table, const NameEntry& entry) {
             return pick(table.spectators[entry.index].name, table.spectators[entry.index].names);
         case EntryKind::reagent:
             return pick(table.reagents[entry.index].name, table.reagents[entry.index].names);
+        case EntryKind::formula:
+            return pick(table.formulas[entry.index].name, table.formulas[entry.index].names);
+        case EntryKind::vessel:
+            return pick(table.vessels[entry.index].name, table.vessels[entry.index].names);
     }
     return {};
 }
@@ -136,8 +140,8 @@ std::vector<std::string> nearest_names(std::string_view text, const Table& table
     const std::string typed = fold_name(text);
     std::vector<Near> found;
     for (const NameEntry& entry : table.names) {
-        // Ions are part of a name, never an ingredient.
-        if (entry.kind == EntryKind::spectator) {
+        // Ions are part of a name, never an ingredient; formulas have a search of their own.
+        if (entry.kind != EntryKind::system && entry.kind != EntryKind::reagent) {
             continue;
         }
         const std::size_t apart = nearness(typed, entry.key);

@@ -131,6 +131,12 @@ TEST_CASE("bundled table: steps, charges and names hang together", "[constants]"
             case EntryKind::reagent:
                 CHECK(find_reagent(table, entry.key) == &table.reagents[entry.index]);
                 break;
+            case EntryKind::formula:
+                CHECK(find_named_formula(table, entry.key) == &table.formulas[entry.index]);
+                break;
+            case EntryKind::vessel:
+                CHECK(find_vessel(table, entry.key) == &table.vessels[entry.index]);
+                break;
         }
     }
     CHECK(std::is_sorted(table.names.begin(), table.names.end(),

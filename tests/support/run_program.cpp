@@ -8,7 +8,6 @@
 #include <filesystem>
 #include <fstream>
 #include <iostream>
-#include <iostream>
 #include <poll.h>
 #include <stdexcept>
 #include <sys/wait.h>
